@@ -1,0 +1,107 @@
+import type { CycleMeasure, Measure, Statistic, Window } from './measure.js';
+
+const SHARE: readonly Statistic[] = ['share_of_banks'];
+const LOSS: readonly Statistic[] = ['mean', 'median', 'percentile_95'];
+const YIELD: readonly Statistic[] = ['mean', 'median', 'percentile_5'];
+
+function event<N extends string>(name: N, window: Window, title: string, definition: string) {
+  return { name, unit: '%', kind: 'event', window, statistics: SHARE, title, definition } as const satisfies Measure;
+}
+
+function loss<N extends string>(name: N, unit: string, window: Window, title: string, definition: string) {
+  return { name, unit, kind: 'amount', window, statistics: LOSS, title, definition } as const satisfies Measure;
+}
+
+function gain<N extends string>(name: N, unit: string, window: Window, title: string, definition: string) {
+  return { name, unit, kind: 'amount', window, statistics: YIELD, title, definition } as const satisfies Measure;
+}
+
+const CHARGE_CUT =
+  'A charge path opens by over-voltage or over-current before the dwell of the charger criterion began, while a module of the bank is more than';
+const DISCHARGE_CUT =
+  'A discharge path opens by under-voltage or over-current while the cycle still has load to serve';
+const MISSING = 'Missing charge m = Q (1 - z) of a cell; of a module the largest of its cells.';
+
+/** All measures, in column order. Append only. */
+export const MEASURES = [
+  event('early_cutoff_on_charge', 'last-30', 'early cutoff on charge', `${CHARGE_CUT} 5 points below full.`),
+  event('early_cutoff_on_charge_margin_2', 'last-30', 'early cutoff on charge, 2 points', `${CHARGE_CUT} 2 points below full.`),
+  event('early_cutoff_on_charge_margin_10', 'last-30', 'early cutoff on charge, 10 points', `${CHARGE_CUT} 10 points below full.`),
+  event('early_cutoff_on_charge_ever', 'horizon', 'early cutoff on charge, ever', `${CHARGE_CUT} 5 points below full.`),
+  event('early_cutoff_on_charge_by_spread', 'last-30', 'early cutoff on charge, by spread', 'On a cycle on which the twin has none.'),
+  event('early_cutoff_on_charge_by_duty', 'last-30', 'early cutoff on charge, by duty', 'On a cycle on which the twin has one too.'),
+  event('early_cutoff_on_charge_by_over_voltage', 'last-30', 'early cutoff on charge by over-voltage', 'Cause: largest cell voltage.'),
+  event('early_cutoff_on_charge_by_over_current', 'last-30', 'early cutoff on charge by over-current', 'Cause: charge current.'),
+  loss('early_cutoff_on_charge_cycles', '%', 'last-30', 'cycles with an early cutoff on charge', 'Share of the cycles of the window.'),
+  loss('early_cutoff_on_charge_first_cycle', 'cycle', 'horizon', 'first cycle with an early cutoff on charge', 'Absent if there is none.'),
+  loss('early_cutoff_on_charge_first_string', '', 'horizon', 'string of the first early cutoff on charge', 'From 1; absent if there is none.'),
+  loss('early_cutoff_on_charge_first_position', '', 'horizon', 'position of the first early cutoff on charge', 'From the negative end, from 1; absent if there is none.'),
+  loss('early_cutoff_on_charge_first_cell', '', 'horizon', 'cell of the first early cutoff on charge', 'Extreme cell from the negative end, from 1; absent if there is none.'),
+  loss('charge_missed_on_charge', 'Ah/day', 'last-30', 'charge missed by early cutoffs on charge', 'Charge missing to full at the end of charge, mean over the positions of each string and summed over strings, on cycles with an early cutoff on charge; 0 on others; per day.'),
+  event('early_cutoff_on_discharge', 'last-30', 'early cutoff on discharge', `${DISCHARGE_CUT}.`),
+  event('early_cutoff_on_discharge_ever', 'horizon', 'early cutoff on discharge, ever', `${DISCHARGE_CUT}.`),
+  event('early_cutoff_on_discharge_by_spread', 'last-30', 'early cutoff on discharge, by spread', 'On a cycle on which the twin has none.'),
+  event('early_cutoff_on_discharge_by_duty', 'last-30', 'early cutoff on discharge, by duty', 'On a cycle on which the twin has one too.'),
+  event('early_cutoff_on_discharge_by_under_voltage', 'last-30', 'early cutoff on discharge by under-voltage', 'Cause: smallest cell voltage.'),
+  event('early_cutoff_on_discharge_by_over_current', 'last-30', 'early cutoff on discharge by over-current', 'Cause: discharge current.'),
+  loss('early_cutoff_on_discharge_cycles', '%', 'last-30', 'cycles with an early cutoff on discharge', 'Share of the cycles of the window.'),
+  loss('early_cutoff_on_discharge_first_cycle', 'cycle', 'horizon', 'first cycle with an early cutoff on discharge', 'Absent if there is none.'),
+  loss('early_cutoff_on_discharge_first_string', '', 'horizon', 'string of the first early cutoff on discharge', 'From 1; absent if there is none.'),
+  loss('early_cutoff_on_discharge_first_position', '', 'horizon', 'position of the first early cutoff on discharge', 'From the negative end, from 1; absent if there is none.'),
+  loss('early_cutoff_on_discharge_first_cell', '', 'horizon', 'cell of the first early cutoff on discharge', 'Extreme cell from the negative end, from 1; absent if there is none.'),
+  loss('charge_missed_on_discharge', 'Ah/day', 'last-30', 'charge left behind by early cutoffs on discharge', 'Mean charge of the modules of the string cut, at its first early cutoff on discharge of a cycle; 0 on cycles without; per day.'),
+  event('string_lost', 'horizon', 'string lost', 'A string cannot discharge while the bank serves the load.'),
+  loss('string_lost_days', 'cycles', 'horizon', 'cycles with a string lost', 'Number of cycles.'),
+  event('string_lost_by_spread', 'horizon', 'string lost, by spread', 'On a cycle on which the twin loses none.'),
+  event('load_lost', 'horizon', 'load lost', 'Less than the demand is served for longer than 1 s, for whatever reason, the low-voltage disconnect included.'),
+  loss('load_lost_days', 'cycles', 'horizon', 'cycles with load lost', 'Number of cycles.'),
+  event('load_lost_by_spread', 'horizon', 'load lost, by spread', 'On a cycle on which the twin loses none.'),
+  event('load_lost_by_duty', 'horizon', 'load lost, by duty', 'On a cycle on which the twin loses load too.'),
+  loss('energy_not_supplied', 'kWh', 'horizon', 'energy not supplied', 'Demand less what was served, over the horizon.'),
+  loss('energy_not_supplied_by_spread', 'kWh', 'horizon', 'energy not supplied, by spread', 'On cycles on which the twin loses none.'),
+  loss('drift', '%', 'last-7', 'drift', `${MISSING} Largest less smallest m of the modules of a string, worst string, of rated capacity; mean over the window. Absent with one BMS over the full series length.`),
+  loss('drift_charge', 'Ah', 'last-7', 'drift', 'As drift, in Ah.'),
+  loss('drift_growth', '%/month', 'horizon', 'drift growth', 'Difference of 30-day means of drift, last less first after day 30, per 30 days; of 7-day means where the run is shorter than 90 days.'),
+  loss('cell_drift', '%', 'last-7', 'cell drift', `${MISSING} Largest less smallest m of the cells along a series path, worst path, of rated capacity; mean over the window.`),
+  loss('cell_drift_charge', 'Ah', 'last-7', 'cell drift', 'As cell drift, in Ah.'),
+  loss('cell_drift_growth', '%/month', 'horizon', 'cell drift growth', 'As drift growth, for cell drift.'),
+  event('drift_past_limit', 'horizon', 'drift past its limit', 'Drift passes the limit of the study on some cycle.'),
+  loss('drift_past_limit_first_cycle', 'cycle', 'horizon', 'first cycle with drift past its limit', 'Absent if there is none.'),
+  loss('charge_spread_at_end_of_charge', '%', 'last-7', 'spread of charge at end of charge', 'Largest less smallest charge fraction of the modules of a string at the end of charge, worst string; mean over the window.'),
+  loss('charge_ended_by_bms', '%', 'horizon', 'charges ended by a BMS', 'Share of cycles whose charge ended with every charge path open.'),
+  gain('usable_capacity_start', 'Ah', 'first', 'usable capacity at the start', 'Capacity test on a copy of the bank at 25 degC: charged by its own charger, 1 h rest, C/5 of rated bank capacity until that cannot be carried.'),
+  gain('usable_capacity', 'Ah', 'last', 'usable capacity', 'As at the start, after the last cycle.'),
+  gain('usable_energy_start', 'kWh', 'first', 'usable energy at the start', 'Energy delivered in the capacity test.'),
+  gain('usable_energy', 'kWh', 'last', 'usable energy', 'Energy delivered in the capacity test.'),
+  gain('usable_to_first_string_start', 'Ah', 'first', 'usable capacity to the first string lost, at the start', 'Charge delivered in the capacity test until a string opens.'),
+  gain('usable_to_first_string', 'Ah', 'last', 'usable capacity to the first string lost', 'Charge delivered in the capacity test until a string opens.'),
+  loss('lost_capacity_start', '%', 'first', 'lost capacity at the start', '1 - usable / ideal; ideal = sum of all cell capacities / cells in series.'),
+  loss('lost_capacity', '%', 'last', 'lost capacity', '1 - usable / ideal; ideal = sum of all cell capacities / cells in series.'),
+  loss('lost_capacity_of_rated', '%', 'last', 'lost capacity, against rated', '1 - usable / rated bank capacity.'),
+  loss('lost_capacity_of_twin', '%', 'last', 'lost capacity, against the twin', "1 - usable / the twin's usable capacity."),
+  loss('over_voltage_trips', 'per cycle', 'horizon', 'over-voltage trips', 'All modules, per cycle.'),
+  loss('under_voltage_trips', 'per cycle', 'horizon', 'under-voltage trips', 'All modules, per cycle.'),
+  loss('over_current_trips', 'per cycle', 'horizon', 'over-current trips', 'All modules, per cycle.'),
+  event('averaged_chatter', 'horizon', 'trips counted by rate', 'A BMS switched so often that trips were counted as rate x time.'),
+] as const;
+
+export type MeasureName = (typeof MEASURES)[number]['name'];
+
+/** Recorded at the checkpoint cycles, at the end of the cycle. Append only. */
+export const CYCLE_MEASURES = [
+  { name: 'drift', unit: '%', title: 'drift', definition: 'Largest less smallest missing charge of the modules of a string, worst string, of rated capacity.' },
+  { name: 'cell_drift', unit: '%', title: 'cell drift', definition: 'The same over the cells along a series path.' },
+  { name: 'trips', unit: '', title: 'trips so far', definition: 'BMS trips of all modules since cycle 1.' },
+  { name: 'energy_not_supplied', unit: 'kWh', title: 'energy not supplied so far', definition: 'Since cycle 1.' },
+  { name: 'early_cutoffs_on_charge', unit: 'cycles', title: 'cycles with an early cutoff on charge so far', definition: 'Since cycle 1.' },
+  { name: 'early_cutoffs_on_discharge', unit: 'cycles', title: 'cycles with an early cutoff on discharge so far', definition: 'Since cycle 1.' },
+] as const satisfies readonly CycleMeasure[];
+
+export type CycleMeasureName = (typeof CYCLE_MEASURES)[number]['name'];
+
+const BY_NAME: ReadonlyMap<string, Measure> = new Map(MEASURES.map((measure) => [measure.name, measure]));
+
+/** @returns the measure of that name, or undefined if there is none */
+export function measureNamed(name: string): Measure | undefined {
+  return BY_NAME.get(name);
+}

@@ -1,0 +1,280 @@
+import type { QuantityName } from './quantities.js';
+
+/**
+ * The resolved study: what a study file means once every default, grade and copy is filled in and every unit converted.
+ *
+ * Plain data (it is written as JSON and cloned to threads). Inside values are SI with charge in Ah and shares as
+ * fractions; currents into a positive terminal are positive. Nothing beyond this type knows about YAML or percent.
+ */
+export interface Study {
+  /** Version of the study format, the value of the key `motleybank`. */
+  readonly format: 1;
+  readonly title: string;
+  /** Canonical text of the seed: the study's number or text. */
+  readonly seed: string;
+  /** Sampled banks of every candidate. */
+  readonly instances: number;
+  /** Instances in a block, a power of 2. */
+  readonly blockSize: number;
+  readonly plan: 'independent';
+  /** Horizon: cycles simulated for every instance. */
+  readonly cycles: number;
+  /** Two-sided confidence of every interval, e.g. 0.95. */
+  readonly confidenceFraction: number;
+  /** Drift (fraction of rated capacity) whose first passing is reported. */
+  readonly driftLimitFraction: number;
+  readonly ocvTables: readonly OcvTable[];
+  readonly stocks: readonly Stock[];
+  readonly duty: Duty;
+  readonly candidates: readonly Candidate[];
+  /** Key of the candidate that the others are compared with. */
+  readonly reference: string;
+  readonly acceptance: readonly AcceptanceLine[];
+}
+
+/** Open-circuit voltage of a cell against its charge fraction, with its continuation beyond both ends. */
+export interface OcvTable {
+  readonly interpolation: 'monotone' | 'linear';
+  /** Strictly ascending charge fractions. */
+  readonly chargeFraction: readonly number[];
+  /** Volts at those charge fractions, strictly ascending. */
+  readonly voltageV: readonly number[];
+  /** Slope below the first point in V per unit of charge fraction; null continues with the slope of the end. */
+  readonly slopeBelowV: number | null;
+  readonly slopeAboveV: number | null;
+}
+
+/** The law of one deviation, mean 0. Amounts are fractions of the nominal if the spread is relative, else SI. */
+export type Law =
+  | { readonly law: 'fixed' }
+  | { readonly law: 'normal'; readonly sd: number }
+  | { readonly law: 'truncated-normal'; readonly sd: number; readonly lower: number; readonly upper: number }
+  /** nominal x (F - 1) with F lognormal of mean 1; `sd` in the same unit as for the other laws. */
+  | { readonly law: 'lognormal'; readonly sd: number }
+  | { readonly law: 'uniform'; readonly halfWidth: number };
+
+/** value = nominal x (1 + lot + module + cell) if `relative`, else nominal + lot + module + cell. */
+export interface Spread {
+  readonly nominal: number;
+  readonly relative: boolean;
+  readonly lot: Law;
+  readonly module: Law;
+  readonly cell: Law;
+}
+
+export interface Correlation {
+  readonly level: 'lot' | 'module' | 'cell';
+  readonly of: readonly [QuantityName, QuantityName];
+  readonly rho: number;
+}
+
+export type Stock = PopulationStock | ExplicitStock;
+
+/** A population of modules of one make and age, from which the modules named are drawn. */
+export interface PopulationStock {
+  readonly kind: 'population';
+  readonly key: string;
+  readonly moduleIds: readonly string[];
+  readonly cellsInSeries: number;
+  readonly ratedAh: number;
+  readonly quantities: Readonly<Record<QuantityName, Spread>>;
+  readonly correlations: readonly Correlation[];
+  readonly cell: CellModel;
+  readonly bms: BmsSettings;
+}
+
+/** Modules written down one by one: nothing is drawn. */
+export interface ExplicitStock {
+  readonly kind: 'explicit';
+  readonly key: string;
+  readonly modules: readonly ModuleParameters[];
+}
+
+/** What all cells of a stock have in common. */
+export interface CellModel {
+  /** Index into `ocvTables` of the study. */
+  readonly ocv: number;
+  /** Polarisation pairs of a cell of nominal resistance; they scale with the cell's resistance. */
+  readonly polarisation: readonly { readonly resistanceOhm: number; readonly timeConstantS: number }[];
+  /** Half of the gap between the charge and discharge branches, V. */
+  readonly hysteresisV: number;
+  /** Plett's gamma, dimensionless. */
+  readonly hysteresisRate: number;
+}
+
+/** Settings of a BMS that have no spread. */
+export interface BmsSettings {
+  readonly overVoltageDelayS: number;
+  readonly overVoltageReleaseHoldS: number;
+  readonly underVoltageDelayS: number;
+  readonly underVoltageReleaseHoldS: number;
+  /** The under-voltage latch clears only while charge current flows. */
+  readonly underVoltageReleaseOnCharge: boolean;
+  readonly overCurrent: OverCurrentSettings;
+  /** Voltage dropped by a path that conducts only the other way. */
+  readonly forwardDropV: number;
+  /** Discharge current above which the drop of an over-voltage latch goes away; null = never. */
+  readonly recloseA: number | null;
+  readonly recloseDelayS: number;
+  readonly bleed: BleedSettings;
+  /** Standby current after `asleepAfterS` with the discharge path open. */
+  readonly asleepA: number;
+  readonly asleepAfterS: number;
+}
+
+export interface OverCurrentSettings {
+  readonly delayS: number;
+  /** `path` opens the path of the current's direction, `both` blocks both. */
+  readonly opens: 'path' | 'both';
+  readonly retryS: number;
+  /** Trips within `lockWindowS` after which the BMS stays open; null = never. */
+  readonly lockAfterTrips: number | null;
+  readonly lockWindowS: number;
+  /** What releases the lock: current the other way, or a visit. */
+  readonly lock: 'opposite-current' | 'manual';
+}
+
+export interface BleedSettings {
+  readonly rule: 'each' | 'above-lowest' | 'none';
+  readonly when: 'charging' | 'always';
+  readonly stopBelowStartV: number;
+  readonly deltaV: number;
+}
+
+/**
+ * One module as it stands in a bank: sampled from a population or written down.
+ * Cells are listed from the negative end; arrays over cells have the length of `capacityAh`.
+ */
+export interface ModuleParameters {
+  readonly id: string;
+  readonly stock: string;
+  readonly ratedAh: number;
+  readonly ocv: number;
+  readonly hysteresisV: number;
+  readonly hysteresisRate: number;
+  readonly capacityAh: readonly number[];
+  readonly resistanceOhm: readonly number[];
+  /** Polarisation pairs; `resistanceOhm` over cells. */
+  readonly polarisation: readonly { readonly timeConstantS: number; readonly resistanceOhm: readonly number[] }[];
+  /** Internal self-discharge current of each cell. */
+  readonly leakageA: readonly number[];
+  /** Coulombic efficiency of each cell. */
+  readonly efficiency: readonly number[];
+  /** Charge fraction as received. */
+  readonly arrivalCharge: readonly number[];
+  /** BMS path and joints in series with the cells. */
+  readonly pathResistanceOhm: number;
+  readonly standbyA: number;
+  readonly overVoltageV: number;
+  readonly overVoltageReleaseV: number;
+  readonly underVoltageV: number;
+  readonly underVoltageReleaseV: number;
+  readonly overCurrentChargeA: number;
+  readonly overCurrentDischargeA: number;
+  readonly bleedA: number;
+  readonly bleedStartV: number;
+  readonly bms: BmsSettings;
+}
+
+/** A duty: parts in sequence, each repeated, the whole again and again up to the horizon. */
+export interface Duty {
+  /** `profile`: cycles of `cycleS` by the clock; `phases`: a cycle is one pass of phases, however long it takes. */
+  readonly kind: 'profile' | 'phases';
+  /** Length of a cycle of a profile, s; for phases, the sum of the longest durations of the longest pass. */
+  readonly cycleS: number;
+  readonly parts: readonly DutyPart[];
+  /** Factor on every load of a bank (level `bank`); mean 1 unless the study says otherwise. */
+  readonly loadFactor: BankSpread;
+  readonly chargeFactor: BankSpread;
+}
+
+export interface BankSpread {
+  readonly nominal: number;
+  readonly relative: boolean;
+  readonly bank: Law;
+}
+
+export interface DutyPart {
+  readonly name: string;
+  readonly repeat: number;
+  /** The part's cycles in order, each a list of segments; rows that straddle the end of a cycle are split. */
+  readonly cycles: readonly (readonly DutySegment[])[];
+}
+
+/** A stretch of constant demand. */
+export interface DutySegment {
+  /** Longest duration, s. */
+  readonly durationS: number;
+  /** Power drawn by the load, W, 0 or more. */
+  readonly loadW: number;
+  /** Current drawn by the load, A, 0 or more, beside `loadW`. */
+  readonly loadA: number;
+  /** Power that the charger can give, W; 0 = no charging; null = bounded by the charger's own limit only. */
+  readonly chargeW: number | null;
+  /** The segment ends early when the charger's criterion is met. */
+  readonly endsWhenCharged: boolean;
+}
+
+export interface Candidate {
+  readonly key: string;
+  readonly title: string;
+  readonly wiring: 'strings' | 'cross-linked' | 'native';
+  /** Module ids of each string from its negative end; all strings equally long. */
+  readonly strings: readonly (readonly string[])[];
+  /** Leads of each string. */
+  readonly leads: readonly StringLeads[];
+  /** Between neighbouring strings at equal positions (cross-linked only). */
+  readonly linkOhm: number;
+  readonly charger: ChargerSettings;
+  readonly load: LoadSettings;
+  readonly commissioning: 'as-received' | 'each-module-full';
+  /** Bleed that replaces that of every module of this candidate, key by key; null = as the modules have it. */
+  readonly bleed: BleedOverride | null;
+}
+
+export interface BleedOverride {
+  readonly rule?: 'each' | 'above-lowest' | 'none';
+  readonly when?: 'charging' | 'always';
+  readonly stopBelowStartV?: number;
+  readonly deltaV?: number;
+  readonly currentA?: number;
+  readonly startV?: number;
+}
+
+/** Resistances of one string: bus to first negative post, between neighbouring modules, last positive post to bus. */
+export interface StringLeads {
+  readonly negativeOhm: number;
+  /** Above the tap of a cross-link: from it to the negative post of the next module. */
+  readonly betweenOhm: number;
+  readonly positiveOhm: number;
+}
+
+export interface ChargerSettings {
+  readonly limitA: number;
+  readonly absorptionV: number;
+  /** Bank current below which charging ends; 0 = never by tail. */
+  readonly tailA: number;
+  readonly tailHoldS: number;
+  /** Longest time at absorption; null = no limit. */
+  readonly absorptionS: number | null;
+  /** Voltage held afterwards; null = off afterwards. */
+  readonly floatV: number | null;
+  /** Charging begins again at every cycle; below `restartV` it does so in any case. */
+  readonly restart: 'each-cycle' | 'below-voltage';
+  readonly restartV: number;
+}
+
+export interface LoadSettings {
+  /** Low-voltage disconnect, V at the bus; null = none. */
+  readonly disconnectV: number | null;
+  readonly disconnectDelayS: number;
+  readonly reconnectV: number;
+}
+
+export interface AcceptanceLine {
+  readonly measure: string;
+  readonly statistic: string;
+  readonly bound: 'at-most' | 'at-least';
+  /** In the unit of the statistic as printed (percent where it prints percent). */
+  readonly limit: number;
+}
