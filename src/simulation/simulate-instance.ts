@@ -1,11 +1,128 @@
-import type { OutcomeRow } from '../outcomes/columns.js';
-import type { Candidate, Study } from '../study/study.js';
+import type { Bank } from '../bank/bank.js';
+import { buildBank } from '../bank/bank.js';
+import { compileOcvCurves, type OcvCurves } from '../bank/ocv-curves.js';
+import { type DutyCycle, dutyCourse } from '../duty/course.js';
+import type { CycleLog } from '../measures/cycle-log.js';
+import { cycleValues, instanceMeasures, type TestedCapacity } from '../measures/instance-measures.js';
+import { checkpointCycles, type OutcomeRow } from '../outcomes/columns.js';
+import { type BankFactors, meanBankFactors, sampleBankFactors } from '../sampling/bank-factors.js';
+import { meanModules } from '../sampling/mean-modules.js';
+import { sampleModules } from '../sampling/sample-modules.js';
+import type { Candidate, ModuleParameters, Study } from '../study/study.js';
+import { createJourney, type Journey, type JourneyListeners } from './advance.js';
+import { testCapacity } from './capacity-test.js';
+import { commissionBank } from './commission.js';
+import { drawnFeatures } from './drawn-features.js';
+import { createRecorder, type Recorder, recordEvent, recordStep } from './recorder.js';
+import { runCourse } from './run-course.js';
 
-// Contract of the room; the body follows.
+
+/** What all instances of a candidate share; made once per candidate and thread. */
 export interface PreparedCandidate {
   readonly study: Study;
   readonly candidate: Candidate;
+  readonly ocv: OcvCurves;
+  readonly course: readonly DutyCycle[];
+  readonly checkpoints: readonly number[];
+  readonly twin: SimulatedBank;
 }
-export declare function prepareCandidate(study: Study, candidateKey: string): PreparedCandidate;
-export declare function simulateInstance(prepared: PreparedCandidate, instance: number): OutcomeRow;
-export declare function simulateTwin(prepared: PreparedCandidate): OutcomeRow;
+
+/** A bank that has gone through its course. */
+export interface SimulatedBank {
+  readonly bank: Bank;
+  readonly factors: BankFactors;
+  readonly log: CycleLog;
+  readonly start: TestedCapacity;
+  readonly end: TestedCapacity;
+}
+
+/**
+ * Gets a candidate ready: compiles its curves and course and takes its twin (every value at its mean) through the course.
+ *
+ * @throws RangeError if the study has no candidate of that key
+ */
+export function prepareCandidate(study: Study, candidateKey: string): PreparedCandidate {
+  const candidate = study.candidates.find(({ key }) => key === candidateKey);
+  if (candidate === undefined) throw new RangeError(`study must have a candidate ${candidateKey}`);
+  const parts = {
+    study,
+    candidate,
+    ocv: compileOcvCurves(study.ocvTables),
+    course: dutyCourse(study.duty, study.cycles),
+    checkpoints: checkpointCycles(study.cycles),
+  };
+  return { ...parts, twin: simulateBank(parts, meanModules(study), meanBankFactors(study)) };
+}
+
+/**
+ * One sampled bank of one candidate through its whole course: a pure function of study, candidate and instance number.
+ *
+ * @param instance from 1; its modules are the same in every candidate
+ * @returns drawn features, measures and by-cycle values in the order of `outcomeColumns`
+ */
+export function simulateInstance(prepared: PreparedCandidate, instance: number): OutcomeRow {
+  const { study, twin } = prepared;
+  const simulated = simulateBank(prepared, sampleModules(study, instance), sampleBankFactors(study, instance));
+  return outcomeRow(prepared, simulated, { log: twin.log, capacity: twin.end }, instance);
+}
+
+/** The twin's row; its instance number is 0. */
+export function simulateTwin(prepared: PreparedCandidate): OutcomeRow {
+  return outcomeRow(prepared, prepared.twin, null, 0);
+}
+
+/** A bank at the beginning of its course, with a recorder that listens to it. */
+export function startBank(
+  prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv'>,
+  modules: ReadonlyMap<string, ModuleParameters>,
+  also: Partial<JourneyListeners> = {},
+): { readonly journey: Journey; readonly recorder: Recorder } {
+  const { study, candidate, ocv } = prepared;
+  const bank = buildBank(candidate, modules, ocv);
+  const state = commissionBank(bank, candidate, modules, ocv);
+  const recorder = createRecorder(study.cycles);
+  const journey: Journey = createJourney(bank, state, candidate.charger, candidate.load, {
+    onEvent: (event) => {
+      recordEvent(recorder, journey, event);
+      also.onEvent?.(event);
+    },
+    onStep: (_, stepS) => {
+      recordStep(recorder, journey, stepS);
+      also.onStep?.(journey, stepS);
+    },
+  });
+  return { journey, recorder };
+}
+
+function simulateBank(
+  prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv' | 'course'>,
+  modules: ReadonlyMap<string, ModuleParameters>,
+  factors: BankFactors,
+): SimulatedBank {
+  const { candidate, course } = prepared;
+  const { journey, recorder } = startBank(prepared, modules);
+  const { bank, state } = journey.kernel;
+  const start = testCapacity(bank, state, candidate, journey.kernel.nowS);
+  runCourse(journey, recorder, course, factors);
+  const end = testCapacity(bank, state, candidate, journey.kernel.nowS);
+  return { bank, factors, log: recorder.log, start, end };
+}
+
+function outcomeRow(
+  prepared: PreparedCandidate,
+  { bank, factors, log, start, end }: SimulatedBank,
+  twin: { readonly log: CycleLog; readonly capacity: TestedCapacity } | null,
+  instance: number,
+): OutcomeRow {
+  const { driftLimitFraction } = prepared.study;
+  return {
+    instance,
+    values: [
+      factors.loadFactor,
+      factors.chargeFactor,
+      ...drawnFeatures(bank),
+      ...instanceMeasures(bank, { log, twin, start, end, driftLimitFraction }),
+      ...prepared.checkpoints.flatMap((cycle) => cycleValues(bank, log, cycle)),
+    ],
+  };
+}

@@ -1,0 +1,69 @@
+import { asciiText, wrapText } from '../output/plain-text.js';
+import type { Study } from '../study/study.js';
+import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
+import { type LoadedStudy, loadStudy } from './load-study.js';
+import { renderOrigins } from './origin-table.js';
+import type { Shell } from './shell.js';
+import { bankCycles, type CheckAids, type Trial } from './trial.js';
+
+/** What `check` is told on the command line. */
+export interface CheckOptions {
+  /** Study file. */
+  readonly study: string;
+  /** One JSON document in place of the table. */
+  readonly json?: boolean | undefined;
+  /** Warnings and faults only: no table, no trial. */
+  readonly quiet?: boolean | undefined;
+}
+
+/** Prints the resolved study with the origin of every value, warnings, and how long a run would take. */
+export function checkCommand(options: CheckOptions, shell: Shell, aids: CheckAids): ExitStatus {
+  const loaded = loadStudy(options.study, shell);
+  if (loaded === null) return EXIT_STATUS.input;
+  const { study } = loaded;
+  const warnings = [...loaded.warnings, ...twinWarnings(study, aids)];
+  if (options.quiet) {
+    for (const warning of warnings) shell.err(`warning: ${asciiText(warning)}\n`);
+    return EXIT_STATUS.done;
+  }
+  const trial = aids.trial(study, shell.now);
+  shell.out(options.json ? renderCheckJson(loaded, warnings, trial) : renderCheck(loaded, warnings, trial));
+  return EXIT_STATUS.done;
+}
+
+function twinWarnings(study: Study, aids: CheckAids): readonly string[] {
+  const keys = aids.candidatesWhoseTwinLosesLoad(study);
+  if (keys.length === 0) return [];
+  return [`the duty is too much even without spread: the twin loses load (${keys.join(', ')})`];
+}
+
+function renderCheck({ study, origins }: LoadedStudy, warnings: readonly string[], trial: Trial): string {
+  const lines = [
+    ...wrapText(asciiText(study.title)),
+    '',
+    ...renderOrigins(origins),
+    '',
+    ...warnings.flatMap((warning) => wrapText(`warning: ${asciiText(warning)}`)),
+    ...(warnings.length > 0 ? [''] : []),
+    ...wrapText(
+      `${bankCycles(study)} bank-cycles (${study.instances} banks x ${study.cycles} cycles x ` +
+        `${study.candidates.length} candidates), about ${minutesText(study, trial)} on one thread`,
+    ),
+  ];
+  return `${lines.join('\n')}\n`;
+}
+
+function renderCheckJson({ study, origins }: LoadedStudy, warnings: readonly string[], trial: Trial): string {
+  const estimate = { bank_cycles: bankCycles(study), minutes_on_one_thread: minutes(study, trial) };
+  return `${JSON.stringify({ study, origins, warnings, estimate }, null, 2)}\n`;
+}
+
+function minutes(study: Study, { bankCyclesPerSecond }: Trial): number {
+  return bankCycles(study) / bankCyclesPerSecond / 60;
+}
+
+function minutesText(study: Study, trial: Trial): string {
+  const value = minutes(study, trial);
+  if (value < 0.1) return 'a few seconds';
+  return `${value < 10 ? value.toFixed(1) : Math.round(value)} min`;
+}

@@ -1,0 +1,162 @@
+import { availableParallelism } from 'node:os';
+import { basename, join, parse } from 'node:path';
+import { errorCode } from '../execution/durable-file.js';
+import { type Execution, executeRun } from '../execution/execute-run.js';
+import { FileOutcomes } from '../execution/file-outcomes.js';
+import { FolderRefused } from '../execution/folder-refused.js';
+import { LostBlock } from '../execution/lost-block.js';
+import { Progress } from '../execution/progress.js';
+import { refuseOtherRun } from '../execution/refuse-other-run.js';
+import { blockFile, RUN_FILE, RunFolder } from '../execution/run-folder.js';
+import { RunRecord, type SessionEnd } from '../execution/run-record.js';
+import { blockCount, TWIN_BLOCK } from '../outcomes/block.js';
+import { renderJson } from '../output/json-table.js';
+import { renderTable } from '../output/table.js';
+import { RESULT_FILES, writeResults } from '../output/write-results.js';
+import { answerStudy } from '../questions/answer-study.js';
+import { ENGINE } from '../study/engine.js';
+import { simulationContent, simulationKey } from '../study/simulation-key.js';
+import type { Study } from '../study/study.js';
+import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
+import { type LoadedStudy, loadStudy } from './load-study.js';
+import { renderClosing, renderEarlyEnd } from './run-messages.js';
+import type { Shell } from './shell.js';
+
+/** What `run` is told on the command line. */
+export interface RunOptions {
+  /** Study file. */
+  readonly study: string;
+  /** Folder of the run; `results/<study file name>` if not said. */
+  readonly out?: string | undefined;
+  readonly seed?: string | undefined;
+  readonly instances?: number | undefined;
+  /** Threads, as many as the machine runs at once if not said. Never changes a result. */
+  readonly threads?: number | undefined;
+  /** Discards what an earlier run left in the folder. */
+  readonly replace?: boolean | undefined;
+  /** One JSON document in place of the table. */
+  readonly json?: boolean | undefined;
+  /** Results and faults only. */
+  readonly quiet?: boolean | undefined;
+}
+
+/** All that a run leaves, to be discarded with `--replace`; anything else in the folder stays. */
+const LEFT_BY_A_RUN = [...Object.values(RUN_FILE), ...Object.values(RESULT_FILES)];
+const WORKER_FILE = new URL('../../workers/block.js', import.meta.url);
+
+/**
+ * Runs a study: computes what its folder lacks, answers its questions and prints the table.
+ *
+ * @param workerFile compiled thread entry
+ * @throws InstanceFault if a simulation fails, which is a fault of this program
+ */
+export async function runCommand(options: RunOptions, shell: Shell, workerFile = WORKER_FILE): Promise<ExitStatus> {
+  const loaded = loadStudy(options.study, shell, { seed: options.seed, instances: options.instances });
+  if (loaded === null) return EXIT_STATUS.input;
+  const path = options.out ?? join('results', parse(options.study).name);
+  try {
+    const folder = await RunFolder.open(path, options.replace ? LEFT_BY_A_RUN : []);
+    try {
+      return await runInFolder(loaded, folder, options, shell, workerFile);
+    } finally {
+      await folder.close();
+    }
+  } catch (error) {
+    if (!(error instanceof FolderRefused)) throw error;
+    shell.err(`${error.message}\n`);
+    return EXIT_STATUS.input;
+  }
+}
+
+async function runInFolder(
+  loaded: LoadedStudy,
+  folder: RunFolder,
+  options: RunOptions,
+  shell: Shell,
+  workerFile: URL,
+): Promise<ExitStatus> {
+  const { study } = loaded;
+  const startMs = shell.now();
+  const threads = options.threads ?? availableParallelism();
+  const keys = new Map(study.candidates.map((candidate) => [candidate.key, simulationKey(study, candidate)]));
+  await refuseOtherRun(study, keys, simulationContent, folder);
+  const inputs = await keepStudy(loaded, folder);
+  const record = await RunRecord.begin(folder, threads, new Date());
+  const progress = new Progress({
+    write: options.quiet ? () => undefined : shell.err,
+    terminal: shell.isTerminal.err,
+    nowMs: shell.now,
+  });
+  const execution = await executeRun({ study, keys, folder, workerFile, threads, stop: shell.interruption, progress });
+  const end = endOf(execution);
+  if (execution.instances > 0 && end !== 'failed') {
+    shell.out(await resultsOf(study, execution.instances, folder, inputs, options.json ?? false));
+  }
+  const durationMs = shell.now() - startMs;
+  await record.end(end, durationMs / 1000);
+  if (end === 'complete') {
+    if (!options.quiet) shell.err(renderClosing(study, execution, { durationMs, threads, folder: folder.path }));
+    return EXIT_STATUS.done;
+  }
+  const { failure } = execution;
+  if (failure instanceof Error) shell.err(`${failure.message}\n`);
+  shell.err(renderEarlyEnd(study, execution, folder.path));
+  if (end === 'failed') throw failure;
+  if (end === 'blocks missing') return EXIT_STATUS.blocksMissing;
+  return shell.interruption.reason === 'SIGTERM' ? EXIT_STATUS.terminated : EXIT_STATUS.interrupted;
+}
+
+/** A thread that ends and a disk that is full are the machine's; anything else that fails is ours. */
+function endOf({ failure, missing }: Execution): Exclude<SessionEnd, null> {
+  if (failure instanceof LostBlock || errorCode(failure) !== undefined) return 'blocks missing';
+  if (failure !== undefined) return 'failed';
+  return missing === 0 ? 'complete' : 'interrupted';
+}
+
+/** Keeps the study as read, as resolved and with the files that it names. @returns names of those files */
+async function keepStudy({ text, study, inputs }: LoadedStudy, folder: RunFolder): Promise<readonly string[]> {
+  await folder.write(RUN_FILE.study, text);
+  await folder.write(RUN_FILE.resolved, `${JSON.stringify(study, null, 2)}\n`);
+  await folder.remove(RUN_FILE.inputs);
+  const names: string[] = [];
+  for (const [index, input] of inputs.entries()) {
+    const name = `${RUN_FILE.inputs}/${String(index + 1).padStart(2, '0')}-${basename(input.path)}`;
+    await folder.write(name, input.text);
+    names.push(name);
+  }
+  return names;
+}
+
+/** Answers the questions, writes the answers and @returns them for stdout. */
+async function resultsOf(
+  study: Study,
+  instances: number,
+  folder: RunFolder,
+  inputs: readonly string[],
+  json: boolean,
+): Promise<string> {
+  const outcomes = new FileOutcomes(folder, study, instances);
+  try {
+    const answers = await answerStudy(study, outcomes);
+    const provenance = {
+      engine: ENGINE,
+      nodeMajor: Number.parseInt(process.versions.node, 10),
+      architecture: process.arch,
+    };
+    const blocks = Array.from(
+      { length: blockCount({ instances, blockSize: study.blockSize }) },
+      (_, index) => index + 1,
+    );
+    await writeResults(folder, study, answers, provenance, {
+      outcomes: study.candidates.map(({ key: candidate }) => ({
+        candidate,
+        twin: blockFile({ candidate, block: TWIN_BLOCK }),
+        blocks: blocks.map((block) => blockFile({ candidate, block })),
+      })),
+      inputs,
+    });
+    return json ? renderJson(answers, study) : renderTable(answers, study, folder.path);
+  } finally {
+    await outcomes.close();
+  }
+}

@@ -1,0 +1,20 @@
+import type { Study } from '../study/study.js';
+
+/** How fast a study goes, measured on a few of its banks. */
+export interface Trial {
+  /** Cycles of one bank per second on one thread. */
+  readonly bankCyclesPerSecond: number;
+}
+
+/** What `check` needs of the simulation; injected, so that it can be tested without one. */
+export interface CheckAids {
+  /** Runs a few banks for about two seconds. */
+  readonly trial: (study: Study, now: () => number) => Trial;
+  /** Candidates whose twin, the bank with every value at its mean, loses load. */
+  readonly candidatesWhoseTwinLosesLoad: (study: Study) => readonly string[];
+}
+
+/** @returns cycles of single banks in a whole run */
+export function bankCycles(study: Study): number {
+  return study.instances * study.cycles * study.candidates.length;
+}

@@ -1,0 +1,50 @@
+import type { BlockReply, BlockTask } from '../outcomes/block.js';
+import { InstanceFault } from './instance-fault.js';
+
+/** A block as a thread returned it. */
+export interface ComputedBlock {
+  readonly csv: string;
+  /** Time of one thread, s. */
+  readonly computeS: number;
+}
+
+export interface ComputeOptions {
+  /** In the order in which they are begun; results must not depend on it. */
+  readonly tasks: readonly BlockTask[];
+  /** Blocks in flight at a time: one per thread. */
+  readonly inFlight: number;
+  readonly run: (task: BlockTask) => Promise<BlockReply>;
+  /** Keeps a block for good; the next block of the same thread waits for it. */
+  readonly keep: (task: BlockTask, block: ComputedBlock) => Promise<void>;
+  /** Once aborted, no further block is begun; those in flight are finished and kept. */
+  readonly stop: AbortSignal;
+}
+
+/**
+ * Computes blocks, as many at a time as there are threads.
+ *
+ * Blocks are kept as they come, so that an interruption costs only those in flight. Nothing is summed here: whoever
+ * summarises reads them in block order, because sums of floating-point numbers depend on order.
+ *
+ * @throws InstanceFault or LostBlock, the first that occurs, after the blocks in flight are kept
+ */
+export async function computeBlocks({ tasks, inFlight, run, keep, stop }: ComputeOptions): Promise<void> {
+  const failure = new AbortController();
+  const waiting = tasks.values();
+  const lane = async () => {
+    while (!stop.aborted && !failure.signal.aborted) {
+      const next = waiting.next();
+      if (next.done) return;
+      const reply = await run(next.value);
+      if ('fault' in reply) throw new InstanceFault(next.value.candidate, reply.fault);
+      await keep(next.value, reply);
+    }
+  };
+  const lanes = Array.from({ length: inFlight }, () =>
+    lane().catch((error: unknown) => {
+      if (!failure.signal.aborted) failure.abort(error);
+    }),
+  );
+  await Promise.all(lanes);
+  failure.signal.throwIfAborted();
+}

@@ -1,0 +1,105 @@
+import { createHash } from 'node:crypto';
+import { mkdir, readdir, readFile, rm } from 'node:fs/promises';
+import { dirname, join } from 'node:path';
+import { type BlockTask, TWIN_BLOCK } from '../outcomes/block.js';
+import type { ComputedBlock } from './compute-blocks.js';
+import { errorCode, UNFINISHED, writeDurably } from './durable-file.js';
+import { FolderRefused } from './folder-refused.js';
+import { Journal } from './journal.js';
+import { isLockFile, takeLock } from './lock.js';
+
+/** Names in a run folder, apart from the results. */
+export const RUN_FILE = {
+  study: 'study.yaml',
+  resolved: 'study.resolved.json',
+  inputs: 'inputs',
+  outcomes: 'outcomes',
+  journal: 'journal.jsonl',
+  record: 'run.json',
+} as const;
+
+/** The folder of a run, held by this process until it is closed. */
+export class RunFolder {
+  readonly path: string;
+  readonly journal: Journal;
+  readonly #release: () => Promise<void>;
+
+  private constructor(path: string, journal: Journal, release: () => Promise<void>) {
+    this.path = path;
+    this.journal = journal;
+    this.#release = release;
+  }
+
+  /**
+   * Takes a folder for a run, a new one if there is none.
+   *
+   * @param discard names of what an earlier run left that are removed first
+   * @throws FolderRefused if it holds something else than a run, or a run that goes on
+   */
+  static async open(path: string, discard: readonly string[]): Promise<RunFolder> {
+    await refuseIfForeign(path);
+    const release = await takeLock(path);
+    try {
+      for (const name of discard) await rm(join(path, name), { recursive: true, force: true });
+      return new RunFolder(path, await Journal.open(join(path, RUN_FILE.journal)), release);
+    } catch (error) {
+      await release();
+      throw error;
+    }
+  }
+
+  /** @returns the text of a file in the folder, undefined if there is none */
+  async read(name: string): Promise<string | undefined> {
+    try {
+      return await readFile(join(this.path, name), 'utf8');
+    } catch (error) {
+      if (errorCode(error) === 'ENOENT') return undefined;
+      throw error;
+    }
+  }
+
+  async write(name: string, text: string): Promise<void> {
+    const path = join(this.path, name);
+    await mkdir(dirname(path), { recursive: true });
+    await writeDurably(path, text);
+  }
+
+  /** Removes a file or folder, if it is there. */
+  async remove(name: string): Promise<void> {
+    await rm(join(this.path, name), { recursive: true, force: true });
+  }
+
+  /** Keeps a block: first its file, then its line in the journal. */
+  async keep(task: BlockTask, key: string, instances: number, { csv, computeS }: ComputedBlock): Promise<void> {
+    await this.write(blockFile(task), csv);
+    await this.journal.append({ ...task, key, instances, sha256: sha256(csv), compute_s: computeS });
+  }
+
+  async close(): Promise<void> {
+    await this.journal.close();
+    await this.#release();
+  }
+}
+
+/** Path of a block within the run folder, with `/` as in the journal of every system. */
+export function blockFile({ candidate, block }: BlockTask): string {
+  const name = block === TWIN_BLOCK ? 'twin' : `block-${String(block).padStart(4, '0')}`;
+  return `${RUN_FILE.outcomes}/${candidate}/${name}.csv`;
+}
+
+/** Checksum as in the journal. */
+export function sha256(text: string): string {
+  return createHash('sha256').update(text).digest('hex');
+}
+
+/** Nothing is written into, or removed from, a folder that a run did not make. */
+async function refuseIfForeign(path: string): Promise<void> {
+  const names = await mkdir(path, { recursive: true })
+    .then(() => readdir(path))
+    .catch((error: unknown) => {
+      throw new FolderRefused(`${path} cannot be used: ${error instanceof Error ? error.message : String(error)}`);
+    });
+  if (names.includes(RUN_FILE.journal) || names.includes(RUN_FILE.resolved)) return;
+  const other = names.find((name) => !isLockFile(name) && !name.endsWith(UNFINISHED));
+  if (other !== undefined) throw new FolderRefused(`${path} is not the folder of a run: it holds ${other}`);
+}

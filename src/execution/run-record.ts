@@ -1,0 +1,65 @@
+import { hostname } from 'node:os';
+import { RUN_FILE, type RunFolder } from './run-folder.js';
+
+/** How a session of a run ended; null while it goes on, and for ever if the machine stopped under it. */
+export type SessionEnd = 'complete' | 'interrupted' | 'blocks missing' | 'failed' | null;
+
+/** One call of `run` on a folder. */
+export interface Session {
+  readonly host: string;
+  readonly system: string;
+  readonly node: string;
+  readonly threads: number;
+  /** ISO 8601, UTC. */
+  readonly started: string;
+  readonly duration_s: number | null;
+  readonly ended: SessionEnd;
+}
+
+/** Who computed what, where and when: beside the result, not part of it. */
+export class RunRecord {
+  readonly #folder: RunFolder;
+  readonly #earlier: readonly Session[];
+  readonly #session: Session;
+
+  private constructor(folder: RunFolder, earlier: readonly Session[], session: Session) {
+    this.#folder = folder;
+    this.#earlier = earlier;
+    this.#session = session;
+  }
+
+  /** Begins a session after those that the folder tells of. */
+  static async begin(folder: RunFolder, threads: number, started: Date): Promise<RunRecord> {
+    const record = new RunRecord(folder, readSessions(await folder.read(RUN_FILE.record)), {
+      host: hostname(),
+      system: `${process.platform} ${process.arch}`,
+      node: process.version,
+      threads,
+      started: started.toISOString(),
+      duration_s: null,
+      ended: null,
+    });
+    await record.#write(record.#session);
+    return record;
+  }
+
+  async end(ended: SessionEnd, durationS: number): Promise<void> {
+    await this.#write({ ...this.#session, duration_s: durationS, ended });
+  }
+
+  async #write(session: Session): Promise<void> {
+    const sessions = [...this.#earlier, session];
+    const interruptions = this.#earlier.filter(({ ended }) => ended !== 'complete').length;
+    await this.#folder.write(RUN_FILE.record, `${JSON.stringify({ interruptions, sessions }, null, 2)}\n`);
+  }
+}
+
+/** A record that cannot be read is begun anew: nothing depends on it. */
+function readSessions(text: string | undefined): Session[] {
+  try {
+    const record: { readonly sessions?: unknown } | null = JSON.parse(text ?? 'null');
+    return Array.isArray(record?.sessions) ? record.sessions : [];
+  } catch {
+    return [];
+  }
+}

@@ -1,0 +1,34 @@
+import type { DutyCycle } from '../duty/course.js';
+import { lastLoadSegment } from '../duty/course.js';
+import type { BankFactors } from '../sampling/bank-factors.js';
+import type { Journey } from './advance.js';
+import { beginCycle, endCycle, type Recorder } from './recorder.js';
+import { runSegment, startCycle } from './run-cycle.js';
+
+/**
+ * Takes a bank through its whole course and records every cycle.
+ *
+ * @throws Error if a charge is no longer finite
+ */
+export function runCourse(
+  journey: Journey,
+  recorder: Recorder,
+  course: readonly DutyCycle[],
+  factors: BankFactors,
+  onCycle: (cycle: number) => void = () => undefined,
+): void {
+  for (const cycle of course) {
+    beginCycle(recorder);
+    onCycle(recorder.cycle);
+    startCycle(journey);
+    const lastLoad = lastLoadSegment(cycle);
+    cycle.segments.forEach((segment, index) => {
+      recorder.loadAhead = index <= lastLoad;
+      runSegment(journey, segment, factors);
+    });
+    endCycle(recorder, journey);
+    if (!journey.kernel.state.charge.every(Number.isFinite)) {
+      throw new Error(`charge is not finite after cycle ${recorder.cycle}`);
+    }
+  }
+}

@@ -1,0 +1,85 @@
+import { z } from 'zod';
+import { amount, choice, count } from './amount.js';
+import { bleedSection, cellVoltage } from './bleed.js';
+import { section } from './section.js';
+import { moduleSpread } from './spread.js';
+
+const seconds = (standard: number) => amount({ atLeast: 0, atMost: 86_400 }, { default: standard });
+const current = amount({ above: 0, atMost: 1e6 });
+
+/** Schema of a battery management system, its spread values as `leaf` makes them. */
+function bmsSection<L extends z.ZodType>(leaf: (nominal: z.ZodNumber) => L) {
+  return section({
+    over_voltage: section({
+      cell_V: leaf(cellVoltage).optional(),
+      release_V: leaf(cellVoltage).optional(),
+      delay_s: seconds(2).optional(),
+      release_hold_s: seconds(2).optional(),
+    }).optional(),
+    under_voltage: section({
+      cell_V: leaf(cellVoltage).optional(),
+      release_V: leaf(cellVoltage).optional(),
+      delay_s: seconds(2).optional(),
+      release_hold_s: seconds(60).optional(),
+      release_on_charge: z
+        .boolean('true or false')
+        .meta({ description: 'The latch clears only while charge current flows.', default: false })
+        .optional(),
+    }).optional(),
+    over_current: section({
+      charge_A: leaf(current).optional(),
+      discharge_A: leaf(current).optional(),
+      delay_s: seconds(10).optional(),
+      opens: choice(['path', 'both'], { default: 'path' }).optional(),
+      retry_s: amount({ above: 0, atMost: 86_400 }, { default: 60 }).optional(),
+      lock_after: count({ atLeast: 1, atMost: 1000 })
+        .nullable()
+        .meta({ description: 'Trips within the window after which it stays open; null = never.', default: 5 })
+        .optional(),
+      lock_window_h: amount({ above: 0, atMost: 8784 }, { default: 1 }).optional(),
+      lock: choice(['opposite-current', 'manual'], { default: 'opposite-current' }).optional(),
+    }).optional(),
+    bleed: bleedSection(leaf).optional(),
+    forward_drop_V: amount({ atLeast: 0, atMost: 10 }, { default: 0.7 }).optional(),
+    reclose_A: amount({ atLeast: 0, atMost: 10_000 })
+      .nullable()
+      .meta({ description: 'Permitted current that removes the forward drop; null = never.', default: 1 })
+      .optional(),
+    reclose_delay_s: seconds(0.1).optional(),
+    asleep_mA: amount({ atLeast: 0, atMost: 10_000 }, { default: 0.1 }).optional(),
+    asleep_after_h: amount({ atLeast: 0, atMost: 8784 }, { default: 24 }).optional(),
+  });
+}
+
+/** BMS of a population: thresholds, limits and bleed may spread between modules. */
+export const POPULATION_BMS = bmsSection(moduleSpread);
+/** BMS of a module written down: every value a number. */
+export const EXPLICIT_BMS = bmsSection((nominal) => nominal);
+
+/** What both have in common; a number is a spread of nothing. */
+export type BmsInput = z.infer<typeof POPULATION_BMS>;
+
+/**
+ * Defaults of every stock [trade practice: levels, delays, limits; own choice: hold times, sleep].
+ * Thresholds and their spreads come from the grade.
+ */
+export const DEFAULT_BMS = {
+  over_voltage: { release_V: 3.45, delay_s: 2, release_hold_s: 2 },
+  under_voltage: { release_V: 2.9, delay_s: 2, release_hold_s: 60, release_on_charge: false },
+  over_current: {
+    charge_A: 100,
+    discharge_A: 100,
+    delay_s: 10,
+    opens: 'path',
+    retry_s: 60,
+    lock_after: 5,
+    lock_window_h: 1,
+    lock: 'opposite-current',
+  },
+  bleed: { rule: 'above-lowest', when: 'always', start_V: 3.45, current_mA: 50, delta_mV: 10 },
+  forward_drop_V: 0.7,
+  reclose_A: 1,
+  reclose_delay_s: 0.1,
+  asleep_mA: 0.1,
+  asleep_after_h: 24,
+} as const satisfies BmsInput;

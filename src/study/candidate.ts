@@ -1,0 +1,52 @@
+import { z } from 'zod';
+import { amount, choice } from './amount.js';
+import { bleedSection } from './bleed.js';
+import { CHARGER } from './charger.js';
+import { STRING_LEADS } from './leads.js';
+import { LOAD } from './load.js';
+import { named, section } from './section.js';
+import { moduleId, NAME, NAME_RULE } from './stock.js';
+
+/** Longest string and most strings in parallel; with 16 cells per module that is 64 cells in series at most. */
+export const MOST_POSITIONS = 4;
+export const MOST_STRINGS = 8;
+
+const STRINGS_RULE = `a list of 1 to ${MOST_STRINGS} strings such as [[A1, A2], [B1, B2]]`;
+const STRING_RULE = `a list of 1 to ${MOST_POSITIONS} modules from the negative end`;
+
+const options = {
+  string_lead_mOhm: STRING_LEADS.optional(),
+  link_mOhm: amount(
+    { atLeast: 0.001, atMost: 1e7 },
+    { description: 'Between neighbouring strings at equal positions, cross-linked only.', default: 1 },
+  ).optional(),
+  charger: CHARGER.optional(),
+  load: LOAD.optional(),
+  commissioning: choice(['as-received', 'each-module-full'], { default: 'as-received' }).optional(),
+  bleed: bleedSection((nominal) => nominal)
+    .meta({ description: 'Replaces the bleed of every module, key by key.' })
+    .optional(),
+};
+
+/** The section `bank`: options of every candidate that does not say otherwise. */
+export const BANK = section(options);
+
+/** One way of wiring the bank. */
+const CANDIDATE = section({
+  title: z.string('a text').max(200, 'a text of at most 200 characters').optional(),
+  wiring: choice(['strings', 'cross-linked', 'native']),
+  modules: z
+    .array(z.array(moduleId, STRING_RULE).min(1, STRING_RULE).max(MOST_POSITIONS, STRING_RULE), STRINGS_RULE)
+    .min(1, STRINGS_RULE)
+    .max(MOST_STRINGS, STRINGS_RULE)
+    .meta({
+      description: `Modules of each string from its negative end: at most ${MOST_POSITIONS} in series (64 cells), ${MOST_STRINGS} in parallel.`,
+    }),
+  ...options,
+});
+
+/** The section `candidates`. */
+export const CANDIDATES = named(NAME, NAME_RULE, CANDIDATE);
+
+export type BankInput = z.infer<typeof BANK>;
+export type CandidateInput = z.infer<typeof CANDIDATE>;

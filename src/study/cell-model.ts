@@ -1,0 +1,64 @@
+import { z } from 'zod';
+import { type About, amount } from './amount.js';
+import { section } from './section.js';
+
+/** Cells in series that modules have. */
+export const CELL_COUNTS = [4, 8, 16] as const;
+
+/** @returns schema of a value that every cell of a module has: one number for all, or one per cell */
+export function cellValues(range: z.ZodNumber) {
+  const list = z.array(range, 'a list with one value per cell').min(1, 'a list with one value per cell');
+  return z.union([range, list], 'a number, or a list with one value per cell');
+}
+
+/** Resistance of a polarisation pair, mOhm per cell. */
+export const polarisationMOhm = amount({ above: 0, atMost: 10_000 });
+
+/** @returns schema of polarisation pairs, their resistance as `leaf` makes it */
+export function polarisationPairs<L extends z.ZodType>(leaf: L) {
+  return z
+    .array(
+      section({ mOhm: leaf, tau_s: amount({ above: 0, atMost: 1e7 }) }),
+      'a list of pairs such as {mOhm: 0.4, tau_s: 60}',
+    )
+    .max(8, 'a list of at most 8 pairs')
+    .meta({ description: 'Default: 0.5 and 0.75 of the cell resistance with 60 s and 1800 s.' });
+}
+
+const described = (description: string, standard?: About['default']): About =>
+  standard === undefined ? { description } : { description, default: standard };
+
+/** What all cells of a module have in common. */
+export const commonCellKeys = {
+  cells_in_series: z
+    .literal([...CELL_COUNTS], 'one of 4, 8, 16')
+    .meta({ description: 'Cells of a module.', default: 4 })
+    .optional(),
+  rated_Ah: amount({ above: 0, atMost: 100_000 }, described('Capacity on the label.')).optional(),
+  ocv: z.string('the name of a table under ocv').meta(described('Open-circuit table.', 'default')).optional(),
+  hysteresis_mV: amount(
+    { atLeast: 0, atMost: 500 },
+    described('Half of the gap between the charge and discharge branch.', 7.5),
+  ).optional(),
+  hysteresis_rate: amount({ atLeast: 0, atMost: 10_000 }, described("Plett's gamma.", 60)).optional(),
+};
+
+/** Bounds of what a cell or module can have, shared by populations and modules written down. */
+export const POSSIBLE = {
+  capacityAh: amount({ above: 0, atMost: 100_000 }),
+  cellResistanceMOhm: amount({ above: 0, atMost: 10_000 }),
+  leakagePercentPerMonth: amount({ atLeast: 0, atMost: 100 }),
+  standbyMA: amount({ atLeast: 0, atMost: 100_000 }),
+  efficiency: amount({ above: 0, atMost: 1 }),
+  chargePercent: amount({ atLeast: 0, atMost: 100 }),
+  seriesMOhm: amount({ atLeast: 0, atMost: 10_000 }),
+};
+
+/** Defaults of the cell that no grade changes [own choice]. */
+export const DEFAULT_CELL = { cells_in_series: 4, ocv: 'default', hysteresis_mV: 7.5, hysteresis_rate: 60 } as const;
+
+/** Default polarisation pairs as shares of the cell resistance [own choice: 0.4 and 0.6 mOhm beside 0.8 mOhm]. */
+export const DEFAULT_POLARISATION = [
+  { ofResistance: 0.5, timeConstantS: 60 },
+  { ofResistance: 0.75, timeConstantS: 1800 },
+] as const;

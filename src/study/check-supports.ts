@@ -1,0 +1,56 @@
+import type { QuantityName } from './quantities.js';
+import { QUANTITY_KEYS } from './quantity-keys.js';
+import type { Reading } from './reading.js';
+import type { ResolvedSpread } from './resolve-spread.js';
+import type { StudyPath } from './study-path.js';
+import { inUnitOfKey, unitOfKey } from './units.js';
+
+type Bound = 'above 0' | '0 or more' | 'above 0 and at most 1' | 'from 0 to 1';
+
+/** Values a quantity of a real module can have. */
+const POSSIBLE: Readonly<Record<QuantityName, Bound>> = {
+  capacityAh: 'above 0',
+  resistanceOhm: 'above 0',
+  leakagePerMonth: '0 or more',
+  standbyA: '0 or more',
+  efficiency: 'above 0 and at most 1',
+  arrivalCharge: 'from 0 to 1',
+  pathResistanceOhm: '0 or more',
+  jointResistanceOhm: '0 or more',
+  overVoltageV: 'above 0',
+  overVoltageReleaseV: 'above 0',
+  underVoltageV: 'above 0',
+  underVoltageReleaseV: 'above 0',
+  overCurrentChargeA: 'above 0',
+  overCurrentDischargeA: 'above 0',
+  bleedA: '0 or more',
+  bleedStartV: 'above 0',
+};
+
+/** Sums of decimals reach 1 only up to rounding. */
+const ROUNDING = 1e-12;
+
+/** Refuses spreads that can give an impossible value: nothing is clipped when modules are drawn. */
+export function checkSupports(
+  owner: StudyPath,
+  spreads: Readonly<Record<QuantityName, ResolvedSpread>>,
+  reading: Reading,
+): void {
+  for (const [name, bound] of Object.entries(POSSIBLE) as [QuantityName, Bound][]) {
+    const { lower, upper } = spreads[name];
+    const lowFails = bound.startsWith('above') ? !(lower > 0) : !(lower >= -ROUNDING);
+    const highFails = bound.endsWith('1') && !(upper <= 1 + ROUNDING);
+    if (!lowFails && !highFails) continue;
+    const key = QUANTITY_KEYS[name];
+    const shown = `${round(inUnitOfKey(key, lower))} to ${round(inUnitOfKey(key, upper))} ${unitOfKey(key)}`.trim();
+    const rule = bound === 'from 0 to 1' ? 'from 0 to 100 %' : bound;
+    reading.faultWith(
+      [...owner, ...key.split('.')],
+      `must be spread so that every value is ${rule} (levels summed, unbounded laws cut at 5 sd), got ${shown}`,
+    );
+  }
+}
+
+function round(value: number): number {
+  return Number(value.toPrecision(5));
+}

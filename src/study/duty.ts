@@ -1,0 +1,69 @@
+import { z } from 'zod';
+import { amount, count } from './amount.js';
+import { filePath } from './file-path.js';
+import { exactlyOneOf, section } from './section.js';
+import { bankSpread } from './spread.js';
+
+const hours = amount({ above: 0, atMost: 8784 });
+const power = amount({ above: 0, atMost: 1e6 });
+const chargePower = amount(
+  { above: 0, atMost: 1e6 },
+  { description: 'Power the charger can give; without it only its own limit counts.' },
+).optional();
+
+const PHASE_RULE = 'a phase such as {discharge_W: 1000, for_h: 3}, {rest_h: 1} or {charge: to-full, at_most_h: 8}';
+
+/** One phase; which one is told by its first key. */
+const PHASE = z.union(
+  [
+    section({ discharge_W: power, for_h: hours }),
+    section({ discharge_A: amount({ above: 0, atMost: 100_000 }), for_h: hours }),
+    section({ rest_h: hours }),
+    section({ charge: z.literal('to-full', 'to-full'), at_most_h: hours, charge_W: chargePower }),
+    section({ charge_for_h: hours, charge_W: chargePower }),
+  ],
+  PHASE_RULE,
+);
+
+export type PhaseInput = z.infer<typeof PHASE>;
+
+const PHASES = z
+  .array(PHASE, 'a list of phases')
+  .min(1, 'a list of phases')
+  .max(10_000, 'a list of at most 10000 phases');
+
+/** CSV with the columns time_h, load_W, charge_W. */
+const PROFILE = filePath.meta({
+  description: 'CSV with the columns time_h (from 0, ascending), load_W and charge_W, constant until the next row.',
+});
+
+const PART = section({
+  name: z.string('a name').min(1, 'a name').max(80, 'a name of at most 80 characters'),
+  repeat: count(
+    { atLeast: 1, atMost: 10_000 },
+    { description: 'Times the part is run before the next.', default: 1 },
+  ).optional(),
+  profile: PROFILE.optional(),
+  phases: PHASES.optional(),
+}).refine(...exactlyOneOf('profile', 'phases'));
+
+const factor = amount({ above: 0, atMost: 100 });
+
+/** The section `duty`: what the bank has to do, again and again up to the horizon. */
+export const DUTY = section({
+  profile: PROFILE.optional(),
+  phases: PHASES.optional(),
+  parts: z.array(PART, 'a list of parts').min(1, 'a list of parts').max(100, 'a list of at most 100 parts').optional(),
+  cycle_h: amount(
+    { atLeast: 0.1, atMost: 8784 },
+    { description: 'Length of a cycle of a profile.', default: 24 },
+  ).optional(),
+  load_factor: bankSpread(factor).meta({ description: 'Factor on every load of a bank.', default: 1 }).optional(),
+  charge_factor: bankSpread(factor)
+    .meta({ description: 'Factor on the charging power of a bank.', default: 1 })
+    .optional(),
+}).refine(...exactlyOneOf('profile', 'phases', 'parts'));
+
+export type DutyInput = z.infer<typeof DUTY>;
+
+export const DEFAULT_CYCLE_H = 24;

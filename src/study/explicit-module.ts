@@ -1,0 +1,33 @@
+import type { z } from 'zod';
+import { amount } from './amount.js';
+import { EXPLICIT_BMS } from './bms.js';
+import { cellValues, commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
+import { atMostOneOf, named, section } from './section.js';
+import { MODULE_ID, MODULE_ID_RULE } from './stock.js';
+
+const oneLeakage = atMostOneOf('leakage_mA', 'leakage_percent_per_month');
+
+/** A module written down value by value; where cells differ, a list holds one value per cell from the negative end. */
+const EXPLICIT_MODULE = section({
+  ...commonCellKeys,
+  capacity_Ah: cellValues(POSSIBLE.capacityAh).optional(),
+  cell_resistance_mOhm: cellValues(POSSIBLE.cellResistanceMOhm).optional(),
+  polarisation: polarisationPairs(cellValues(polarisationMOhm)).optional(),
+  leakage_percent_per_month: cellValues(POSSIBLE.leakagePercentPerMonth).optional(),
+  leakage_mA: cellValues(amount({ atLeast: 0, atMost: 100_000 })).optional(),
+  standby_mA: POSSIBLE.standbyMA.optional(),
+  coulombic_efficiency: cellValues(POSSIBLE.efficiency).optional(),
+  arrival_charge_percent: cellValues(POSSIBLE.chargePercent).optional(),
+  path_resistance_mOhm: POSSIBLE.seriesMOhm.optional(),
+  joint_resistance_mOhm: POSSIBLE.seriesMOhm.optional(),
+  bms: EXPLICIT_BMS.optional(),
+}).refine(...oneLeakage);
+
+/** A stock of modules written down; `defaults` holds what they have in common. */
+export const EXPLICIT_STOCK = section({
+  defaults: EXPLICIT_MODULE.optional(),
+  modules: named(MODULE_ID, MODULE_ID_RULE, EXPLICIT_MODULE),
+});
+
+export type ExplicitModuleInput = z.infer<typeof EXPLICIT_MODULE>;
+export type ExplicitStockInput = z.infer<typeof EXPLICIT_STOCK>;

@@ -1,0 +1,87 @@
+import { resolveAcceptance } from './acceptance.js';
+import { didYouMean } from './nearest-name.js';
+import { resolveOcv } from './ocv.js';
+import type { Origin } from './origin.js';
+import type { ReadStudyOptions } from './read-study.js';
+import type { Reading } from './reading.js';
+import { checkReleaseGaps } from './release-gap.js';
+import { resolveCandidates } from './resolve-candidates.js';
+import { resolveDuty } from './resolve-duty.js';
+import { resolveStocks } from './resolve-stocks.js';
+import type { Candidate, Study } from './study.js';
+import { DEFAULT_TOP, FORMAT, type StudyInput } from './study-file.js';
+import { unitOfKey } from './units.js';
+import { studyWarnings } from './warnings.js';
+
+type TopKey = keyof typeof DEFAULT_TOP;
+
+/** @returns the resolved study, or undefined after recording in `reading` what keeps it from being one */
+export function resolveStudy(input: StudyInput, options: ReadStudyOptions, reading: Reading): Study | undefined {
+  const top = resolveTop(input, options, reading);
+  const ocv = resolveOcv(input.ocv, reading);
+  const stocks = resolveStocks(input.stock ?? {}, ocv, reading);
+  const duty = input.duty && resolveDuty(input.duty, reading);
+  const candidates = resolveCandidates(input.candidates ?? {}, input.bank, stocks, reading);
+  const reference = resolveReference(input, candidates, reading);
+  const acceptance = resolveAcceptance(input.acceptance ?? [], options.measures, reading);
+  if (duty === undefined) return undefined;
+  const study: Study = {
+    format: FORMAT,
+    ...top,
+    plan: 'independent',
+    ocvTables: ocv.tables,
+    stocks,
+    duty,
+    candidates,
+    reference,
+    acceptance,
+  };
+  checkReleaseGaps(study, reading);
+  reading.warnings.push(...studyWarnings(study));
+  return study;
+}
+
+type Top = Pick<
+  Study,
+  'title' | 'seed' | 'instances' | 'blockSize' | 'cycles' | 'confidenceFraction' | 'driftLimitFraction'
+>;
+
+function resolveTop(input: StudyInput, { fileName, overrides }: ReadStudyOptions, reading: Reading): Top {
+  const note = (path: string, value: string | number, source: Origin['source']): void => {
+    reading.origins.push({ path, value: String(value), unit: unitOfKey(path), source });
+  };
+  const number = (key: Exclude<TopKey, 'seed'>): number => {
+    const value = input[key] ?? DEFAULT_TOP[key];
+    note(key, value, input[key] === undefined ? 'default' : 'study');
+    return value;
+  };
+  const title = input.title ?? fileName;
+  note('title', title, input.title === undefined ? 'default' : 'study');
+  const seed = overrides?.seed ?? String(input.seed ?? DEFAULT_TOP.seed);
+  const ownSeed = input.seed === undefined ? 'default' : 'study';
+  note('seed', seed, overrides?.seed === undefined ? ownSeed : 'command line');
+  if (overrides?.instances !== undefined) note('instances', overrides.instances, 'command line');
+  return {
+    title,
+    seed,
+    instances: overrides?.instances ?? number('instances'),
+    blockSize: number('block'),
+    cycles: number('cycles'),
+    confidenceFraction: number('confidence_percent') / 100,
+    driftLimitFraction: number('drift_limit_percent') / 100,
+  };
+}
+
+function resolveReference(input: StudyInput, candidates: readonly Candidate[], reading: Reading): string {
+  const names = Object.keys(input.candidates ?? {});
+  const reference = input.reference ?? names[0] ?? candidates[0]?.key ?? '';
+  if (input.reference !== undefined && !names.includes(reference)) {
+    if (!reading.isIncomplete(['candidates', reference])) {
+      reading.fault(['reference'], 'the name of a candidate', didYouMean(reference, names));
+    }
+    return reference;
+  }
+  const source = input.reference === undefined ? 'default' : 'study';
+  reading.origins.push({ path: 'reference', value: reference, unit: '', source });
+  return reference;
+}

@@ -1,0 +1,65 @@
+const SECONDS_PER_HOUR = 3600;
+
+/** A month of the study language, days. */
+export const DAYS_PER_MONTH = 30;
+
+interface KeyUnit {
+  readonly suffix: string;
+  readonly unit: string;
+  readonly toSi: (value: number) => number;
+}
+
+const same = (value: number): number => value;
+// Divisions, not factors: 1.5 / 1000 is the double nearest to 0.0015, 1.5 * 0.001 need not be.
+const thousandth = (value: number): number => value / 1000;
+const hundredth = (value: number): number => value / 100;
+
+/** Units by the last words of a key; longer suffixes stand before those they end in. */
+const KEY_UNITS: readonly KeyUnit[] = [
+  { suffix: '_percent_per_month', unit: '%/month', toSi: hundredth },
+  { suffix: '_percent', unit: '%', toSi: hundredth },
+  { suffix: '_mOhm', unit: 'mOhm', toSi: thousandth },
+  { suffix: '_Ah', unit: 'Ah', toSi: same },
+  { suffix: '_mA', unit: 'mA', toSi: thousandth },
+  { suffix: '_mV', unit: 'mV', toSi: thousandth },
+  { suffix: '_A', unit: 'A', toSi: same },
+  { suffix: '_V', unit: 'V', toSi: same },
+  { suffix: '_W', unit: 'W', toSi: same },
+  { suffix: '_h', unit: 'h', toSi: (hours) => hours * SECONDS_PER_HOUR },
+  { suffix: '_s', unit: 's', toSi: same },
+];
+
+/** @returns the unit that a key of the study names, empty if it names none */
+export function unitOfKey(key: string): string {
+  return unitFor(key)?.unit ?? '';
+}
+
+/** @returns the value of a key in the units of the resolved study: SI with charge in Ah, shares as fractions */
+export function siFromKey(key: string, value: number): number {
+  return unitFor(key)?.toSi(value) ?? value;
+}
+
+/** @returns a value of the resolved study in the unit that a key of the study names; inverse of `siFromKey` */
+export function inUnitOfKey(key: string, si: number): number {
+  return si / siFromKey(key, 1);
+}
+
+/** @returns hours in seconds */
+export function secondsFromHours(hours: number): number {
+  return hours * SECONDS_PER_HOUR;
+}
+
+/**
+ * Constant current that takes a share of a capacity in a month.
+ *
+ *   i = share Q / (30 days x 24 h)
+ *
+ * @returns amperes, for `capacityAh` in Ah and `fractionPerMonth` as a fraction
+ */
+export function leakageAFromMonth(fractionPerMonth: number, capacityAh: number): number {
+  return (fractionPerMonth * capacityAh) / (DAYS_PER_MONTH * 24);
+}
+
+function unitFor(key: string): KeyUnit | undefined {
+  return KEY_UNITS.find(({ suffix }) => key.endsWith(suffix) || key === suffix.slice(1));
+}

@@ -1,0 +1,63 @@
+import { mkdirSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
+import { pathToFileURL } from 'node:url';
+import { afterAll, describe, expect, it } from 'vitest';
+import { LostBlock } from '../../src/execution/lost-block.js';
+import { BlockPool } from '../../src/execution/pool.js';
+import { Scratch } from './fake-run.js';
+import { FAKE_STUDY } from './fake-study.js';
+
+const scratch = new Scratch();
+afterAll(() => scratch.remove());
+const TASK = { candidate: 'strings', block: 3 };
+
+async function poolOn(entry: string) {
+  const folder = scratch.next();
+  mkdirSync(folder, { recursive: true });
+  const file = join(folder, 'entry.mjs');
+  writeFileSync(file, entry);
+  const retries: string[] = [];
+  const pool = await BlockPool.start({
+    workerFile: pathToFileURL(file),
+    threads: 2,
+    study: FAKE_STUDY,
+    onRetry: (_, reason) => retries.push(reason),
+  });
+  return { pool, retries };
+}
+
+describe('the pool of threads', () => {
+  // Every way in which a thread can end without a reply; each must end in an error and none in waiting for ever.
+  const deaths: readonly (readonly [string, string])[] = [
+    ['fails to load', 'throw new Error("cannot load");'],
+    ['imports what is not there', 'import "./absent.mjs";'],
+    ['exits while it loads', 'process.exit(1);'],
+    ['exits at work', 'export default () => process.exit(1);'],
+    ['throws at work', 'export default () => { throw new Error("at work"); };'],
+    [
+      'throws behind its own back',
+      'export default () => new Promise(() => setImmediate(() => { throw new Error("late"); }));',
+    ],
+    ['replies what cannot be cloned', 'export default () => () => 1;'],
+  ];
+  it.each(deaths)('gives a block up after three attempts if its thread %s', async (_, entry) => {
+    const { pool, retries } = await poolOn(entry);
+    const error = await pool.run(TASK).catch((reason: unknown) => reason);
+    await pool.close();
+    expect(error).toBeInstanceOf(LostBlock);
+    expect(error).toMatchObject({ task: TASK });
+    expect(String(error)).toContain('strings, block 3');
+    expect(retries).toHaveLength(2);
+  });
+
+  it('hands the study to every thread and tasks by name', async () => {
+    const piscina = JSON.stringify(import.meta.resolve('piscina'));
+    const { pool, retries } = await poolOn(
+      `import { workerData } from ${piscina}; export default (task) => ({ csv: JSON.stringify([workerData, task]), computeS: 0 });`,
+    );
+    const replies = await Promise.all([pool.run(TASK), pool.run(TASK), pool.run(TASK)]);
+    await pool.close();
+    for (const reply of replies) expect('csv' in reply && JSON.parse(reply.csv)).toEqual([FAKE_STUDY, TASK]);
+    expect(retries).toEqual([]);
+  });
+});
