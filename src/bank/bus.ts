@@ -1,15 +1,18 @@
 import type { Bank } from './bank.js';
-import type { BankState } from './bank-state.js';
+import { type BankState, BOTH_WAYS, NO_WAY } from './bank-state.js';
 import {
   type ConductionPoint,
   currentsInto,
+  DEAD_BAND_V,
   effectiveEmfV,
   type NetworkCache,
   networkMap,
+  SLACK_V,
   settleConduction,
   wrongSideV,
 } from './conduction.js';
 import { LEAKING } from './network.js';
+import { FLOW_A } from './protection.js';
 
 /** The charger gives nothing; the load alone sets the bus. */
 export const CHARGER_IDLE = 0;
@@ -38,6 +41,10 @@ export interface BusTerms {
 
 /** Bus voltages below this are no supply, V. */
 const FLOOR_V = 1;
+/** Change of a rectifier's condition per volt of bus voltage below which the bus does not switch it. */
+const LEAST_PER_VOLT = 1e-11;
+/** Share by which the bounds of two regimes overlap, so that a root between them is not lost to rounding. */
+const ROUNDING = 1e-9;
 /** Share of the discriminant that must be to spare before an overloaded bus is tried again. */
 export const OVERLOAD_MARGIN = 0.02;
 
@@ -46,6 +53,8 @@ export interface BusPoint extends ConductionPoint {
   regime: number;
   netA: number;
   netW: number;
+  /** The charger gives current, or a chain conducts: otherwise the bus floats. */
+  fed: boolean;
 }
 
 /** Current that the load draws at a bus voltage, A. */
@@ -84,6 +93,19 @@ export function settleBus(
   terms: BusTerms,
   bus: BusPoint,
 ): void {
+  settleRegime(bank, state, cache, emfV, terms, bus);
+  const charges = bus.regime === CHARGER_AT_POWER || bus.regime === CHARGER_AT_LIMIT || bus.regime === CHARGER_HOLDS;
+  bus.fed = charges || state.conduction.some((conduction) => conduction !== LEAKING);
+}
+
+function settleRegime(
+  bank: Bank,
+  state: BankState,
+  cache: NetworkCache,
+  emfV: Float64Array,
+  terms: BusTerms,
+  bus: BusPoint,
+): void {
   // An overloaded bus is tried again only with some power to spare, so that it does not switch for ever at the limit.
   const margin = bus.regime === BUS_OVERLOADED ? 1 + OVERLOAD_MARGIN : 1;
   if (terms.ceilingV !== null && terms.chargeW > 0) {
@@ -97,13 +119,16 @@ export function settleBus(
       return;
     }
     if (neededA > 0) {
-      if (settleNet(bank, state, cache, emfV, terms.limitA - terms.loadA, -terms.loadW, margin, CHARGER_AT_LIMIT, bus)) {
-        if (bus.bankV * terms.limitA <= terms.chargeW) return;
-      }
+      // Down from the ceiling the charger is bounded by its power, below that by its limit.
+      let mostV = ceilingV;
       if (Number.isFinite(terms.chargeW)) {
         const netW = terms.chargeW - terms.loadW;
-        if (settleNet(bank, state, cache, emfV, -terms.loadA, netW, margin, CHARGER_AT_POWER, bus)) return;
+        const carried = settleNet(bank, state, cache, emfV, -terms.loadA, netW, margin, CHARGER_AT_POWER, bus, mostV);
+        if (carried && terms.chargeW <= bus.bankV * terms.limitA) return;
+        mostV = Math.min(mostV, (1 + ROUNDING) * (terms.chargeW / terms.limitA));
       }
+      const netA = terms.limitA - terms.loadA;
+      if (settleNet(bank, state, cache, emfV, netA, -terms.loadW, margin, CHARGER_AT_LIMIT, bus, mostV)) return;
       carryNothing(bank, state, cache, emfV, bus);
       return;
     }
@@ -112,16 +137,11 @@ export function settleBus(
   carryNothing(bank, state, cache, emfV, bus);
 }
 
-/** The load cannot be carried: a dead bus if nothing conducts, else the bank rests without it. */
-function carryNothing(
-  bank: Bank,
-  state: BankState,
-  cache: NetworkCache,
-  emfV: Float64Array,
-  bus: BusPoint,
-): void {
+/** The load cannot be carried: a dead bus if not even a short circuit would draw current, else the bank rests without it. */
+function carryNothing(bank: Bank, state: BankState, cache: NetworkCache, emfV: Float64Array, bus: BusPoint): void {
   settleConduction(bank, state, cache, emfV, 0, true, bus);
-  if (state.conduction.every((conduction) => conduction === LEAKING)) {
+  // A cut through a cross-linked bank leaves conducting chains on both sides of it.
+  if (bus.bankA > -FLOW_A) {
     bus.regime = BUS_DEAD;
     return;
   }
@@ -136,6 +156,8 @@ function carryNothing(
  * the highest one. There are at most two pieces for each rectifier, so the walk ends.
  *
  * @param margin factor on a power drawn that the bank must be able to carry as well, 1 or more
+ * @param mostV voltage above which the net terms do not hold: a bank that takes nothing but its leak would otherwise be
+ *   driven to megavolts by a charger at its limit, where a constant power draws next to nothing
  * @returns false if no voltage above the floor carries it
  */
 function settleNet(
@@ -148,55 +170,63 @@ function settleNet(
   margin: number,
   regime: number,
   bus: BusPoint,
+  mostV = Number.POSITIVE_INFINITY,
 ): boolean {
   bus.regime = regime;
   bus.netA = netA;
   bus.netW = netW;
   if (netW === 0) {
     settleConduction(bank, state, cache, emfV, netA, false, bus);
-    return netA >= 0 || bus.bankV > FLOOR_V;
+    return bus.bankV <= mostV && (netA >= 0 || bus.bankV > FLOOR_V);
   }
   settleConduction(bank, state, cache, emfV, 0, false, bus);
   const startA = Math.max(netA, 0) + Math.max(netW, 0) / Math.max(bus.bankV, FLOOR_V);
   if (startA > 0) settleConduction(bank, state, cache, emfV, startA, false, bus);
+  if (bus.bankV > mostV) settleConduction(bank, state, cache, emfV, mostV, true, bus);
   let fromV = bus.bankV;
   for (let piece = 0; piece <= 2 * state.conduction.length + 2; piece++) {
     const map = networkMap(bank, state.conduction, cache);
     let openV = 0;
     for (let i = 0; i < map.chains; i++) openV += map.voltagePerEmf[i] * effectiveEmfV(bank, state, i, emfV[i]);
     const rootV = upperRootV(openV, map.bankOhm, netA, netW);
-    const nextV = nextPieceV(bank, state, cache, emfV, fromV, bus);
+    const next = nextPiece(bank, state, cache, emfV, fromV, bus);
     const spared = margin === 1 || netW > 0 || upperRootV(openV, map.bankOhm, netA, margin * netW) > FLOOR_V;
-    if (rootV > FLOOR_V && rootV >= nextV && spared) {
+    if (rootV > FLOOR_V && rootV >= next.atV && rootV <= mostV && spared) {
       currentsInto(bank, state, cache, emfV, rootV, true, bus);
       return true;
     }
-    if (nextV <= FLOOR_V) return false;
-    fromV = nextV - 1e-9;
+    if (next.atV <= FLOOR_V) return false;
+    fromV = next.beyondV;
     settleConduction(bank, state, cache, emfV, fromV, true, bus);
   }
   return false;
 }
 
-/** Highest bus voltage below `fromV` at which a rectifier of the present pattern has to switch; -Infinity if none. */
-function nextPieceV(
+/**
+ * Highest bus voltage below `fromV` at which a rectifier of the present pattern has to switch, -Infinity if none, and one
+ * far enough beyond for it to be switched: a chain that sees little of the bus voltage needs more than a hair.
+ */
+function nextPiece(
   bank: Bank,
   state: BankState,
   cache: NetworkCache,
   emfV: Float64Array,
   fromV: number,
   bus: BusPoint,
-): number {
-  // Each condition is linear in bus voltage: two points give the line.
+): { readonly atV: number; readonly beyondV: number } {
   const count = state.conduction.length;
-  let next = Number.NEGATIVE_INFINITY;
+  let next = { atV: Number.NEGATIVE_INFINITY, beyondV: Number.NEGATIVE_INFINITY };
+  if (state.chainMode.every((mode) => mode === BOTH_WAYS || mode === NO_WAY)) return next;
+  // Each condition is linear in bus voltage: two points give the line.
   currentsInto(bank, state, cache, emfV, fromV, true, bus);
   const high = Float64Array.from({ length: count }, (_, i) => wrongSideV(bank, state, i, emfV[i], bus.currentA[i]));
   currentsInto(bank, state, cache, emfV, fromV - 1, true, bus);
   for (let i = 0; i < count; i++) {
-    const low = wrongSideV(bank, state, i, emfV[i], bus.currentA[i]);
-    if (!(low > high[i])) continue;
-    next = Math.max(next, Math.min(fromV, fromV + high[i] / (low - high[i])));
+    const perVolt = wrongSideV(bank, state, i, emfV[i], bus.currentA[i]) - high[i];
+    if (!(perVolt > LEAST_PER_VOLT)) continue;
+    const atV = Math.min(fromV, fromV + high[i] / perVolt);
+    const beyond = state.conduction[i] === LEAKING ? DEAD_BAND_V : 2 * SLACK_V;
+    if (atV > next.atV) next = { atV, beyondV: atV - beyond / perVolt };
   }
   return next;
 }
@@ -205,4 +235,3 @@ function nextPieceV(
 export function loadIsServed(regime: number): boolean {
   return regime !== BUS_DEAD && regime !== BUS_OVERLOADED;
 }
-

@@ -1,5 +1,5 @@
 import type { Bank } from './bank.js';
-import { BOTH_WAYS, type BankState, DISCHARGE_ONLY, NO_WAY } from './bank-state.js';
+import { type BankState, BOTH_WAYS, DISCHARGE_ONLY, NO_WAY } from './bank-state.js';
 import { CLOSED, FORWARD, LEAK_S, LEAKING, type NetworkMap, solveNetwork } from './network.js';
 
 /** Maps of the patterns met lately; a bank runs through few of them again and again. */
@@ -9,7 +9,12 @@ export interface NetworkCache {
 
 const MOST_MAPS = 64;
 /** Voltage by which a rectifier must be on the wrong side before it is switched: far below any voltage that matters. */
-const SLACK_V = 1e-9;
+export const SLACK_V = 1e-9;
+/**
+ * Voltage beyond its drop at which a leaking rectifier begins to conduct, V. Nodes that hang on leaks alone are known to
+ * about a microvolt: without this band, rounding could call either state of a rectifier at its threshold the wrong one.
+ */
+export const DEAD_BAND_V = 1e-5;
 
 export function createNetworkCache(): NetworkCache {
   return { maps: new Map() };
@@ -45,7 +50,7 @@ export function effectiveEmfV(bank: Bank, state: BankState, i: number, emfV: num
  * How far chain `i` is from having to switch, V: above 0 it stands on the wrong side of its rectifier.
  *
  * Complementarity of a rectifier: it conducts and its current has the permitted sign, or it leaks and the voltage across
- * it is below the drop. Both are one voltage: v - (E -+ drop), taken positive against conduction.
+ * it is not beyond the drop. Both are one voltage: v - (E -+ drop), taken positive against conduction.
  */
 export function wrongSideV(bank: Bank, state: BankState, i: number, emfV: number, currentA: number): number {
   const mode = state.chainMode[i];
@@ -56,7 +61,7 @@ export function wrongSideV(bank: Bank, state: BankState, i: number, emfV: number
   const conductance = conducting ? 1 / bank.chainOhm[i] + LEAK_S : LEAK_S;
   const terminalV = effectiveEmfV(bank, state, i, emfV) + currentA / conductance;
   const against = mode === DISCHARGE_ONLY ? terminalV - thresholdV : thresholdV - terminalV;
-  return conducting ? against : -against;
+  return conducting ? against : -against - DEAD_BAND_V;
 }
 
 /** Sets the conduction of chains that have no choice; rectifiers keep theirs. */

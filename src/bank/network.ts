@@ -1,8 +1,8 @@
-import { invertConductances } from '../mathematics/conductance-inverse.js';
+import { solveConductances } from '../mathematics/conductance-solve.js';
 import type { ChainedWiring } from './chains.js';
 import { BUS_MINUS, BUS_PLUS } from './wiring-graph.js';
 
-/** Conductance that a blocked direction keeps, and of the shunt at every node, S. */
+/** Conductance that a blocked direction keeps, S. */
 export const LEAK_S = 1e-6;
 
 /** How a chain takes part in the network: as a resistor, as a conducting rectifier, or blocked but for its leak. */
@@ -37,7 +37,8 @@ export function chainConductanceS(state: number, ohm: number): number {
  *
  *   G V = e_bus I_bank + sum_i g_i E_i d_i,   I_i = g_i (d_i . V - E_i)
  *
- * d_i has +1 at the positive and -1 at the negative end of chain i; every node has a shunt, so G is positive definite.
+ * d_i has +1 at the positive and -1 at the negative end of chain i. Every chain keeps at least its leak, so each node has a
+ * path to bus minus and G is positive definite. (Shunts at the nodes would do that too, but make like modules drift.)
  *
  * @param chainOhm total resistance of each chain, above 0
  * @param states CLOSED, FORWARD or LEAKING of each chain
@@ -46,7 +47,7 @@ export function solveNetwork(wiring: ChainedWiring, chainOhm: Float64Array, stat
   const n = wiring.nodes - 1;
   const count = wiring.chains.length;
   const between = new Float64Array(n * n);
-  const toGround = new Float64Array(n).fill(LEAK_S);
+  const toGround = new Float64Array(n);
   const stamp = (from: number, to: number, g: number): void => {
     if (from === BUS_MINUS) toGround[to - 1] += g;
     else if (to === BUS_MINUS) toGround[from - 1] += g;
@@ -60,25 +61,26 @@ export function solveNetwork(wiring: ChainedWiring, chainOhm: Float64Array, stat
   wiring.chains.forEach((chain, i) => {
     stamp(chain.from, chain.to, g[i]);
   });
-  const inverse = invertConductances(between, toGround);
-  const impedance = (row: number, column: number): number =>
-    row === BUS_MINUS || column === BUS_MINUS ? 0 : inverse[(row - 1) * n + column - 1];
+  // One case for a current of 1 A through each chain, one for 1 A into the bus.
+  const nodeV = new Float64Array((count + 1) * n);
+  const voltage = (through: number, node: number): number => (node === BUS_MINUS ? 0 : nodeV[through * n + node - 1]);
+  wiring.chains.forEach((chain, i) => {
+    if (chain.to !== BUS_MINUS) nodeV[i * n + chain.to - 1] += 1;
+    if (chain.from !== BUS_MINUS) nodeV[i * n + chain.from - 1] -= 1;
+  });
+  nodeV[count * n + BUS_PLUS - 1] = 1;
+  solveConductances(between, toGround, nodeV);
 
   const currentPerEmf = new Float64Array(count * count);
   const currentPerBank = new Float64Array(count);
   const voltagePerEmf = new Float64Array(count);
-  wiring.chains.forEach((chain, i) => {
-    const toBus = impedance(chain.to, BUS_PLUS) - impedance(chain.from, BUS_PLUS);
-    currentPerBank[i] = g[i] * toBus;
-    voltagePerEmf[i] = toBus * g[i];
-    wiring.chains.forEach((other, j) => {
-      const transfer =
-        impedance(chain.to, other.to) -
-        impedance(chain.to, other.from) -
-        impedance(chain.from, other.to) +
-        impedance(chain.from, other.from);
+  wiring.chains.forEach(({ from, to }, i) => {
+    currentPerBank[i] = g[i] * (voltage(count, to) - voltage(count, from));
+    voltagePerEmf[i] = currentPerBank[i];
+    for (let j = 0; j < count; j++) {
+      const transfer = voltage(j, to) - voltage(j, from);
       currentPerEmf[i * count + j] = g[i] * (transfer * g[j] - (i === j ? 1 : 0));
-    });
+    }
   });
-  return { chains: count, currentPerEmf, currentPerBank, voltagePerEmf, bankOhm: impedance(BUS_PLUS, BUS_PLUS) };
+  return { chains: count, currentPerEmf, currentPerBank, voltagePerEmf, bankOhm: voltage(count, BUS_PLUS) };
 }

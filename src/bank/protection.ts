@@ -21,45 +21,55 @@ export const FLOW_A = 0.01;
 const NEVER = -1;
 
 /**
- * Value of a condition: volts or amperes beyond its threshold.
+ * Values of all conditions of all modules, at kind * modules + m: volts or amperes beyond the threshold.
  *
- * @param highV largest cell voltage of the module, @param lowV smallest
- * @param currentA current into its positive post
+ * @param highV largest cell voltage of each module, @param lowV smallest
+ * @param chainA current of each chain, charging positive
  */
-export function protectionValue(
+export function protectionValuesInto(
   bank: Bank,
   state: BankState,
-  kind: number,
-  m: number,
-  highV: number,
-  lowV: number,
-  currentA: number,
-): number {
-  switch (kind) {
-    case OVER_VOLTAGE:
-      return state.overVoltage[m] === 1 ? bank.overVoltageReleaseV[m] - highV : highV - bank.overVoltageV[m];
-    case UNDER_VOLTAGE: {
-      if (state.underVoltage[m] === 0) return bank.underVoltageV[m] - lowV;
-      const recoveredV = lowV - bank.underVoltageReleaseV[m];
-      return bank.underVoltageReleaseOnCharge[m] === 1 ? Math.min(recoveredV, currentA - FLOW_A) : recoveredV;
-    }
-    case OVER_CURRENT_CHARGE:
-      return state.overCurrentCharge[m] === 1 ? NEVER : currentA - bank.overCurrentChargeA[m];
-    case OVER_CURRENT_DISCHARGE:
-      return state.overCurrentDischarge[m] === 1 ? NEVER : -currentA - bank.overCurrentDischargeA[m];
-    case RECLOSE: {
-      const noCharge = chargePathOpen(bank, state, m);
-      if (noCharge === dischargePathOpen(bank, state, m)) return NEVER;
-      const permittedA = noCharge ? -currentA : currentA;
-      // Once bridged, the drop comes back when the current has stopped.
-      return state.reclosed[m] === 1 ? FLOW_A - permittedA : permittedA - bank.recloseA[m];
-    }
-    default: {
-      if (state.lockedCharge[m] === 1 && bank.lockIsManual[m] === 0) return -currentA - FLOW_A;
-      if (state.lockedDischarge[m] === 1 && bank.lockIsManual[m] === 0) return currentA - FLOW_A;
-      return NEVER;
-    }
+  highV: Float64Array,
+  lowV: Float64Array,
+  chainA: Float64Array,
+  value: Float64Array,
+): void {
+  const { modules, chainOfModule } = bank;
+  const { overVoltage, underVoltage, overCurrentCharge, overCurrentDischarge } = state;
+  for (let m = 0; m < modules; m++) {
+    const currentA = chainA[chainOfModule[m]];
+    value[m] = overVoltage[m] === 1 ? bank.overVoltageReleaseV[m] - highV[m] : highV[m] - bank.overVoltageV[m];
+    value[UNDER_VOLTAGE * modules + m] =
+      underVoltage[m] === 1 ? recovery(bank, m, lowV[m], currentA) : bank.underVoltageV[m] - lowV[m];
+    value[OVER_CURRENT_CHARGE * modules + m] =
+      overCurrentCharge[m] === 1 ? NEVER : currentA - bank.overCurrentChargeA[m];
+    value[OVER_CURRENT_DISCHARGE * modules + m] =
+      overCurrentDischarge[m] === 1 ? NEVER : -currentA - bank.overCurrentDischargeA[m];
+    const anyOpen = overVoltage[m] + underVoltage[m] + overCurrentCharge[m] + overCurrentDischarge[m] > 0;
+    value[RECLOSE * modules + m] = anyOpen ? bridging(bank, state, m, currentA) : NEVER;
+    value[UNLOCK * modules + m] = anyOpen ? unlocking(bank, state, m, currentA) : NEVER;
   }
+}
+
+/** Under-voltage release: the lowest cell above its release and, if the BMS asks for it, charge current. */
+function recovery(bank: Bank, m: number, lowV: number, currentA: number): number {
+  const recoveredV = lowV - bank.underVoltageReleaseV[m];
+  return bank.underVoltageReleaseOnCharge[m] === 1 ? Math.min(recoveredV, currentA - FLOW_A) : recoveredV;
+}
+
+/** With exactly one path open: current the permitted way beyond the threshold; once bridged, that it has stopped. */
+function bridging(bank: Bank, state: BankState, m: number, currentA: number): number {
+  const noCharge = chargePathOpen(bank, state, m);
+  if (noCharge === dischargePathOpen(bank, state, m)) return NEVER;
+  const permittedA = noCharge ? -currentA : currentA;
+  return state.reclosed[m] === 1 ? FLOW_A - permittedA : permittedA - bank.recloseA[m];
+}
+
+/** A lock that opposite current releases: that current. */
+function unlocking(bank: Bank, state: BankState, m: number, currentA: number): number {
+  if (bank.lockIsManual[m] === 1) return NEVER;
+  if (state.lockedCharge[m] === 1) return -currentA - FLOW_A;
+  return state.lockedDischarge[m] === 1 ? currentA - FLOW_A : NEVER;
 }
 
 /** Time for which a condition must hold without a break, s. */

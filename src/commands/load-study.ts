@@ -1,16 +1,11 @@
 import { dirname, join } from 'node:path';
 import type { Origin } from '../study/origin.js';
 import { renderProblem } from '../study/problem.js';
+import type { Overrides } from '../study/read-options.js';
 import { type InputText, readStudy } from '../study/read-study.js';
 import type { Study } from '../study/study.js';
 import { measureChoices } from './measure-choices.js';
 import type { Shell } from './shell.js';
-
-/** Values of the command line that stand over those of the study. */
-export interface StudyOverrides {
-  readonly seed?: string | undefined;
-  readonly instances?: number | undefined;
-}
 
 /** A study as read from a file, with what a run keeps beside its results. */
 export interface LoadedStudy {
@@ -32,7 +27,7 @@ export interface LoadedStudy {
  * @param file path relative to the working directory
  * @returns null if there were problems: the command then ends with the status for input
  */
-export function loadStudy(file: string, shell: Shell, overrides: StudyOverrides = {}): LoadedStudy | null {
+export function loadStudy(file: string, shell: Shell, overrides: Overrides = {}): LoadedStudy | null {
   const read = shell.readText(file);
   if ('problem' in read) {
     shell.err(`${file} cannot be read: ${read.problem}\n`);

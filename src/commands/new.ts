@@ -28,8 +28,8 @@ stock:
 duty:
   load_factor: {nominal: 1, bank_sd_percent: 5}
   phases:
-    - {discharge_W: 550, for_h: 8}
     - {charge: to-full, at_most_h: 16}
+    - {discharge_W: 520, for_h: 8}
 
 candidates:                  # each string is listed from its negative end
   strings:       {wiring: strings, modules: [[N1, N2], [O1, O2]]}

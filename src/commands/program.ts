@@ -62,7 +62,7 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .description('simulate a study, print its decision table and write its results; takes up what is missing')
     .option('--out <folder>', 'folder of the results (default: results/<study file name>)')
     .addOption(new Option('--threads <count>', 'threads; never changes a result').argParser(wholeNumber(1, 1024)))
-    .option('--seed <seed>', "in place of the study's")
+    .addOption(new Option('--seed <seed>', "in place of the study's").argParser(seedText))
     .addOption(new Option('--instances <count>', "in place of the study's").argParser(wholeNumber(1, 10_000_000)))
     .option('--replace', 'discard what another run left in the folder')
     .option('--json', 'one JSON document in place of the table')
@@ -157,6 +157,11 @@ function wholeNumber(least: number, most: number): (text: string) => number {
     if (/^\d+$/.test(text) && value >= least && value <= most) return value;
     throw new InvalidArgumentError(`It must be a whole number from ${least} to ${most}.`);
   };
+}
+
+function seedText(text: string): string {
+  if (text !== '' && text.length <= 200) return text;
+  throw new InvalidArgumentError('It must be a whole number or a text of at most 200 characters.');
 }
 
 function positiveNumber(text: string): number {

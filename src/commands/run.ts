@@ -1,6 +1,5 @@
 import { availableParallelism } from 'node:os';
 import { basename, join, parse } from 'node:path';
-import { errorCode } from '../execution/durable-file.js';
 import { type Execution, executeRun } from '../execution/execute-run.js';
 import { FileOutcomes } from '../execution/file-outcomes.js';
 import { FolderRefused } from '../execution/folder-refused.js';
@@ -9,6 +8,7 @@ import { Progress } from '../execution/progress.js';
 import { refuseOtherRun } from '../execution/refuse-other-run.js';
 import { blockFile, RUN_FILE, RunFolder } from '../execution/run-folder.js';
 import { RunRecord, type SessionEnd } from '../execution/run-record.js';
+import { isSystemError } from '../execution/system-error.js';
 import { blockCount, TWIN_BLOCK } from '../outcomes/block.js';
 import { renderJson } from '../output/json-table.js';
 import { renderTable } from '../output/table.js';
@@ -108,7 +108,7 @@ async function runInFolder(
 
 /** A thread that ends and a disk that is full are the machine's; anything else that fails is ours. */
 function endOf({ failure, missing }: Execution): Exclude<SessionEnd, null> {
-  if (failure instanceof LostBlock || errorCode(failure) !== undefined) return 'blocks missing';
+  if (failure instanceof LostBlock || isSystemError(failure)) return 'blocks missing';
   if (failure !== undefined) return 'failed';
   return missing === 0 ? 'complete' : 'interrupted';
 }
@@ -127,7 +127,7 @@ async function keepStudy({ text, study, inputs }: LoadedStudy, folder: RunFolder
   return names;
 }
 
-/** Answers the questions, writes the answers and @returns them for stdout. */
+/** Answers the questions and writes the answers. @returns what is to be printed */
 async function resultsOf(
   study: Study,
   instances: number,

@@ -5,8 +5,8 @@ import type { Study } from '../study/study.js';
 import type { CheckAids, Trial } from './trial.js';
 
 const TRIAL_MS = 2000;
-/** Banks are tried over a part of a long horizon, so that the trial stays near its time. */
-const TRIAL_CYCLES = 30;
+/** Banks are tried over a part of a very long horizon only, so that the trial stays near its time. */
+const TRIAL_CYCLES = 400;
 
 /** What `check` needs of the simulation. */
 export const simulationAids: CheckAids = { trial, candidatesWhoseTwinLosesLoad };

@@ -1,7 +1,8 @@
 import { mkdir } from 'node:fs/promises';
 import { join, parse } from 'node:path';
-import { errorCode, writeDurably } from '../execution/durable-file.js';
+import { writeDurably } from '../execution/durable-file.js';
 import { RUN_FILE } from '../execution/run-folder.js';
+import { errorCode } from '../execution/system-error.js';
 import { renderBusCsv, renderDrawnCsv, renderEventsCsv, renderModulesCsv } from '../output/trace-csv.js';
 import { type Trace, traceInstance } from '../simulation/trace-instance.js';
 import { didYouMean } from '../study/nearest-name.js';

@@ -1,5 +1,6 @@
 import { open, rename } from 'node:fs/promises';
 import { setTimeout as pause } from 'node:timers/promises';
+import { errorCode } from './system-error.js';
 
 /** Ends the name of a file that is not finished; whatever carries it may be removed. */
 export const UNFINISHED = '.tmp';
@@ -39,9 +40,4 @@ async function renameInSpiteOfReaders(from: string, to: string): Promise<void> {
 function isHeldOpen(error: unknown): boolean {
   const code = errorCode(error);
   return code === 'EPERM' || code === 'EBUSY' || code === 'EACCES';
-}
-
-/** Code of a system error such as ENOENT; undefined for anything else. */
-export function errorCode(error: unknown): string | undefined {
-  return error instanceof Error && 'code' in error && typeof error.code === 'string' ? error.code : undefined;
 }

@@ -3,8 +3,9 @@ import { readdir, readFile, rm } from 'node:fs/promises';
 import { hostname } from 'node:os';
 import { join } from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
-import { errorCode, writeDurably } from './durable-file.js';
+import { writeDurably } from './durable-file.js';
 import { FolderRefused } from './folder-refused.js';
+import { errorCode } from './system-error.js';
 
 const LOOKS = 6;
 const PAUSE_MS = 30;

@@ -3,10 +3,11 @@ import { mkdir, readdir, readFile, rm } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 import { type BlockTask, TWIN_BLOCK } from '../outcomes/block.js';
 import type { ComputedBlock } from './compute-blocks.js';
-import { errorCode, UNFINISHED, writeDurably } from './durable-file.js';
+import { UNFINISHED, writeDurably } from './durable-file.js';
 import { FolderRefused } from './folder-refused.js';
 import { Journal } from './journal.js';
 import { isLockFile, takeLock } from './lock.js';
+import { errorCode } from './system-error.js';
 
 /** Names in a run folder, apart from the results. */
 export const RUN_FILE = {
@@ -72,7 +73,8 @@ export class RunFolder {
   /** Keeps a block: first its file, then its line in the journal. */
   async keep(task: BlockTask, key: string, instances: number, { csv, computeS }: ComputedBlock): Promise<void> {
     await this.write(blockFile(task), csv);
-    await this.journal.append({ ...task, key, instances, sha256: sha256(csv), compute_s: computeS });
+    const compute_s = Number(computeS.toFixed(3));
+    await this.journal.append({ ...task, key, instances, sha256: sha256(csv), compute_s });
   }
 
   async close(): Promise<void> {

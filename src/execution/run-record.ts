@@ -44,7 +44,7 @@ export class RunRecord {
   }
 
   async end(ended: SessionEnd, durationS: number): Promise<void> {
-    await this.#write({ ...this.#session, duration_s: durationS, ended });
+    await this.#write({ ...this.#session, duration_s: Number(durationS.toFixed(3)), ended });
   }
 
   async #write(session: Session): Promise<void> {

@@ -5,20 +5,29 @@ import type { BankEvent } from '../bank/events.js';
 import { firstCrossing } from '../mathematics/first-crossing.js';
 import type { ChargerSettings, LoadSettings } from '../study/study.js';
 import { switchBleedWithin } from './bleed-within.js';
-import { createKernel, type Kernel, solveKept, updateCellConstants, updateEmf, updateExtremes } from './kernel.js';
+import { type Chatter, countTrip, createChatter, leapOverChatter } from './chatter.js';
+import { copyInto, createKernel, type Kernel, solveKept, updateCellConstants, updateEmf, updateExtremes } from './kernel.js';
 import { settle } from './settle.js';
 import { commitStep, createStepWork, evaluateWithin, type StepWork, tryStep } from './step.js';
 import { createTerminal, type Terminal } from './terminal.js';
-import { createWatch, pastChange, turnOver, updateNextDue, updateValues, type Watch } from './watch.js';
+import { createWatch, nextTurned, pastChange, turnOver, updateValues, type Watch } from './watch.js';
 
 /** Least progress of a step, also of one that ends at an event, s. */
 export const LEAST_STEP_S = 0.01;
 const MOST_STEP_S = 1800;
-const FIRST_STEP_S = 30;
+/** Step tried first after a jump of current, and what counts as one. */
+const FIRST_STEP_S = 60;
+const JUMP_A = 2;
 /** Change of a cell's voltage over a step above which it is tried again shorter, V: keeps events well bracketed. */
-const MOST_VOLTAGE_CHANGE_V = 0.05;
+const MOST_VOLTAGE_CHANGE_V = 0.1;
 /** Width to which an event is bracketed inside its step, s. */
-const EVENT_TOLERANCE_S = 2e-3;
+const EVENT_TOLERANCE_S = 0.01;
+/** Error of an event's time, judged by the rate of its condition over the step, from which the step is corrected. */
+const CORRECTED_FROM_S = 0.2;
+const MOST_CORRECTIONS = 2;
+/** Change of length that a correction may make, and distance over which the rate is taken, shares of the step. */
+const MOST_CORRECTION = 0.1;
+const RATE_SHARE = 0.01;
 
 /** A bank on its way through time. */
 export interface Journey {
@@ -31,9 +40,13 @@ export interface Journey {
   readonly startHighestV: Float64Array;
   readonly startLowestV: Float64Array;
   readonly correctionAs: Float64Array;
+  readonly chatter: Chatter;
   readonly onEvent: (event: BankEvent) => void;
   /** Called with every step before it is committed, while it can still be looked into. */
   readonly onStep: (journey: Journey, stepS: number) => void;
+  /** Called when a burst begins from which a rate is taken, and when its rates have been applied `ratio` times more. */
+  readonly onBurst: () => void;
+  readonly onLeap: (ratio: number) => void;
   /** The bus cannot carry the load that is connected. */
   busFails: boolean;
   /** The load asks for something and does not get it: the bus fails, or the low-voltage disconnect is open. */
@@ -43,10 +56,7 @@ export interface Journey {
   steps: number;
 }
 
-export interface JourneyListeners {
-  readonly onEvent: (event: BankEvent) => void;
-  readonly onStep: (journey: Journey, stepS: number) => void;
-}
+export type JourneyListeners = Partial<Pick<Journey, 'onEvent' | 'onStep' | 'onBurst' | 'onLeap'>>;
 
 export function createJourney(
   bank: Bank,
@@ -56,6 +66,7 @@ export function createJourney(
   listeners: JourneyListeners,
 ): Journey {
   const kernel = createKernel(bank, state);
+  const chatter = createChatter(bank.modules, bank.cells);
   return {
     kernel,
     terminal: createTerminal(charger, load),
@@ -65,8 +76,14 @@ export function createJourney(
     startHighestV: new Float64Array(bank.modules),
     startLowestV: new Float64Array(bank.modules),
     correctionAs: new Float64Array(bank.cells),
-    onEvent: listeners.onEvent,
-    onStep: listeners.onStep,
+    chatter,
+    onEvent: (event) => {
+      countTrip(chatter, event);
+      listeners.onEvent?.(event);
+    },
+    onStep: listeners.onStep ?? (() => undefined),
+    onBurst: listeners.onBurst ?? (() => undefined),
+    onLeap: listeners.onLeap ?? (() => undefined),
     busFails: false,
     loadLost: false,
     attempts: 0,
@@ -77,6 +94,7 @@ export function createJourney(
 /** Puts the bank in order now: to be called after anything at its terminal has changed. */
 export function settleJourney(journey: Journey): void {
   const { kernel, terminal, watch, work, onEvent } = journey;
+  copyInto(kernel.bus.currentA, work.secondA);
   settle(kernel, terminal, watch, work, onEvent);
   const asks = terminal.demandW > 0 || terminal.demandA > 0;
   const fails = asks && terminal.loadConnected && !loadIsServed(kernel.bus.regime);
@@ -85,7 +103,13 @@ export function settleJourney(journey: Journey): void {
     journey.busFails = fails;
   }
   journey.loadLost = fails || (asks && !terminal.loadConnected);
-  journey.stepS = Math.min(journey.stepS, FIRST_STEP_S);
+  if (currentsJumped(work.secondA, kernel.bus.currentA)) journey.stepS = Math.min(journey.stepS, FIRST_STEP_S);
+}
+
+/** After a jump the polarisation moves fast again, after an event without one it does not. */
+function currentsJumped(beforeA: Float64Array, afterA: Float64Array): boolean {
+  for (let i = 0; i < afterA.length; i++) if (Math.abs(afterA[i] - beforeA[i]) > JUMP_A) return true;
+  return false;
 }
 
 /**
@@ -102,6 +126,7 @@ export function advance(journey: Journey, untilS: number, stop: () => boolean): 
       kernel.nowS = goalS;
       settleJourney(journey);
       if (stop()) return;
+      leapOverChatter(journey, untilS);
       continue;
     }
     const stepS = journey.stepS * 1.1 > restS ? restS : Math.min(journey.stepS, MOST_STEP_S);
@@ -110,6 +135,7 @@ export function advance(journey: Journey, untilS: number, stop: () => boolean): 
     if (happened) {
       settleJourney(journey);
       if (stop()) return;
+      leapOverChatter(journey, untilS);
     }
   }
 }
@@ -117,8 +143,8 @@ export function advance(journey: Journey, untilS: number, stop: () => boolean): 
 /** Takes one step of at most `stepS`. @returns true if it ended at an event */
 function takeStep(journey: Journey, stepS: number): boolean {
   const { kernel, watch, work } = journey;
-  journey.startHighestV.set(kernel.highestV);
-  journey.startLowestV.set(kernel.lowestV);
+  copyInto(kernel.highestV, journey.startHighestV);
+  copyInto(kernel.lowestV, journey.startLowestV);
   let tryS = stepS;
   for (;;) {
     journey.attempts++;
@@ -136,21 +162,26 @@ function takeStep(journey: Journey, stepS: number): boolean {
     updateExtremes(kernel, work.lastA, work.endFilterA);
     const changeV = voltageChangeV(journey) / MOST_VOLTAGE_CHANGE_V;
     // Third order: the error grows with the cube of the step, a voltage with the step itself.
-    const grow = Math.min(0.9 * error ** (-1 / 3), changeV > 0 ? 0.8 / changeV : 5, 5);
+    const grow = Math.min(0.9 / Math.cbrt(error), changeV > 0 ? 0.8 / changeV : 5, 5);
     if ((error > 1 || changeV > 1) && tryS > LEAST_STEP_S) {
       tryS = Math.max(LEAST_STEP_S, tryS * Math.max(0.1, Math.min(grow, 0.7)));
       continue;
     }
-    journey.stepS = Math.max(LEAST_STEP_S, tryS * Math.max(grow, 0.3));
+    const nextS = Math.max(LEAST_STEP_S, tryS * Math.max(grow, 0.3));
+    // A step cut short by something due says nothing against a longer one.
+    journey.stepS = tryS === stepS ? Math.max(nextS, grow >= 1 ? journey.stepS : 0) : nextS;
     break;
   }
   updateValues(kernel, journey.terminal, watch, work.lastA, work.endBankA, work.endBankV);
   const turned = turnedConditions(watch);
-  if (turned.length > 0 && work.stepS > LEAST_STEP_S) cutAtEvent(journey, turned);
+  if (turned === null) {
+    finishStep(journey);
+    return false;
+  }
+  if (work.stepS > LEAST_STEP_S) cutAtEvent(journey, turned);
   finishStep(journey);
   for (const at of turned) turnOver(kernel, journey.terminal, watch, at);
-  if (turned.length > 0) updateNextDue(kernel, watch);
-  return turned.length > 0;
+  return true;
 }
 
 function voltageChangeV(journey: Journey): number {
@@ -166,9 +197,12 @@ function voltageChangeV(journey: Journey): number {
   return change;
 }
 
-function turnedConditions(watch: Watch): number[] {
-  const turned: number[] = [];
-  for (let at = 0; at < watch.value.length; at++) if (pastChange(watch, at) >= 0) turned.push(at);
+/** Conditions that the latest attempt has turned over; null, without a new array, in the many steps that turn none. */
+function turnedConditions(watch: Watch): number[] | null {
+  const first = nextTurned(watch, 0);
+  if (first < 0) return null;
+  const turned = [first];
+  for (let at = nextTurned(watch, first + 1); at >= 0; at = nextTurned(watch, at + 1)) turned.push(at);
   return turned;
 }
 
@@ -190,12 +224,25 @@ function cutAtEvent(journey: Journey, turned: number[]): void {
   const startValue = pastAt(1e-9);
   const theta =
     startValue < 0 ? firstCrossing(pastAt, 1e-9, startValue, 1, endValue, EVENT_TOLERANCE_S / stepS) : least;
-  pastAt(theta);
+  // Rate of the condition that is first, close to its crossing.
+  const before = pastAt(Math.max(1e-9, theta - RATE_SHARE));
+  const perS = (pastAt(theta) - before) / (Math.min(theta, RATE_SHARE) * stepS);
   const byThen = new Set(turned.filter((at) => pastChange(watch, at) >= 0));
-  tryStep(kernel, work, Math.max(LEAST_STEP_S, theta * stepS));
+  takeAnew(journey, Math.max(LEAST_STEP_S, theta * stepS));
+  // The interpolation misses slow crossings by seconds; a step of the right length does not.
+  for (let correction = 0; correction < MOST_CORRECTIONS; correction++) {
+    const lateS = past() / perS;
+    if (!(Math.abs(lateS) > CORRECTED_FROM_S && Math.abs(lateS) < MOST_CORRECTION * work.stepS)) break;
+    takeAnew(journey, Math.min(stepS, Math.max(LEAST_STEP_S, work.stepS - lateS)));
+  }
+  turned.splice(0, turned.length, ...turned.filter((at) => byThen.has(at) || pastChange(watch, at) >= 0));
+}
+
+/** Takes the step again with another length and brings all values to its end. */
+function takeAnew({ kernel, terminal, watch, work }: Journey, stepS: number): void {
+  tryStep(kernel, work, stepS);
   updateExtremes(kernel, work.lastA, work.endFilterA);
   updateValues(kernel, terminal, watch, work.lastA, work.endBankA, work.endBankV);
-  turned.splice(0, turned.length, ...turned.filter((at) => byThen.has(at) || pastChange(watch, at) >= 0));
 }
 
 /** Lets listeners look at the latest attempt, switches bleed that changed inside it, and commits it. */
@@ -212,10 +259,10 @@ function finishStep(journey: Journey): void {
     work.passedAs.fill(0);
     updateEmf(kernel, 0, work.passedAs, state.filterA);
     if (solveKept(kernel)) {
-      bus.currentA.set(kernel.point.currentA);
+      copyInto(kernel.point.currentA, bus.currentA);
       bus.bankA = kernel.point.bankA;
       bus.bankV = kernel.point.bankV;
-      work.firstA.set(bus.currentA);
+      copyInto(bus.currentA, work.firstA);
     }
     updateExtremes(kernel, bus.currentA, state.filterA);
   }

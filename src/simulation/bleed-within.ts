@@ -4,8 +4,8 @@ import { ocvV } from '../bank/ocv-curves.js';
 import { cellVoltageV, hysteresisAfter, type Kernel } from './kernel.js';
 import type { StepWork } from './step.js';
 
-/** Halvings with which a switching instant is found inside a step: a 1000 s step to a quarter of a second. */
-const HALVINGS = 12;
+/** Halvings with which a switching instant is found inside a step: a 100 s step to half a second. */
+const HALVINGS = 8;
 
 /**
  * Switches bleed that changed during the latest attempt, from the instant inside the step at which it did. The step
@@ -23,7 +23,7 @@ export function switchBleedWithin(kernel: Kernel, work: StepWork, correctionAs: 
     if (bank.bleedRule[m] === BLEED_NONE) continue;
     const first = bank.cellStart[m];
     const end = bank.cellStart[m + 1];
-    if (highestV[m] < bank.bleedStopV[m] && !state.bleeding.subarray(first, end).includes(1)) continue;
+    if (highestV[m] < bank.bleedStopV[m] && !anyBleeding(state.bleeding, first, end)) continue;
     const i = chainOfCell[first];
     for (let c = first; c < end; c++) {
       const was = state.bleeding[c] === 1;
@@ -42,6 +42,11 @@ export function switchBleedWithin(kernel: Kernel, work: StepWork, correctionAs: 
   return switched;
 }
 
+function anyBleeding(bleeding: Uint8Array, first: number, end: number): boolean {
+  for (let c = first; c < end; c++) if (bleeding[c] === 1) return true;
+  return false;
+}
+
 /** Share of the step after which cell `c` no longer bleeds (or does not) as it did at the start. */
 function switchingShare(kernel: Kernel, work: StepWork, m: number, c: number, was: boolean): number {
   const { bank } = kernel;
@@ -50,27 +55,23 @@ function switchingShare(kernel: Kernel, work: StepWork, m: number, c: number, wa
   let high = 1;
   for (let halving = 0; halving < HALVINGS; halving++) {
     const theta = 0.5 * (low + high);
-    const stage = chainWithin(kernel, work, i, theta);
+    const currentA = chainWithin(kernel, work, i, theta);
     let lowestV = Number.POSITIVE_INFINITY;
     for (let other = bank.cellStart[m]; other < bank.cellStart[m + 1]; other++) {
-      lowestV = Math.min(lowestV, cellWithin(kernel, stage, other));
+      lowestV = Math.min(lowestV, cellWithin(kernel, work, i, other, theta * work.stepS, currentA));
     }
-    if (bleedsAfter(bank, m, was, cellWithin(kernel, stage, c), lowestV, stage.currentA) === was) low = theta;
+    const cellV = cellWithin(kernel, work, i, c, theta * work.stepS, currentA);
+    if (bleedsAfter(bank, m, was, cellV, lowestV, currentA) === was) low = theta;
     else high = theta;
   }
   return 0.5 * (low + high);
 }
 
-interface ChainStage {
-  readonly elapsedS: number;
-  readonly passedAs: number;
-  readonly currentA: number;
-  /** Filtered currents, one for each time constant. */
-  readonly filterA: readonly number[];
-}
-
-/** One chain at a share of the step by the cubic through both ends, without solving the network. */
-function chainWithin(kernel: Kernel, work: StepWork, i: number, theta: number): ChainStage {
+/**
+ * One chain at a share of the step by the cubic through both ends, without solving the network: its charge and filtered
+ * currents in `work.passedAs` and `work.filterA`. @returns its current
+ */
+function chainWithin(kernel: Kernel, work: StepWork, i: number, theta: number): number {
   const { bank, state } = kernel;
   const { stepS } = work;
   const first = work.firstA[i];
@@ -82,27 +83,38 @@ function chainWithin(kernel: Kernel, work: StepWork, i: number, theta: number): 
     (theta * theta * (3 - 2 * theta) * mean +
       theta * (1 - theta) * (1 - theta) * first +
       theta * theta * (theta - 1) * last);
-  const currentA =
-    6 * theta * (1 - theta) * mean + (1 - 4 * theta + 3 * theta * theta) * first + theta * (3 * theta - 2) * last;
-  const slope = elapsedS > 0 ? (2 * (passedAs / elapsedS - first)) / elapsedS : 0;
+  work.passedAs[i] = passedAs;
+  const slope = (2 * (passedAs / elapsedS - first)) / elapsedS;
   const chains = work.firstA.length;
-  const filterA = Array.from(bank.timeConstantS, (tauS, k) => {
+  for (let k = 0; k < bank.timeConstantS.length; k++) {
+    const tauS = bank.timeConstantS[k];
     const decay = Math.exp(-elapsedS / tauS);
-    return first + (state.filterA[k * chains + i] - first) * decay + slope * (elapsedS - tauS * (1 - decay));
-  });
-  return { elapsedS, passedAs, currentA, filterA };
+    const at = k * chains + i;
+    work.filterA[at] = first + (state.filterA[at] - first) * decay + slope * (elapsedS - tauS * (1 - decay));
+  }
+  return 6 * theta * (1 - theta) * mean + (1 - 4 * theta + 3 * theta * theta) * first + theta * (3 * theta - 2) * last;
 }
 
-function cellWithin(kernel: Kernel, stage: ChainStage, c: number): number {
+/** Voltage of a cell at what `chainWithin` found. */
+function cellWithin(
+  kernel: Kernel,
+  work: StepWork,
+  i: number,
+  c: number,
+  elapsedS: number,
+  currentA: number,
+): number {
   const { bank, state } = kernel;
-  const z = state.charge[c] + kernel.chargePerAs[c] * stage.passedAs + kernel.chargePerS[c] * stage.elapsedS;
-  let volts = ocvV(bank.ocv, bank.curveOfCell[c], z) + kernel.fixedV[c] + bank.resistanceOhm[c] * stage.currentA;
+  const passedAs = work.passedAs[i];
+  const z = state.charge[c] + kernel.chargePerAs[c] * passedAs + kernel.chargePerS[c] * elapsedS;
+  let volts = ocvV(bank.ocv, bank.curveOfCell[c], z) + kernel.fixedV[c] + bank.resistanceOhm[c] * currentA;
   if (bank.hasHysteresis) {
-    const passedAs = stage.passedAs - kernel.offsetA[c] * stage.elapsedS;
-    volts += bank.hysteresisV[c] * hysteresisAfter(state.hysteresis[c], passedAs, bank.hysteresisPerAs[c]);
+    const inAs = passedAs - kernel.offsetA[c] * elapsedS;
+    volts += bank.hysteresisV[c] * hysteresisAfter(state.hysteresis[c], inAs, bank.hysteresisPerAs[c]);
   }
-  stage.filterA.forEach((amperes, k) => {
-    volts += bank.polarisationOhm[k * bank.cells + c] * amperes;
-  });
+  const chains = work.firstA.length;
+  for (let k = 0; k < bank.timeConstantS.length; k++) {
+    volts += bank.polarisationOhm[k * bank.cells + c] * work.filterA[k * chains + i];
+  }
   return volts;
 }

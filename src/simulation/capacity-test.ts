@@ -28,7 +28,7 @@ export function testCapacity(bank: Bank, state: BankState, candidate: Candidate,
   let deliveredJ = 0;
   const journey: Journey = createJourney(
     bank,
-    copyBankState(state),
+    copyBankState(bank, state),
     candidate.charger,
     { ...candidate.load, disconnectV: null },
     {

@@ -61,7 +61,7 @@ function chargeAlone(
       restartV: 0,
     },
     { disconnectV: null, disconnectDelayS: 0, reconnectV: 0 },
-    { onEvent: () => undefined, onStep: () => undefined },
+    {},
   );
   const charge = { durationS: BENCH_LIMIT_S, loadW: 0, loadA: 0, chargeW: null, endsWhenCharged: true };
   runSegment(journey, charge, { loadFactor: 1, chargeFactor: 1 });

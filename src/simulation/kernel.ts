@@ -40,6 +40,9 @@ export interface Kernel {
   /** Voltage of a cell that stands still within a step: offset current through its resistances. */
   readonly fixedV: Float64Array;
   readonly chainFixedV: Float64Array;
+  readonly firstCellOfChain: Int32Array;
+  readonly chainPath: Float64Array;
+  readonly chainDecay: Float64Array;
   /** Shift of a chain's EMF by its forward drop. */
   readonly emfShiftV: Float64Array;
 
@@ -78,6 +81,7 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
       regime: CHARGER_IDLE,
       netA: 0,
       netW: 0,
+      fed: true,
     },
     nowS: 0,
     chainOfCell: Int32Array.from(bank.moduleOfCell, (m) => bank.chainOfModule[m]),
@@ -86,6 +90,9 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
     offsetA: floats(bank.cells),
     fixedV: floats(bank.cells),
     chainFixedV: floats(chains),
+    firstCellOfChain: Int32Array.from(bank.wiring.chains, (chain) => bank.cellStart[chain.modules[0]]),
+    chainPath: floats(chains),
+    chainDecay: floats(chains),
     emfShiftV: floats(chains),
     point: {
       cellV: floats(bank.cells),
@@ -101,12 +108,17 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
   };
 }
 
+/** Copies a short array: for a few elements a loop is ten times as fast as the method `set`. */
+export function copyInto(from: Float64Array, into: Float64Array): void {
+  for (let k = 0; k < from.length; k++) into[k] = from[k];
+}
+
 /** Sets the constants of all cells from the state and the chain currents now. */
 export function updateCellConstants(kernel: Kernel): void {
   const { bank, state, bus, chainOfCell, chargePerAs, chargePerS, offsetA, fixedV, chainFixedV } = kernel;
   const { cells, moduleOfCell, capacityAs, polarisationOhm } = bank;
   const pairs = bank.timeConstantS.length;
-  chainFixedV.fill(0);
+  for (let i = 0; i < chainFixedV.length; i++) chainFixedV[i] = 0;
   for (let c = 0; c < cells; c++) {
     const m = moduleOfCell[c];
     const i = chainOfCell[c];
@@ -139,31 +151,64 @@ export function updateEmf(kernel: Kernel, elapsedS: number, passedAs: Float64Arr
   const { bank, state, point, chainOfCell, chargePerAs, chargePerS, offsetA, chainFixedV } = kernel;
   const { charge, hysteresis } = state;
   const { cells, curveOfCell, ocv, hasHysteresis, hysteresisV, hysteresisPerAs, chainPolarisationOhm } = bank;
-  const { knots, coefficients, bucket, firstBucket, buckets, lowest, perUnit } = ocv;
+  const { knots, coefficients, bucket } = ocv;
   const { cellV, emfV } = point;
+  const { chainPath, chainDecay } = kernel;
   const chains = emfV.length;
-  emfV.set(chainFixedV);
+  copyInto(chainFixedV, emfV);
+  if (hasHysteresis) updateChainDecay(kernel, elapsedS, passedAs);
+  let curve = -1;
+  let lowest = 0;
+  let perUnit = 0;
+  let firstBucket = 0;
+  let most = 0;
   for (let c = 0; c < cells; c++) {
     const i = chainOfCell[c];
     const q = passedAs[i];
     const z = charge[c] + chargePerAs[c] * q + chargePerS[c] * elapsedS;
     // ocvV() of bank/ocv-curves.ts, written out: the call costs a third of the evaluation.
-    const curve = curveOfCell[c];
-    const position = (z - lowest[curve]) * perUnit[curve] + 1;
-    const most = buckets[curve] - 1;
+    if (curveOfCell[c] !== curve) {
+      curve = curveOfCell[c];
+      lowest = ocv.lowest[curve];
+      perUnit = ocv.perUnit[curve];
+      firstBucket = ocv.firstBucket[curve];
+      most = ocv.buckets[curve] - 1;
+    }
+    const position = (z - lowest) * perUnit + 1;
     const cell = position < 1 ? 0 : position >= most ? most : position | 0;
-    let piece = bucket[firstBucket[curve] + cell];
+    let piece = bucket[firstBucket + cell];
     if (cell > 0) while (z >= knots[piece + 1]) piece++;
     const d = z - knots[piece];
     const at = piece << 2;
     let volts = ((coefficients[at + 3] * d + coefficients[at + 2]) * d + coefficients[at + 1]) * d + coefficients[at];
     if (hasHysteresis) {
-      volts += hysteresisV[c] * hysteresisAfter(hysteresis[c], q - offsetA[c] * elapsedS, hysteresisPerAs[c]);
+      // hysteresisAfter(), by the exponential of the chain and three terms of the series for what the cell differs by.
+      const h = hysteresis[c];
+      const path = hysteresisPerAs[c] * (q - offsetA[c] * elapsedS);
+      const branch = path >= 0 ? 1 : -1;
+      const more = branch * (path - chainPath[i]);
+      const decay =
+        more * more < 0.01 && branch * chainPath[i] >= 0
+          ? chainDecay[i] * (1 - more * (1 - more * (0.5 - more / 6)))
+          : Math.exp(-branch * path);
+      volts += hysteresisV[c] * (branch + (h - branch) * decay);
     }
     cellV[c] = volts;
     emfV[i] += volts;
   }
-  for (let k = 0; k < chainPolarisationOhm.length; k++) emfV[k % chains] += chainPolarisationOhm[k] * filterA[k];
+  for (let first = 0; first < chainPolarisationOhm.length; first += chains) {
+    for (let i = 0; i < chains; i++) emfV[i] += chainPolarisationOhm[first + i] * filterA[first + i];
+  }
+}
+
+/** Path length gamma q / Q of the first cell of every chain, signed, and exp(-|path|). */
+function updateChainDecay(kernel: Kernel, elapsedS: number, passedAs: Float64Array): void {
+  const { bank, chainPath, chainDecay, firstCellOfChain, offsetA } = kernel;
+  for (let i = 0; i < chainPath.length; i++) {
+    const c = firstCellOfChain[i];
+    chainPath[i] = bank.hysteresisPerAs[c] * (passedAs[i] - offsetA[c] * elapsedS);
+    chainDecay[i] = Math.exp(-Math.abs(chainPath[i]));
+  }
 }
 
 /**
@@ -237,12 +282,22 @@ export function cellVoltageV(kernel: Kernel, c: number, currentA: Float64Array, 
 
 /** Sets the extremes of the cell voltages of each module at the latest evaluation. */
 export function updateExtremes(kernel: Kernel, currentA: Float64Array, filterA: Float64Array): void {
-  const { bank, highestV, lowestV } = kernel;
-  for (let m = 0; m < bank.modules; m++) {
+  const { bank, highestV, lowestV, point, fixedV } = kernel;
+  const { cells, modules, cellStart, chainOfModule, resistanceOhm, polarisationOhm } = bank;
+  const { cellV } = point;
+  const chains = currentA.length;
+  for (let m = 0; m < modules; m++) {
+    const i = chainOfModule[m];
+    const amperes = currentA[i];
+    const end = cellStart[m + 1];
     let high = Number.NEGATIVE_INFINITY;
     let low = Number.POSITIVE_INFINITY;
-    for (let c = bank.cellStart[m]; c < bank.cellStart[m + 1]; c++) {
-      const volts = cellVoltageV(kernel, c, currentA, filterA);
+    for (let c = cellStart[m]; c < end; c++) {
+      // cellVoltageV(), written out.
+      let volts = cellV[c] + fixedV[c] + resistanceOhm[c] * amperes;
+      for (let at = c, filter = i; filter < filterA.length; at += cells, filter += chains) {
+        volts += polarisationOhm[at] * filterA[filter];
+      }
       if (volts > high) high = volts;
       if (volts < low) low = volts;
     }

@@ -27,6 +27,17 @@ export interface Recorder {
   greatestChargeAs: number;
   criterionMet: boolean;
   chargingBefore: boolean;
+  /** Counts when the present burst of trips began. */
+  burst: Tally;
+}
+
+/** What a leap over endless switching adds to in proportion. */
+interface Tally {
+  readonly overVoltageTrips: number;
+  readonly underVoltageTrips: number;
+  readonly overCurrentTrips: number;
+  readonly trips: number;
+  readonly lostWh: number;
 }
 
 interface EndOfCharge {
@@ -48,6 +59,7 @@ export function createRecorder(cycles: number): Recorder {
     greatestChargeAs: Number.NEGATIVE_INFINITY,
     criterionMet: false,
     chargingBefore: false,
+    burst: { overVoltageTrips: 0, underVoltageTrips: 0, overCurrentTrips: 0, trips: 0, lostWh: 0 },
   };
 }
 
@@ -118,6 +130,28 @@ export function recordStep(recorder: Recorder, journey: Journey, stepS: number):
   const charging = journey.work.endBankA > 0;
   if (recorder.chargingBefore && !charging) recordGreatestCharge(recorder, journey);
   recorder.chargingBefore = charging;
+}
+
+/** A burst begins: remembers the counts, so that a leap can add to them in proportion. */
+export function beginBurstRecord(recorder: Recorder): void {
+  recorder.burst = tallyOf(recorder);
+}
+
+/** Adds `ratio` times what the burst has counted. */
+export function recordLeap(recorder: Recorder, ratio: number): void {
+  const { log, burst, cycle } = recorder;
+  const now = tallyOf(recorder);
+  log.averagedChatter = true;
+  log.overVoltageTrips += ratio * (now.overVoltageTrips - burst.overVoltageTrips);
+  log.underVoltageTrips += ratio * (now.underVoltageTrips - burst.underVoltageTrips);
+  log.overCurrentTrips += ratio * (now.overCurrentTrips - burst.overCurrentTrips);
+  recorder.trips += ratio * (now.trips - burst.trips);
+  log.lostWh[cycle - 1] += ratio * (now.lostWh - burst.lostWh);
+}
+
+function tallyOf({ log, trips, cycle }: Recorder): Tally {
+  const { overVoltageTrips, underVoltageTrips, overCurrentTrips } = log;
+  return { overVoltageTrips, underVoltageTrips, overCurrentTrips, trips, lostWh: log.lostWh[cycle - 1] };
 }
 
 /** Closes a cycle: drift, and the end of charge if the criterion was not met. */

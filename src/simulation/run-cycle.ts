@@ -1,6 +1,7 @@
 import type { BankFactors } from '../sampling/bank-factors.js';
 import type { DutySegment } from '../study/study.js';
 import { advance, type Journey, settleJourney } from './advance.js';
+import { resetChatter } from './chatter.js';
 
 /** Starts a cycle: a charger that restarts at each cycle works towards absorption again. */
 export function startCycle(journey: Journey): void {
@@ -25,6 +26,7 @@ export function runSegment(
   terminal.demandA = segment.loadA * factors.loadFactor;
   terminal.chargeW = segment.chargeW === null ? Number.POSITIVE_INFINITY : segment.chargeW * factors.chargeFactor;
   const isDone = (): boolean => (segment.endsWhenCharged && !terminal.charging) || stop();
+  resetChatter(journey.chatter);
   settleJourney(journey);
   if (!isDone()) advance(journey, kernel.nowS + segment.durationS, isDone);
 }

@@ -4,7 +4,7 @@ import { settleBus } from '../bank/bus.js';
 import { fixConduction } from '../bank/conduction.js';
 import type { BankEvent, BankEventKind } from '../bank/events.js';
 import { updateChainModes } from '../bank/paths.js';
-import { cellVoltageV, type Kernel, updateCellConstants, updateEmf, updateEmfShifts, updateExtremes } from './kernel.js';
+import { cellVoltageV, copyInto, type Kernel, updateCellConstants, updateEmf, updateEmfShifts, updateExtremes } from './kernel.js';
 import type { StepWork } from './step.js';
 import { type Terminal, updateTerms } from './terminal.js';
 import { actOnDue, updateMet, updateNextDue, updateValues, type Watch } from './watch.js';
@@ -26,8 +26,8 @@ export function settle(
   report: (event: BankEvent) => void,
 ): void {
   const { bank, state, bus, point } = kernel;
-  const spent = new Uint8Array(watch.met.length);
-  const bleedSpent = new Uint8Array(bank.cells);
+  watch.spent.fill(0);
+  work.bleedSpent.fill(0);
   work.passedAs.fill(0);
   updateChainModes(bank, state);
   updateTerms(terminal, kernel.terms);
@@ -40,12 +40,12 @@ export function settle(
     settleBus(bank, state, kernel.cache, point.emfV, kernel.terms, bus);
     updateEmfShifts(kernel);
     updateExtremes(kernel, bus.currentA, state.filterA);
-    if (switchBleed(kernel, bleedSpent)) continue;
+    if (switchBleed(kernel, work.bleedSpent)) continue;
     updateValues(kernel, terminal, watch, bus.currentA, bus.bankA, bus.bankV);
     updateMet(kernel, terminal, watch);
-    if (actOnDue(kernel, terminal, watch, spent, tell)) continue;
+    if (actOnDue(kernel, terminal, watch, tell)) continue;
     updateCellConstants(kernel);
-    work.firstA.set(bus.currentA);
+    copyInto(bus.currentA, work.firstA);
     updateNextDue(kernel, watch);
     return;
   }

@@ -13,7 +13,7 @@ import { createJourney, type Journey, type JourneyListeners } from './advance.js
 import { testCapacity } from './capacity-test.js';
 import { commissionBank } from './commission.js';
 import { drawnFeatures } from './drawn-features.js';
-import { createRecorder, type Recorder, recordEvent, recordStep } from './recorder.js';
+import { beginBurstRecord, createRecorder, type Recorder, recordEvent, recordLeap, recordStep } from './recorder.js';
 import { runCourse } from './run-course.js';
 
 
@@ -75,7 +75,7 @@ export function simulateTwin(prepared: PreparedCandidate): OutcomeRow {
 export function startBank(
   prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv'>,
   modules: ReadonlyMap<string, ModuleParameters>,
-  also: Partial<JourneyListeners> = {},
+  also: JourneyListeners = {},
 ): { readonly journey: Journey; readonly recorder: Recorder } {
   const { study, candidate, ocv } = prepared;
   const bank = buildBank(candidate, modules, ocv);
@@ -90,6 +90,8 @@ export function startBank(
       recordStep(recorder, journey, stepS);
       also.onStep?.(journey, stepS);
     },
+    onBurst: () => beginBurstRecord(recorder),
+    onLeap: (ratio) => recordLeap(recorder, ratio),
   });
   return { journey, recorder };
 }

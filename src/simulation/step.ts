@@ -1,4 +1,4 @@
-import { hysteresisAfter, type Kernel, solveKept, updateEmf, updateExtremes } from './kernel.js';
+import { copyInto, hysteresisAfter, type Kernel, solveKept, updateEmf, updateExtremes } from './kernel.js';
 
 /** Room for the stages of one step; arrays over chains, filters pair by pair (pair * chains + chain). */
 export interface StepWork {
@@ -13,14 +13,18 @@ export interface StepWork {
   readonly endAs: Float64Array;
   readonly endFilterA: Float64Array;
   /** Bus energy of the latest attempt, into the bank, J. */
+  /** Cells whose bleed has been switched at the instant being settled. */
+  readonly bleedSpent: Uint8Array;
   busEnergyJ: number;
   endBankA: number;
   endBankV: number;
   stepS: number;
 }
 
+/** Distance from a branch of the hysteresis at which a cell is taken to be on it. */
+const ON_BRANCH = 1e-6;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */
-export const CHARGE_TOLERANCE = 2e-6;
+export const CHARGE_TOLERANCE = 1e-5;
 
 export function createStepWork(kernel: Kernel): StepWork {
   const chains = kernel.emfShiftV.length;
@@ -34,6 +38,7 @@ export function createStepWork(kernel: Kernel): StepWork {
     filterA: new Float64Array(filters),
     endAs: new Float64Array(chains),
     endFilterA: new Float64Array(filters),
+    bleedSpent: new Uint8Array(kernel.bank.cells),
     busEnergyJ: 0,
     endBankA: 0,
     endBankV: 0,
@@ -67,7 +72,7 @@ export function tryStep(kernel: Kernel, work: StepWork, stepS: number): number {
   filterConstant(bank.timeConstantS, halfS, state.filterA, firstA, filterA);
   updateEmf(kernel, halfS, passedAs, filterA);
   if (!solveKept(kernel)) return Number.POSITIVE_INFINITY;
-  secondA.set(point.currentA);
+  copyInto(point.currentA, secondA);
   const secondW = point.bankA * point.bankV;
 
   const laterS = 0.75 * stepS;
@@ -75,14 +80,14 @@ export function tryStep(kernel: Kernel, work: StepWork, stepS: number): number {
   filterConstant(bank.timeConstantS, laterS, state.filterA, secondA, filterA);
   updateEmf(kernel, laterS, passedAs, filterA);
   if (!solveKept(kernel)) return Number.POSITIVE_INFINITY;
-  thirdA.set(point.currentA);
+  copyInto(point.currentA, thirdA);
   const thirdW = point.bankA * point.bankV;
 
   for (let i = 0; i < chains; i++) endAs[i] = (stepS / 9) * (2 * firstA[i] + 3 * secondA[i] + 4 * thirdA[i]);
   filterLinear(bank.timeConstantS, stepS, state.filterA, firstA, endAs, endFilterA);
   updateEmf(kernel, stepS, endAs, endFilterA);
   if (!solveKept(kernel)) return Number.POSITIVE_INFINITY;
-  lastA.set(point.currentA);
+  copyInto(point.currentA, lastA);
   work.endBankA = point.bankA;
   work.endBankV = point.bankV;
   work.busEnergyJ = (stepS / 9) * (2 * bus.bankA * bus.bankV + 3 * secondW + 4 * thirdW);
@@ -173,7 +178,7 @@ export function commitStep(kernel: Kernel, work: StepWork): void {
     if (bank.hasHysteresis) {
       const h = hysteresisAfter(state.hysteresis[c], q - offsetA[c] * stepS, bank.hysteresisPerAs[c]);
       // Close to a branch the exponential no longer matters; on it, it costs nothing.
-      state.hysteresis[c] = Math.abs(h) > 1 - 1e-9 ? Math.sign(h) : h;
+      state.hysteresis[c] = Math.abs(h) > 1 - ON_BRANCH ? Math.sign(h) : h;
     }
   }
   for (let k = 0; k < pairs; k++) {
@@ -182,10 +187,10 @@ export function commitStep(kernel: Kernel, work: StepWork): void {
       state.offsetFilterA[c] = offsetA[cell] + (state.offsetFilterA[c] - offsetA[cell]) * decay;
     }
   }
-  state.filterA.set(endFilterA);
-  bus.currentA.set(work.lastA);
+  copyInto(endFilterA, state.filterA);
+  copyInto(work.lastA, bus.currentA);
   bus.bankA = work.endBankA;
   bus.bankV = work.endBankV;
-  work.firstA.set(work.lastA);
+  copyInto(work.lastA, work.firstA);
   kernel.nowS += stepS;
 }

@@ -66,7 +66,9 @@ export function terminalValue(
       return regimeValue(terms, bus, bankA, bankV);
     case LOAD_SWITCH:
       if (load.disconnectV === null) return NEVER;
-      return terminal.loadConnected ? load.disconnectV - bankV : bankV - load.reconnectV;
+      if (terminal.loadConnected) return load.disconnectV - bankV;
+      // A bus that nothing feeds floats at any voltage.
+      return bus.fed ? bankV - load.reconnectV : NEVER;
     case TAIL:
       if (!terminal.charging || terminal.chargeW === 0) return NEVER;
       return Math.min(bankV - AT_ABSORPTION * charger.absorptionV, charger.tailA - bankA);

@@ -6,7 +6,7 @@ import {
   nextTimeS,
   PROTECTION_KINDS,
   protectionDelayS,
-  protectionValue,
+  protectionValuesInto,
   updateSleep,
 } from '../bank/protection.js';
 import { wrongSideV } from '../bank/conduction.js';
@@ -36,10 +36,14 @@ export interface Watch {
   readonly value: Float64Array;
   readonly met: Uint8Array;
   readonly dueS: Float64Array;
+  /** When a condition that holds was met. */
+  readonly sinceS: Float64Array;
   /** Earliest instant at which time alone makes something happen. */
   nextDueS: number;
   readonly firstChain: number;
   readonly firstTerminal: number;
+  /** Conditions that have acted at the instant being settled. */
+  readonly spent: Uint8Array;
 }
 
 export function createWatch(kernel: Kernel): Watch {
@@ -50,9 +54,11 @@ export function createWatch(kernel: Kernel): Watch {
     value: new Float64Array(count),
     met: new Uint8Array(count),
     dueS: new Float64Array(count).fill(Number.POSITIVE_INFINITY),
+    sinceS: new Float64Array(count).fill(Number.POSITIVE_INFINITY),
     nextDueS: Number.POSITIVE_INFINITY,
     firstChain,
     firstTerminal,
+    spent: new Uint8Array(count),
   };
 }
 
@@ -66,13 +72,8 @@ export function updateValues(
   bankV: number,
 ): void {
   const { bank, state, bus, terms, point, highestV, lowestV } = kernel;
-  const { modules, chainOfModule } = bank;
   const { value, firstChain, firstTerminal } = watch;
-  for (let kind = 0, at = 0; kind < PROTECTION_KINDS; kind++) {
-    for (let m = 0; m < modules; m++, at++) {
-      value[at] = protectionValue(bank, state, kind, m, highestV[m], lowestV[m], currentA[chainOfModule[m]]);
-    }
-  }
+  protectionValuesInto(bank, state, highestV, lowestV, currentA, value);
   for (let i = 0; i < currentA.length; i++) {
     value[firstChain + i] = wrongSideV(bank, state, i, point.emfV[i], currentA[i]);
   }
@@ -89,11 +90,12 @@ export function pastChange(watch: Watch, at: number): number {
 
 /** Turns a condition over; one newly met starts its clock. Rectifiers and regimes are settled instead. */
 export function turnOver(kernel: Kernel, terminal: Terminal, watch: Watch, at: number): void {
-  const { met, dueS, firstChain, firstTerminal } = watch;
+  const { met, dueS, sinceS, firstChain, firstTerminal } = watch;
   if (at >= firstChain && at <= firstTerminal + REGIME) return;
   met[at] = 1 - met[at];
   if (met[at] === 0) {
     dueS[at] = Number.POSITIVE_INFINITY;
+    sinceS[at] = Number.POSITIVE_INFINITY;
     return;
   }
   const { modules } = kernel.bank;
@@ -101,6 +103,7 @@ export function turnOver(kernel: Kernel, terminal: Terminal, watch: Watch, at: n
     at < firstChain
       ? protectionDelayS(kernel.bank, kernel.state, Math.floor(at / modules), at % modules)
       : terminalDelayS(terminal, at - firstTerminal);
+  sinceS[at] = kernel.nowS;
   dueS[at] = kernel.nowS + delayS;
 }
 
@@ -111,22 +114,26 @@ export function updateMet(kernel: Kernel, terminal: Terminal, watch: Watch): voi
   }
 }
 
+/** The first condition from `from` on that must be turned over, -1 if there is none. */
+export function nextTurned(watch: Watch, from: number): number {
+  for (let at = from; at < watch.value.length; at++) if (pastChange(watch, at) >= 0) return at;
+  return -1;
+}
+
 /**
- * Lets everything happen whose time has come.
+ * Lets everything happen whose time has come. A condition in `watch.spent` has acted at this instant already: each acts
+ * at most once, so that a BMS without delays cannot switch for ever within no time.
  *
- * @param spent conditions that have acted at this instant already: each acts at most once, so that a BMS without delays
- *   cannot switch for ever within no time
  * @returns true if the bus has to be settled again
  */
 export function actOnDue(
   kernel: Kernel,
   terminal: Terminal,
   watch: Watch,
-  spent: Uint8Array,
   report: (kind: BankEventKind, module: number) => void,
 ): boolean {
   const { bank, state, nowS, terms } = kernel;
-  const { met, dueS, firstChain, firstTerminal } = watch;
+  const { met, dueS, sinceS, firstChain, firstTerminal, spent } = watch;
   const { modules } = bank;
   let changed = false;
   for (let at = 0; at < met.length; at++) {
@@ -134,6 +141,7 @@ export function actOnDue(
     spent[at] = 1;
     met[at] = 0;
     dueS[at] = Number.POSITIVE_INFINITY;
+    sinceS[at] = Number.POSITIVE_INFINITY;
     if (at < firstChain) {
       const m = at % modules;
       for (const kind of actOnProtection(bank, state, Math.floor(at / modules), m, nowS)) report(kind, m);

@@ -2,11 +2,11 @@ import type { z } from 'zod';
 import { amount, choice } from './amount.js';
 import { section } from './section.js';
 
-export const BLEED_RULES = ['each', 'above-lowest', 'none'] as const;
-export const BLEED_TIMES = ['charging', 'always'] as const;
+const BLEED_RULES = ['each', 'above-lowest', 'none'] as const;
+const BLEED_TIMES = ['charging', 'always'] as const;
 
 export const cellVoltage = amount({ above: 0, atMost: 10 });
-export const bleedCurrent = amount({ atLeast: 0, atMost: 100_000 });
+const bleedCurrent = amount({ atLeast: 0, atMost: 100_000 });
 
 /** Difference between start and stop of bleeding unless the study says otherwise [own choice], V. */
 export const STOP_BELOW_START_V = 0.02;

@@ -4,12 +4,12 @@ import { bleedSection } from './bleed.js';
 import { CHARGER } from './charger.js';
 import { STRING_LEADS } from './leads.js';
 import { LOAD } from './load.js';
+import { moduleId, NAME, NAME_RULE } from './names.js';
 import { named, section } from './section.js';
-import { moduleId, NAME, NAME_RULE } from './stock.js';
 
 /** Longest string and most strings in parallel; with 16 cells per module that is 64 cells in series at most. */
-export const MOST_POSITIONS = 4;
-export const MOST_STRINGS = 8;
+const MOST_POSITIONS = 4;
+const MOST_STRINGS = 8;
 
 const STRINGS_RULE = `a list of 1 to ${MOST_STRINGS} strings such as [[A1, A2], [B1, B2]]`;
 const STRING_RULE = `a list of 1 to ${MOST_POSITIONS} modules from the negative end`;

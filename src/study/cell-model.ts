@@ -3,7 +3,7 @@ import { type About, amount } from './amount.js';
 import { section } from './section.js';
 
 /** Cells in series that modules have. */
-export const CELL_COUNTS = [4, 8, 16] as const;
+const CELL_COUNTS = [4, 8, 16] as const;
 
 /** @returns schema of a value that every cell of a module has: one number for all, or one per cell */
 export function cellValues(range: z.ZodNumber) {

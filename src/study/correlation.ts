@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { choleskyFactor } from '../mathematics/cholesky.js';
 import { amount, choice } from './amount.js';
 import type { Layers } from './layers.js';
 import { QUANTITIES, type QuantityName } from './quantities.js';
@@ -75,21 +76,8 @@ function matrixOf(correlations: readonly Correlation[]): number[][] {
   );
 }
 
-/** A symmetric matrix is positive definite if and only if its Cholesky factorisation has positive pivots only. */
+/** Positive definite: no quantity of the matrix is fixed by the others. */
 function isPositiveDefinite(matrix: readonly (readonly number[])[]): boolean {
-  const factor: number[][] = [];
-  for (const [row, values] of matrix.entries()) {
-    const current: number[] = [];
-    for (let column = 0; column <= row; column++) {
-      const other = column === row ? current : (factor[column] ?? []);
-      let rest = values[column] ?? 0;
-      for (let k = 0; k < column; k++) rest -= (current[k] ?? 0) * (other[k] ?? 0);
-      if (column === row) {
-        if (!(rest > 1e-12)) return false;
-        current.push(Math.sqrt(rest));
-      } else current.push(rest / (other[column] ?? 1));
-    }
-    factor.push(current);
-  }
-  return true;
+  const factor = choleskyFactor(matrix);
+  return factor?.every((row) => (row.at(-1) ?? 0) > 0) ?? false;
 }

@@ -2,8 +2,8 @@ import type { z } from 'zod';
 import { amount } from './amount.js';
 import { EXPLICIT_BMS } from './bms.js';
 import { cellValues, commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
+import { MODULE_ID, MODULE_ID_RULE } from './names.js';
 import { atMostOneOf, named, section } from './section.js';
-import { MODULE_ID, MODULE_ID_RULE } from './stock.js';
 
 const oneLeakage = atMostOneOf('leakage_mA', 'leakage_percent_per_month');
 

@@ -1,7 +1,7 @@
 import type { Law } from './study.js';
 
 /** Unbounded laws are cut at so many standard deviations on either side. */
-export const CUT_SDS = 5;
+const CUT_SDS = 5;
 
 /**
  * Least and greatest deviation that a law can give after its cut, in the unit of the law.

@@ -2,16 +2,16 @@ import { z } from 'zod';
 import { amount, choice } from './amount.js';
 import { defaultOcvTable } from './default-ocv.js';
 import { filePath } from './file-path.js';
+import { NAME, NAME_RULE } from './names.js';
 import { didYouMean } from './nearest-name.js';
 import { readNumericTable } from './numeric-table.js';
 import type { Reading } from './reading.js';
 import { atMostOneOf, exactlyOneOf, named, section } from './section.js';
-import { NAME, NAME_RULE } from './stock.js';
 import type { OcvTable } from './study.js';
 import type { StudyPath } from './study-path.js';
 
 /** Name of the table that every study has. */
-export const DEFAULT_TABLE = 'default';
+const DEFAULT_TABLE = 'default';
 
 const LIST_RULE = 'a list of at least 2 ascending numbers';
 const points = (range: z.ZodNumber) => z.array(range, LIST_RULE).min(2, LIST_RULE).max(10_000, LIST_RULE);

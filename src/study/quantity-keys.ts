@@ -20,8 +20,6 @@ export const QUANTITY_KEYS = {
   bleedStartV: 'bms.bleed.start_V',
 } as const satisfies Record<QuantityName, string>;
 
-export type QuantityKey = (typeof QUANTITY_KEYS)[QuantityName];
-
 const NAMES_BY_KEY: ReadonlyMap<string, QuantityName> = new Map(
   (Object.keys(QUANTITY_KEYS) as QuantityName[]).map((name) => [QUANTITY_KEYS[name], name]),
 );

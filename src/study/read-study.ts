@@ -1,7 +1,6 @@
-import type { MeasureChoice } from './acceptance.js';
 import type { Origin } from './origin.js';
 import type { Problem } from './problem.js';
-import type { ReadText } from './read-text.js';
+import type { ReadStudyOptions } from './read-options.js';
 import { type InputText, Reading } from './reading.js';
 import { resolveStudy } from './resolve-study.js';
 import type { SchemaFault } from './schema-faults.js';
@@ -13,22 +12,6 @@ import { renderPath, valueAt } from './study-path.js';
 import { readYaml, type YamlSource } from './yaml-source.js';
 
 export type { InputText } from './reading.js';
-
-/** Values of the command line that stand over those of the study file. */
-export interface Overrides {
-  readonly seed?: string | undefined;
-  readonly instances?: number | undefined;
-}
-
-export interface ReadStudyOptions {
-  /** Name of the file in messages, and the title of a study without one. */
-  readonly fileName: string;
-  /** Reads a file that the study names, its path as written there. */
-  readonly readText: ReadText;
-  /** What acceptance lines may name. */
-  readonly measures: readonly MeasureChoice[];
-  readonly overrides?: Overrides | undefined;
-}
 
 /** A study that can be run, or everything that is wrong with its file. */
 export type ReadStudy =

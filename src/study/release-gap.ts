@@ -1,51 +1,57 @@
-import { nominalModules } from './bank-module.js';
+import { type NominalModule, nominalModules } from './bank-module.js';
 import type { Reading } from './reading.js';
 import type { BmsSettings, Candidate, Study } from './study.js';
+import type { StudyPath } from './study-path.js';
 
-/** A delay at least this long keeps a BMS from switching without end, s. */
+/** Delays at least this long keep a BMS from switching without end, s. */
 const SHORTEST_DELAY_S = 0.1;
 
 /**
  * Refuses a BMS that would switch without end: when a path opens, the cell voltage jumps by I R0; if that reaches the
- * release at once and trip or release are not delayed, the path closes again in the same instant.
+ * release and trip or release are not delayed, the path closes again in the same instant.
  *
  * I is the largest current that the charger, or the load at the lowest cell voltage, can drive through one module.
  */
 export function checkReleaseGaps(study: Study, reading: Reading): void {
   for (const candidate of study.candidates) {
     for (const module of nominalModules(study, candidate).flat()) {
-      const bms = bmsOf(study, module.stock, module.id);
-      if (bms === undefined) continue;
-      const chargeA = Math.min(module.overCurrentChargeA, candidate.charger.limitA);
-      const dischargeA = Math.min(module.overCurrentDischargeA, largestLoadA(study, candidate));
-      const over = module.overVoltageV - module.overVoltageReleaseV;
-      const under = module.underVoltageReleaseV - module.underVoltageV;
-      const isDelayed = (trip: number, release: number): boolean => Math.min(trip, release) >= SHORTEST_DELAY_S;
+      const home = bmsOf(study, module);
+      if (home === undefined) continue;
+      const { bms, path } = home;
       const refuse = (section: string, gapV: number, currentA: number): void => {
         const jumpV = currentA * module.resistanceOhm;
         if (gapV > jumpV) return;
-        const path = [...modulePath(study, module.stock, module.id), 'bms', section];
         reading.faultWith(
-          path,
-          `must be a release further from the threshold than the jump of ${millivolts(jumpV)} when ${round(currentA)} A is ` +
-            `cut, or trip and release delayed by ${SHORTEST_DELAY_S} s, got ${millivolts(gapV)} in candidate ${candidate.key}`,
+          [...path, 'bms', section],
+          `must be a release further from the threshold than the jump of ${millivolts(jumpV)} when ${round(currentA)} A ` +
+            `is cut, or trip and release delayed by ${SHORTEST_DELAY_S} s, ` +
+            `got ${millivolts(gapV)} in candidate ${candidate.key}`,
         );
       };
-      if (!isDelayed(bms.overVoltageDelayS, bms.overVoltageReleaseHoldS)) refuse('over_voltage', over, chargeA);
-      if (!isDelayed(bms.underVoltageDelayS, bms.underVoltageReleaseHoldS)) refuse('under_voltage', under, dischargeA);
+      if (!isDelayed(bms.overVoltageDelayS, bms.overVoltageReleaseHoldS)) {
+        const chargeA = Math.min(module.overCurrentChargeA, candidate.charger.limitA);
+        refuse('over_voltage', module.overVoltageV - module.overVoltageReleaseV, chargeA);
+      }
+      if (!isDelayed(bms.underVoltageDelayS, bms.underVoltageReleaseHoldS)) {
+        const dischargeA = Math.min(module.overCurrentDischargeA, largestLoadA(study, candidate));
+        refuse('under_voltage', module.underVoltageReleaseV - module.underVoltageV, dischargeA);
+      }
     }
   }
 }
 
-function bmsOf(study: Study, stockKey: string, id: string): BmsSettings | undefined {
-  const stock = study.stocks.find(({ key }) => key === stockKey);
-  if (stock?.kind === 'population') return stock.bms;
-  return stock?.modules.find((module) => module.id === id)?.bms;
+function isDelayed(tripS: number, releaseS: number): boolean {
+  return tripS >= SHORTEST_DELAY_S && releaseS >= SHORTEST_DELAY_S;
 }
 
-function modulePath(study: Study, stockKey: string, id: string): readonly string[] {
+function bmsOf(
+  study: Study,
+  { id, stock: stockKey }: NominalModule,
+): { readonly bms: BmsSettings; readonly path: StudyPath } | undefined {
   const stock = study.stocks.find(({ key }) => key === stockKey);
-  return stock?.kind === 'explicit' ? ['stock', stockKey, 'modules', id] : ['stock', stockKey];
+  if (stock?.kind === 'population') return { bms: stock.bms, path: ['stock', stockKey] };
+  const module = stock?.modules.find((candidate) => candidate.id === id);
+  return module && { bms: module.bms, path: ['stock', stockKey, 'modules', id] };
 }
 
 /** Largest current of the duty, its power taken at the lowest voltage that the cells of the bank can have. */

@@ -8,7 +8,7 @@ import type { BleedSettings, BmsSettings, OverCurrentSettings } from './study.js
 import { renderPath } from './study-path.js';
 
 /** Quantities of a module that stand in the section `bms`. */
-export type BmsQuantity = Extract<QuantityName, `over${string}` | `under${string}` | `bleed${string}`>;
+type BmsQuantity = Extract<QuantityName, `over${string}` | `under${string}` | `bleed${string}`>;
 
 /** A resolved BMS: what spreads and what does not. */
 export interface ResolvedBms {

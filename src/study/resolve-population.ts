@@ -6,6 +6,7 @@ import { gradeLayer } from './grade.js';
 import { DEFAULT_GRADE } from './grade-name.js';
 import { type Layer, Layers } from './layers.js';
 import type { OcvIndex } from './ocv.js';
+import type { OriginSource } from './origin.js';
 import { QUANTITIES, type QuantityName } from './quantities.js';
 import type { Reading } from './reading.js';
 import { resolveBms } from './resolve-bms.js';
@@ -37,10 +38,11 @@ export function resolvePopulation(
     reading.fault(owner, 'a stock with rated_Ah or a nominal capacity_Ah');
     return undefined;
   }
-  reading.origins.push({ path: renderPath([...owner, 'rated_Ah']), unit: 'Ah', ...rated });
+  const { value: ratedAh, source } = rated;
+  reading.origins.push({ path: renderPath([...owner, 'rated_Ah']), value: String(ratedAh), unit: 'Ah', source });
   const cells = own.pick('cells_in_series')?.value ?? DEFAULT_CELL.cells_in_series;
   const layers = own
-    .over({ source: `grade ${grade.value}`, path: owner, values: gradeLayer(grade.value, Number(rated.value), cells) })
+    .over({ source: `grade ${grade.value}`, path: owner, values: gradeLayer(grade.value, ratedAh, cells) })
     .over({ source: 'default', path: owner, values: { ...DEFAULT_CELL, bms: DEFAULT_BMS } });
   const cellsInSeries = layers.setting('cells_in_series', reading);
   const ofModule = {
@@ -63,7 +65,7 @@ export function resolvePopulation(
     key,
     moduleIds: modules,
     cellsInSeries,
-    ratedAh: Number(rated.value),
+    ratedAh,
     quantities: asQuantities(resolved),
     correlations,
     cell,
@@ -72,13 +74,15 @@ export function resolvePopulation(
 }
 
 /** The label's capacity; a stock that tells only its nominal capacity is rated at that. */
-function ratedCapacity(own: Layers<Partial<StockInput>>) {
+function ratedCapacity(
+  own: Layers<Partial<StockInput>>,
+): { readonly value: number; readonly source: OriginSource } | undefined {
   const rated = own.pick('rated_Ah');
-  if (rated !== undefined) return { value: String(rated.value), source: rated.source };
+  if (rated !== undefined) return { value: rated.value, source: rated.source };
   for (const { source, values } of own.layers) {
     const capacity = values.capacity_Ah;
     const nominal = typeof capacity === 'number' ? capacity : capacity?.nominal;
-    if (nominal !== undefined) return { value: String(nominal), source };
+    if (nominal !== undefined) return { value: nominal, source };
   }
   return undefined;
 }

@@ -2,7 +2,7 @@ import { resolveAcceptance } from './acceptance.js';
 import { didYouMean } from './nearest-name.js';
 import { resolveOcv } from './ocv.js';
 import type { Origin } from './origin.js';
-import type { ReadStudyOptions } from './read-study.js';
+import type { ReadStudyOptions } from './read-options.js';
 import type { Reading } from './reading.js';
 import { checkReleaseGaps } from './release-gap.js';
 import { resolveCandidates } from './resolve-candidates.js';

@@ -4,19 +4,9 @@ import { POPULATION_BMS } from './bms.js';
 import { commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
 import { CORRELATIONS } from './correlation.js';
 import { GRADES } from './grade-name.js';
+import { moduleId } from './names.js';
 import { section } from './section.js';
 import { cellSpread, moduleSpread, pointsSpread } from './spread.js';
-
-/** Names of stocks, tables and candidates. */
-export const NAME = /^[a-z][a-z0-9-]{0,31}$/;
-export const NAME_RULE = 'a name of at most 32 small letters, digits and hyphens that begins with a letter';
-
-/** Names of modules. */
-export const MODULE_ID = /^[A-Za-z][A-Za-z0-9_-]{0,31}$/;
-export const MODULE_ID_RULE =
-  'a module name of at most 32 letters, digits, hyphens and underscores that begins with a letter';
-
-export const moduleId = z.string(MODULE_ID_RULE).regex(MODULE_ID, MODULE_ID_RULE);
 
 const MODULES_RULE = 'a list of module names such as [A1, A2], or a mapping of modules written down';
 

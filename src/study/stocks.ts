@@ -1,7 +1,8 @@
 import { z } from 'zod';
 import { EXPLICIT_STOCK, type ExplicitStockInput } from './explicit-module.js';
+import { NAME, NAME_RULE } from './names.js';
 import { named } from './section.js';
-import { NAME, NAME_RULE, POPULATION, type StockInput } from './stock.js';
+import { POPULATION, type StockInput } from './stock.js';
 
 /** The section `stock`: populations (modules as a list) and modules written down (modules as a mapping). */
 export const STOCKS = named(NAME, NAME_RULE, z.union([POPULATION, EXPLICIT_STOCK], 'a stock with its modules'));

@@ -1,7 +1,7 @@
 const SECONDS_PER_HOUR = 3600;
 
 /** A month of the study language, days. */
-export const DAYS_PER_MONTH = 30;
+const DAYS_PER_MONTH = 30;
 
 interface KeyUnit {
   readonly suffix: string;

@@ -8,7 +8,7 @@ const MOST_ALIASES = 100;
 const RESERVED_KEYS: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);
 
 /** Place in a file, both from 1. */
-export interface Place {
+interface Place {
   readonly line: number;
   readonly column: number;
 }

@@ -1,7 +1,8 @@
 import { mkdirSync, readdirSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { afterAll, describe, expect, it } from 'vitest';
-import { errorCode, writeDurably } from '../../src/execution/durable-file.js';
+import { writeDurably } from '../../src/execution/durable-file.js';
+import { errorCode } from '../../src/execution/system-error.js';
 import { Scratch } from './fake-run.js';
 
 const scratch = new Scratch();

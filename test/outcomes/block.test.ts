@@ -28,16 +28,17 @@ describe('blocks of instances', () => {
 });
 
 describe('the layout of outcomes', () => {
+  const strings = [
+    ['A', 'B', 'C'],
+    ['D', 'E', 'F'],
+  ];
+
   it('follows the strings of the candidate and the horizon of the study', () => {
-    const layout = outcomeLayout(
-      { cycles: 3 },
-      {
-        strings: [
-          ['A', 'B', 'C'],
-          ['D', 'E', 'F'],
-        ],
-      },
-    );
+    const layout = outcomeLayout({ cycles: 3 }, { wiring: 'cross-linked', strings });
     expect(layout).toEqual({ strings: 2, positions: 3, checkpoints: [1, 2, 3] });
+  });
+
+  it('has one position per string for native packs, whatever their cells came from', () => {
+    expect(outcomeLayout({ cycles: 3 }, { wiring: 'native', strings }).positions).toBe(1);
   });
 });

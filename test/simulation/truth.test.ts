@@ -1,14 +1,14 @@
 import { describe, expect, it } from 'vitest';
 import { referenceBanks } from '../reference/banks.js';
 import { chargeDifference, compareEvents } from '../reference/contract.js';
-import { simulateSlowBank } from '../reference/slow-bank.js';
+import { simulateSlowBank, TRUSTED_STEPS } from '../reference/slow-bank.js';
 import { runEngine } from './engine-run.js';
 
 describe('the engine against the slow rewrite', () => {
   for (const bank of referenceBanks()) {
     it(bank.name, () => {
       const t0 = performance.now();
-      const slow = simulateSlowBank(bank, { stepS: 10, kneeStepS: 1 });
+      const slow = simulateSlowBank(bank, TRUSTED_STEPS);
       const t1 = performance.now();
       const fast = runEngine(bank);
       const t2 = performance.now();

@@ -1,20 +1,22 @@
 /**
- * Inverse of a nodal conductance matrix (node resistances), by eliminating node after node as star to mesh:
+ * Node voltages of a network of conductances for given currents into its nodes, by eliminating node after node as star
+ * to mesh:
  *
  *   p_k = s_k + sum_j a_kj;   a_ij += a_ik a_kj / p_k;   s_i += a_ik s_k / p_k
  *
- * with a_ij the conductance between two nodes and s_i that to ground. No step subtracts, so every entry keeps nearly full
- * relative precision even where conductances of 1000 S and 1 µS meet at one node; a plain factorisation loses all
- * digits of the difference between two nodes that hang on a shunt together.
+ * with a_ij the conductance between two nodes and s_i that to ground. No step subtracts, so conductances keep nearly full
+ * relative precision even where 1000 S and 1 µS meet at one node. What flows in at one node and out at another leaves
+ * only a small voltage of both together behind, so their difference keeps its digits too; it would lose them as the
+ * difference of entries of the inverse where both nodes hang on a shunt.
  *
  * @param between conductances between nodes, row by row, symmetric, diagonal ignored, none negative; overwritten
  * @param toGround conductance of each node to ground, none negative; overwritten
- * @returns the inverse, row by row, symmetric
+ * @param currentA currents into the nodes, one case after the other; overwritten with the node voltages
  * @throws RangeError if a node has no path to ground
  * @see Grassmann, Taksar & Heyman 1985, Operations Research 33(5), 1107-1116 (elimination without subtraction);
  *   Alfa, Xue & Ye 2002, Math. Comp. 71, 217-236 (its precision for diagonally dominant M-matrices)
  */
-export function invertConductances(between: Float64Array, toGround: Float64Array): Float64Array {
+export function solveConductances(between: Float64Array, toGround: Float64Array, currentA: Float64Array): void {
   const n = toGround.length;
   const pivots = new Float64Array(n);
   for (let k = 0; k < n; k++) {
@@ -29,11 +31,9 @@ export function invertConductances(between: Float64Array, toGround: Float64Array
       for (let j = k + 1; j < n; j++) if (j !== i) between[i * n + j] += share * between[k * n + j];
     }
   }
-  const inverse = new Float64Array(n * n);
-  for (let source = 0; source < n; source++) {
-    const x = inverse.subarray(source * n, source * n + n);
-    x[source] = 1;
-    for (let k = source; k < n; k++) {
+  for (let start = 0; start < currentA.length; start += n) {
+    const x = currentA.subarray(start, start + n);
+    for (let k = 0; k < n; k++) {
       if (x[k] === 0) continue;
       for (let i = k + 1; i < n; i++) x[i] += (between[i * n + k] / pivots[k]) * x[k];
     }
@@ -43,5 +43,4 @@ export function invertConductances(between: Float64Array, toGround: Float64Array
       x[k] = sum / pivots[k];
     }
   }
-  return inverse;
 }

@@ -1,0 +1,83 @@
+import { describe, expect, it } from 'vitest';
+import { checkCommand } from '../../src/commands/check.js';
+import type { CheckAids } from '../../src/commands/trial.js';
+import { repositoryText } from '../study/study-under-test.js';
+import { type MemoryShell, memoryShell } from './memory-shell.js';
+
+const FILES = {
+  'studies/demo.yaml': repositoryText('studies/demo.yaml'),
+  'studies/demo-week.csv': repositoryText('studies/demo-week.csv'),
+};
+/** 30 000 bank-cycles per second; no twin loses load. */
+const AIDS: CheckAids = { trial: () => ({ bankCyclesPerSecond: 30_000 }), candidatesWhoseTwinLosesLoad: () => [] };
+
+function check(options: { json?: boolean; quiet?: boolean } = {}, aids = AIDS): MemoryShell {
+  const shell = memoryShell(FILES);
+  expect(checkCommand({ study: 'studies/demo.yaml', ...options }, shell, aids)).toBe(0);
+  return shell;
+}
+
+describe('check', () => {
+  it('prints every value with its origin, at most 100 ASCII columns wide', () => {
+    const { out } = check().printed;
+    expect(out).toMatch(/^stock\.older$/m);
+    expect(out).toMatch(/^ {2}capacity_Ah +90 Ah +study$/m);
+    expect(out).toMatch(/^ {2}capacity_Ah\.module +sd 3 % +grade older$/m);
+    expect(out).toMatch(/^ {2}bms\.over_voltage\.release_V +3\.45 V +default$/m);
+    expect(out).toMatch(/^ {2}block +32 +default$/m);
+    for (const line of out.split('\n')) expect(line).toMatch(/^[ -~]{0,100}$/);
+  });
+
+  it('says once what all candidates have in common', () => {
+    const { out } = check().printed;
+    expect(out).toMatch(/^every candidate$/m);
+    expect(out.match(/charger\.absorption_V/g)).toHaveLength(1);
+    expect(out).toMatch(/^candidates\.cross-linked\n {2}wiring +cross-linked +study\n {2}link_mOhm +1 mOhm +study$/m);
+  });
+
+  it('tells the bank-cycles and the time of a run', () => {
+    // By hand: 512 x 180 x 6 = 552960 bank-cycles, at 30000 a second 18.4 s = 0.3 min.
+    expect(check().printed.out).toMatch(
+      /552960 bank-cycles \(512 banks x 180 cycles x 6 candidates\), about 0\.3 min on one thread/,
+    );
+  });
+
+  it('warns of a duty whose twin loses load', () => {
+    const { out } = check({}, { ...AIDS, candidatesWhoseTwinLosesLoad: () => ['native'] }).printed;
+    expect(out.replaceAll('\n', ' ')).toMatch(
+      /warning: the duty is too much even without spread: the twin loses load \(native\)/,
+    );
+  });
+
+  it('prints one JSON document with --json', () => {
+    const document = JSON.parse(check({ json: true }).printed.out);
+    expect(document.estimate).toEqual({ bank_cycles: 552_960, minutes_on_one_thread: 552_960 / 30_000 / 60 });
+    expect(document.study.candidates).toHaveLength(6);
+    expect(document.origins).toContainEqual({ path: 'block', value: '32', unit: '', source: 'default' });
+  });
+
+  it('keeps warnings and leaves out the table with --quiet', () => {
+    const { out, err } = check({ quiet: true }).printed;
+    expect(out).toBe('');
+    expect(err).toMatch(/^warning: bleed rule in force: each, always \(stock newer\)$/m);
+  });
+
+  it('reports all problems on stderr with status 2', () => {
+    const shell = memoryShell({ 'a.yaml': 'motleybank: 1\ninstanses: 3\nseed: -1\n' });
+    expect(checkCommand({ study: 'a.yaml' }, shell, AIDS)).toBe(2);
+    expect(shell.printed.out).toBe('');
+    expect(shell.printed.err.split('\n').slice(0, 3)).toEqual([
+      'a.yaml:1:1 stock must be a mapping of names, got nothing',
+      'a.yaml:1:1 duty must be a mapping with keys among profile, phases, parts, cycle_h, load_factor, charge_factor, got nothing',
+      'a.yaml:1:1 candidates must be a mapping of names, got nothing',
+    ]);
+    expect(shell.printed.err).toMatch(/a.yaml:2:1 instanses must be a known key.*did you mean instances/);
+    expect(shell.printed.err).toMatch(/5 problems; nothing was run\n$/);
+  });
+
+  it('says why a study cannot be read', () => {
+    const shell = memoryShell();
+    expect(checkCommand({ study: 'none.yaml' }, shell, AIDS)).toBe(2);
+    expect(shell.printed.err).toBe('none.yaml cannot be read: no such file\n');
+  });
+});
