@@ -15,6 +15,8 @@ export interface OcvCurves {
   readonly buckets: Int32Array;
   readonly lowest: Float64Array;
   readonly perUnit: Float64Array;
+  /** Some curve has kinks, which no error estimate of a step sees. */
+  readonly hasKinks: boolean;
 }
 
 const BUCKETS = 1024;
@@ -58,6 +60,7 @@ export function compileOcvCurves(tables: readonly OcvTable[]): OcvCurves {
     buckets,
     lowest,
     perUnit,
+    hasKinks: tables.some(({ interpolation }) => interpolation === 'linear'),
   };
 }
 

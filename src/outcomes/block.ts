@@ -1,4 +1,5 @@
-import { checkpointCycles, type OutcomeLayout } from './columns.js';
+import { checkpointCycles } from '../measures/checkpoint-cycles.js';
+import type { OutcomeLayout } from './columns.js';
 
 /**
  * A unit of work by name only: the study is already where the work is done. Block 0 is the candidate's twin, which is

@@ -1,4 +1,8 @@
+import { DRAWN_FEATURES } from '../measures/drawn-features.js';
+import type { OutcomeRow } from '../measures/outcome-row.js';
 import { CYCLE_MEASURES, MEASURES } from '../measures/registry.js';
+
+export type { OutcomeRow } from '../measures/outcome-row.js';
 
 /** A column of the outcomes of one candidate. */
 export interface OutcomeColumn {
@@ -20,31 +24,12 @@ export interface OutcomeLayout {
   readonly checkpoints: readonly number[];
 }
 
-/** One instance of one candidate: values in the order of the layout's columns, null where a measure does not apply. */
-export interface OutcomeRow {
-  /** From 1. */
-  readonly instance: number;
-  readonly values: readonly (number | null)[];
-}
-
 /** The outcomes of one block: instances in ascending order. */
 export interface OutcomeBlock {
   /** From 1. */
   readonly block: number;
   readonly rows: readonly OutcomeRow[];
 }
-
-/** Features of a module that are kept beside the outcomes, in column order. */
-export const DRAWN_FEATURES = [
-  { name: 'capacity_Ah', unit: 'Ah', definition: 'Capacity of the module: its smallest cell.' },
-  { name: 'resistance_mOhm', unit: 'mOhm', definition: 'Series resistance of the module: cells, joints and BMS path.' },
-  { name: 'standby_mA', unit: 'mA', definition: 'Standby current of the BMS.' },
-  { name: 'leakage_mA', unit: 'mA', definition: 'Mean leakage current of the cells.' },
-  { name: 'efficiency', unit: '', definition: 'Mean coulombic efficiency of the cells.' },
-  { name: 'arrival_charge_percent', unit: '%', definition: 'Capacity-weighted mean charge of the cells as received.' },
-  { name: 'over_voltage_V', unit: 'V', definition: 'Over-voltage threshold.' },
-  { name: 'under_voltage_V', unit: 'V', definition: 'Under-voltage threshold.' },
-] as const;
 
 /** Columns in order: bank factors, drawn features slot by slot, measures, by-cycle values. */
 export function outcomeColumns(layout: OutcomeLayout): readonly OutcomeColumn[] {
@@ -89,17 +74,4 @@ export function outcomeColumns(layout: OutcomeLayout): readonly OutcomeColumn[] 
     }
   }
   return columns;
-}
-
-/**
- * Checkpoint cycles of a horizon: the first and last cycle and evenly spaced ones between, at most `most`.
- * Spacing is the smallest whole number that fits, so that a longer horizon only thins them.
- */
-export function checkpointCycles(cycles: number, most = 31): readonly number[] {
-  if (cycles <= most) return Array.from({ length: cycles }, (_, index) => index + 1);
-  const spacing = Math.ceil(cycles / (most - 1));
-  const checkpoints = [1];
-  for (let cycle = spacing; cycle < cycles; cycle += spacing) if (cycle > 1) checkpoints.push(cycle);
-  checkpoints.push(cycles);
-  return checkpoints;
 }

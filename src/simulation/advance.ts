@@ -18,6 +18,8 @@ const MOST_STEP_S = 1800;
 /** Step tried first after a jump of current, and what counts as one. */
 const FIRST_STEP_S = 60;
 const JUMP_A = 2;
+/** Charge that a step may pass over a curve with kinks, fraction of capacity. */
+const MOST_CHARGE_OVER_KINKS = 0.01;
 /** Change of a cell's voltage over a step above which it is tried again shorter, V: keeps events well bracketed. */
 const MOST_VOLTAGE_CHANGE_V = 0.1;
 /** Width to which an event is bracketed inside its step, s. */
@@ -129,7 +131,9 @@ export function advance(journey: Journey, untilS: number, stop: () => boolean): 
       leapOverChatter(journey, untilS);
       continue;
     }
-    const stepS = journey.stepS * 1.1 > restS ? restS : Math.min(journey.stepS, MOST_STEP_S);
+    const mostS = kernel.bank.ocv.hasKinks ? Math.min(MOST_STEP_S, kinkStepS(kernel)) : MOST_STEP_S;
+    const tryS = Math.min(journey.stepS, mostS);
+    const stepS = tryS * 1.1 > restS ? restS : tryS;
     const happened = takeStep(journey, stepS);
     if (restS - journey.work.stepS <= 1e-9 && kernel.nowS > goalS - 1e-6) kernel.nowS = goalS;
     if (happened) {
@@ -138,6 +142,15 @@ export function advance(journey: Journey, untilS: number, stop: () => boolean): 
       leapOverChatter(journey, untilS);
     }
   }
+}
+
+/** Longest step that passes little enough charge to notice the kinks of a curve of straight lines. */
+function kinkStepS({ bank, bus }: Kernel): number {
+  let stepS = Number.POSITIVE_INFINITY;
+  for (let i = 0; i < bus.currentA.length; i++) {
+    stepS = Math.min(stepS, (MOST_CHARGE_OVER_KINKS * bank.chainCapacityAs[i]) / Math.abs(bus.currentA[i]));
+  }
+  return Math.max(LEAST_STEP_S, stepS);
 }
 
 /** Takes one step of at most `stepS`. @returns true if it ended at an event */

@@ -1,5 +1,5 @@
 import type { Bank } from '../bank/bank.js';
-import { DRAWN_FEATURES } from '../outcomes/columns.js';
+import { DRAWN_FEATURES } from '../measures/drawn-features.js';
 
 type FeatureName = (typeof DRAWN_FEATURES)[number]['name'];
 

@@ -25,6 +25,8 @@ export interface StepWork {
 const ON_BRANCH = 1e-6;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */
 export const CHARGE_TOLERANCE = 1e-5;
+/** The same per second of a step: bounds the error of the mean current of short steps, as in a taper, 1/s. */
+const RATE_TOLERANCE = 1.5e-7;
 
 export function createStepWork(kernel: Kernel): StepWork {
   const chains = kernel.emfShiftV.length;
@@ -98,7 +100,7 @@ export function tryStep(kernel: Kernel, work: StepWork, stepS: number): number {
     const error = Math.abs(errorAs) / bank.chainCapacityAs[i];
     if (!(error <= worst)) worst = error;
   }
-  return worst / CHARGE_TOLERANCE;
+  return worst / Math.min(CHARGE_TOLERANCE, RATE_TOLERANCE * stepS);
 }
 
 /** Filtered currents after `elapsedS` of constant chain currents: F = I + (F0 - I) exp(-t / tau). */

@@ -70,7 +70,7 @@ export function terminalValue(
       // A bus that nothing feeds floats at any voltage.
       return bus.fed ? bankV - load.reconnectV : NEVER;
     case TAIL:
-      if (!terminal.charging || terminal.chargeW === 0) return NEVER;
+      if (!terminal.charging || terminal.chargeW === 0 || charger.tailA === 0) return NEVER;
       return Math.min(bankV - AT_ABSORPTION * charger.absorptionV, charger.tailA - bankA);
     case ABSORPTION:
       if (!terminal.charging || terminal.chargeW === 0 || charger.absorptionS === null) return NEVER;

@@ -136,12 +136,41 @@ describe('a single module at the bus', () => {
     expect(Math.abs(bus.bankA)).toBeLessThan(1e-4);
   });
 
+  it('is dead where the charger alone cannot carry the load, whatever voltage 1 µS would take', () => {
+    // 40 W at 14.4 V are 2.8 A, more than the limit; at two megavolts 2 A would flow through the leak.
+    const blocked = [{ ...both, mode: NO_WAY }];
+    const { bus } = settle(ONE, blocked, { loadW: 40, chargeW: Infinity, limitA: 2, ceilingV: 14.4 });
+    expect([bus.regime, bus.bankV]).toEqual([BUS_DEAD, 0]);
+  });
+
+  it('is not fed beyond the limit of the charger by its power', () => {
+    // 400 W would carry 6 A at 13.2 V, a limit of 2 A does not, and this module may not discharge.
+    const open = [{ ...both, mode: CHARGE_ONLY, dropV: 0 }];
+    expect(settle(ONE, open, { loadA: 6, chargeW: 400, limitA: 2, ceilingV: 13.2 }).bus.regime).toBe(BUS_DEAD);
+  });
+
   it('sees its open charge path behind its drop', () => {
     // Discharge only with 0.7 V: 11.3 - 0.22; charger refused: held at its ceiling.
     const open = [{ ...both, mode: DISCHARGE_ONLY, dropV: 0.7 }];
     expect(settle(ONE, open, { loadA: 20 }).bus.bankV).toBeCloseTo(11.08, 5);
     const { bus } = settle(ONE, open, { chargeW: Infinity, ceilingV: 14.4 });
     expect([bus.regime, bus.bankV]).toEqual([CHARGER_HOLDS, 14.4]);
+  });
+});
+
+describe('a cross-linked bank', () => {
+  it('is dead if it is cut through at one position, though the others conduct', () => {
+    const sketch: WiringSketch = {
+      wiring: 'cross-linked',
+      moduleOhm: [
+        [0.01, 0.01, 0.01],
+        [0.01, 0.01, 0.01],
+      ],
+    };
+    const cut = [both, { ...both, mode: CHARGE_ONLY }, both, both, { ...both, mode: NO_WAY }, both];
+    const { bus } = settle(sketch, cut, { loadA: 10 });
+    expect(bus.regime).toBe(BUS_DEAD);
+    expect(Math.abs(bus.bankV)).toBeLessThan(1e-9);
   });
 });
 
@@ -197,7 +226,7 @@ describe('settleBus', () => {
           else expect(bus.bankA).toBe(0);
         }
       }),
-      { seed: 81, numRuns: 100 },
+      { seed: 81, numRuns: 300 },
     );
   });
 });

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
+import { DRAWN_FEATURES } from '../../src/measures/drawn-features.js';
 import { CYCLE_MEASURES, MEASURES } from '../../src/measures/registry.js';
-import { DRAWN_FEATURES } from '../../src/outcomes/columns.js';
 import { ucumCode } from '../../src/output/ucum.js';
 
 describe('UCUM codes', () => {

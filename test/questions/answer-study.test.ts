@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
+import { checkpointCycles } from '../../src/measures/checkpoint-cycles.js';
 import { CYCLE_MEASURES, MEASURES } from '../../src/measures/registry.js';
-import { checkpointCycles } from '../../src/outcomes/columns.js';
 import { answerStudy } from '../../src/questions/answer-study.js';
 import { madeUpCandidate, madeUpStore, madeUpStudy } from './made-up-study.js';
 

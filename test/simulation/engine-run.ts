@@ -2,7 +2,7 @@ import { buildBank } from '../../src/bank/bank.js';
 import { createBankState } from '../../src/bank/bank-state.js';
 import { compileOcvCurves } from '../../src/bank/ocv-curves.js';
 import { createJourney, type Journey } from '../../src/simulation/advance.js';
-import { type BankSample, sampleStep, type Sampler } from '../../src/simulation/bank-sample.js';
+import { type BankSample, type Sampler, sampleStep } from '../../src/simulation/bank-sample.js';
 import { runSegment, startCycle } from '../../src/simulation/run-cycle.js';
 import type { ComparedEvent, Waveform } from '../reference/contract.js';
 import type { ReferenceBank } from '../reference/reference-bank.js';

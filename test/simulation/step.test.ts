@@ -1,0 +1,126 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { hysteresisAfter, updateCellConstants } from '../../src/simulation/kernel.js';
+import { runSegment } from '../../src/simulation/run-cycle.js';
+import { commitStep, filterLinear, tryStep } from '../../src/simulation/step.js';
+import type { ModuleParameters } from '../../src/study/study.js';
+import { bankOf } from '../reference/bank-of.js';
+import { bareModule, noLeads, straightTable } from '../reference/bare-module.js';
+import { segmentOf } from '../reference/duties.js';
+import { journeyOf } from './journey-of.js';
+
+describe('hysteresisAfter', () => {
+  // G. L. Plett, Battery Management Systems vol. 1 (2015), ch. 2, with x = |I gamma dt / Q|.
+  it.each([
+    [0, -1, -0.632121],
+    [1, -2, -0.729329],
+    [0.3, 0, 0.3],
+    [0, 1, 0.632121],
+    [1, 5, 1],
+    [-1, -5, -1],
+  ])('takes %d with x of %d to %d', (h, x, after) => {
+    expect(hysteresisAfter(h, x / 1e-3, 1e-3)).toBeCloseTo(after, 6);
+  });
+
+  it('is the same in two halves as in one, and stays between its branches', () => {
+    const h = fc.double({ min: -1, max: 1, noNaN: true });
+    fc.assert(
+      fc.property(h, fc.double({ min: -20, max: 20, noNaN: true }), (start, x) => {
+        const whole = hysteresisAfter(start, x, 1);
+        expect(hysteresisAfter(hysteresisAfter(start, x / 2, 1), x / 2, 1)).toBeCloseTo(whole, 12);
+        expect(Math.abs(whole)).toBeLessThanOrEqual(1);
+      }),
+      { seed: 101, numRuns: 200 },
+    );
+  });
+});
+
+describe('filterLinear', () => {
+  /** Filtered current after a ramp from `first` by `slope` A/s. */
+  const ramp = (tauS: number, durationS: number, from: number, first: number, slope: number): number => {
+    const into = new Float64Array(1);
+    const passed = first * durationS + 0.5 * slope * durationS ** 2;
+    filterLinear(
+      Float64Array.of(tauS),
+      durationS,
+      Float64Array.of(from),
+      Float64Array.of(first),
+      Float64Array.of(passed),
+      into,
+    );
+    return into[0];
+  };
+
+  it('is the same in two halves as in one, for constant and for ramping currents', () => {
+    const random = fc.record({
+      tauS: fc.double({ min: 1, max: 3600, noNaN: true }),
+      durationS: fc.double({ min: 0.01, max: 1e4, noNaN: true }),
+      from: fc.double({ min: -100, max: 100, noNaN: true }),
+      first: fc.double({ min: -100, max: 100, noNaN: true }),
+      rise: fc.double({ min: -50, max: 50, noNaN: true }),
+    });
+    fc.assert(
+      fc.property(random, ({ tauS, durationS, from, first, rise }) => {
+        const slope = rise / durationS;
+        const half = ramp(tauS, durationS / 2, from, first, slope);
+        const whole = ramp(tauS, durationS, from, first, slope);
+        expect(Math.abs(ramp(tauS, durationS / 2, half, first + rise / 2, slope) - whole)).toBeLessThan(1e-9);
+      }),
+      { seed: 102, numRuns: 300 },
+    );
+  });
+
+  it('comes to the closed form', () => {
+    // By hand: step of 10 A for 2 tau from 4 A: 10 - 6 exp(-2). Ramp of 1 A/s for long: slope (t - tau).
+    expect(ramp(50, 100, 4, 10, 0)).toBeCloseTo(10 - 6 * Math.exp(-2), 12);
+    expect(ramp(5, 500, 0, 0, 1)).toBeCloseTo(495, 9);
+  });
+});
+
+describe('the step', () => {
+  /** Charge of the first of two unlike modules in parallel after an hour of 100 A in equal steps. */
+  function chargeAfterSteps(steps: number, polarisation: ModuleParameters['polarisation']): number {
+    const module = (id: string, ohm: number, z: number): ModuleParameters =>
+      bareModule(id, { pathResistanceOhm: ohm, arrivalCharge: [z], polarisation });
+    const bank = bankOf('pair', {
+      modules: [[module('a', 0.01, 0.95)], [module('b', 0.014, 0.8)]],
+      cycles: [],
+      ocvTables: [straightTable(12, 2)],
+      leads: noLeads(2),
+    });
+    const journey = journeyOf(bank);
+    runSegment(journey, segmentOf(0, { loadA: 100 }), bank);
+    const { kernel, work } = journey;
+    for (let step = 0; step < steps; step++) {
+      tryStep(kernel, work, 3600 / steps);
+      commitStep(kernel, work);
+      updateCellConstants(kernel);
+    }
+    return kernel.state.charge[0];
+  }
+
+  it('is of third order: an eighth of the error with half the step', () => {
+    // dz falls from 0.15 with tau = 24 mOhm / 2 V x 180000 As = 2160 s towards (I/alpha)(R1 - R2)/2 = -0.1 (closed form as
+    // above); z1 = mean + dz / 2, mean = 0.875 - 0.5.
+    const dz = -0.1 + 0.25 * Math.exp(-3600 / 2160);
+    const exact = 0.375 + dz / 2;
+    const errors = [2, 4, 8, 16].map((steps) => Math.abs(chargeAfterSteps(steps, []) - exact));
+    for (let k = 1; k < errors.length; k++) {
+      const ratio = errors[k - 1] / errors[k];
+      expect(ratio).toBeGreaterThan(6.5);
+      expect(ratio).toBeLessThan(10.5);
+    }
+  });
+
+  it('keeps its order with polarisation', () => {
+    const pairs = [{ timeConstantS: 1800, resistanceOhm: [0.004] }];
+    const fine = chargeAfterSteps(2048, pairs);
+    const errors = [8, 16, 32].map((steps) => Math.abs(chargeAfterSteps(steps, pairs) - fine));
+    for (let k = 1; k < errors.length; k++) expect(errors[k - 1] / errors[k]).toBeGreaterThan(5.5);
+  });
+
+  it('is stable for polarisation at any length', () => {
+    const pairs = [{ timeConstantS: 0.5, resistanceOhm: [0.004] }];
+    expect(Math.abs(chargeAfterSteps(2, pairs) - chargeAfterSteps(400, pairs))).toBeLessThan(0.01);
+  });
+});
