@@ -43,6 +43,8 @@ export interface Bank {
   /** First cell of each module, and the number of cells at the end. */
   readonly cellStart: Int32Array;
   readonly chainOfModule: Int32Array;
+  /** First cell of each chain, and the number of cells at the end: the cells of a chain stand in a row. */
+  readonly chainCellStart: Int32Array;
   readonly pathOhm: Float64Array;
   readonly standbyA: Float64Array;
   readonly asleepA: Float64Array;
@@ -161,6 +163,7 @@ export function buildBank(
     polarisationOhm,
     cellStart,
     chainOfModule,
+    chainCellStart: Int32Array.from([...wiring.chains.map(({ modules }) => cellStart[modules[0]]), cells]),
     pathOhm: ofModules((module) => module.pathResistanceOhm),
     standbyA: ofModules((module) => module.standbyA),
     asleepA: ofModules(({ bms }) => bms.asleepA),

@@ -22,8 +22,8 @@ const JUMP_A = 2;
 const MOST_CHARGE_OVER_KINKS = 0.01;
 /** Change of a cell's voltage over a step above which it is tried again shorter, V: keeps events well bracketed. */
 const MOST_VOLTAGE_CHANGE_V = 0.1;
-/** Width to which an event is bracketed inside its step, s. */
-const EVENT_TOLERANCE_S = 0.01;
+/** Width to which an event is bracketed inside its step, share of the step. */
+const EVENT_TOLERANCE = 2e-4;
 /** Error of an event's time, judged by the rate of its condition over the step, from which the step is corrected. */
 const CORRECTED_FROM_S = 0.2;
 const MOST_CORRECTIONS = 2;
@@ -121,12 +121,16 @@ function currentsJumped(beforeA: Float64Array, afterA: Float64Array): boolean {
  */
 export function advance(journey: Journey, untilS: number, stop: () => boolean): void {
   const { kernel, watch } = journey;
+  // What is due at an instant already settled (a BMS without delays) waits for the least step, or time would stand still.
+  let settledS = kernel.nowS;
   while (kernel.nowS < untilS) {
-    const goalS = Math.min(untilS, watch.nextDueS);
+    const soonestS = kernel.nowS > settledS ? kernel.nowS : settledS + LEAST_STEP_S;
+    const goalS = Math.min(untilS, Math.max(watch.nextDueS, soonestS));
     const restS = goalS - kernel.nowS;
     if (restS <= 1e-9) {
       kernel.nowS = goalS;
       settleJourney(journey);
+      settledS = kernel.nowS;
       if (stop()) return;
       leapOverChatter(journey, untilS);
       continue;
@@ -138,6 +142,7 @@ export function advance(journey: Journey, untilS: number, stop: () => boolean): 
     if (restS - journey.work.stepS <= 1e-9 && kernel.nowS > goalS - 1e-6) kernel.nowS = goalS;
     if (happened) {
       settleJourney(journey);
+      settledS = kernel.nowS;
       if (stop()) return;
       leapOverChatter(journey, untilS);
     }
@@ -236,7 +241,7 @@ function cutAtEvent(journey: Journey, turned: number[]): void {
   const least = Math.min(1, LEAST_STEP_S / stepS);
   const startValue = pastAt(1e-9);
   const theta =
-    startValue < 0 ? firstCrossing(pastAt, 1e-9, startValue, 1, endValue, EVENT_TOLERANCE_S / stepS) : least;
+    startValue < 0 ? firstCrossing(pastAt, 1e-9, startValue, 1, endValue, EVENT_TOLERANCE) : least;
   // Rate of the condition that is first, close to its crossing.
   const before = pastAt(Math.max(1e-9, theta - RATE_SHARE));
   const perS = (pastAt(theta) - before) / (Math.min(theta, RATE_SHARE) * stepS);

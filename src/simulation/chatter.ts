@@ -60,7 +60,7 @@ export function leapOverChatter(journey: Journey, untilS: number): void {
   if (chatter.trips[chatter.module] < chatter.tripsAtStart + BURST_TRIPS) return;
   const burstS = kernel.nowS - chatter.startS;
   const leapS = leapLengthS(journey, untilS, burstS);
-  if (leapS > burstS) {
+  if (burstS > 0 && leapS > burstS) {
     const ratio = leapS / burstS;
     const { charge } = kernel.state;
     for (let c = 0; c < charge.length; c++) charge[c] += ratio * (charge[c] - chatter.startCharge[c]);

@@ -40,9 +40,6 @@ export interface Kernel {
   /** Voltage of a cell that stands still within a step: offset current through its resistances. */
   readonly fixedV: Float64Array;
   readonly chainFixedV: Float64Array;
-  readonly firstCellOfChain: Int32Array;
-  readonly chainPath: Float64Array;
-  readonly chainDecay: Float64Array;
   /** Shift of a chain's EMF by its forward drop. */
   readonly emfShiftV: Float64Array;
 
@@ -90,9 +87,6 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
     offsetA: floats(bank.cells),
     fixedV: floats(bank.cells),
     chainFixedV: floats(chains),
-    firstCellOfChain: Int32Array.from(bank.wiring.chains, (chain) => bank.cellStart[chain.modules[0]]),
-    chainPath: floats(chains),
-    chainDecay: floats(chains),
     emfShiftV: floats(chains),
     point: {
       cellV: floats(bank.cells),
@@ -148,66 +142,61 @@ export function updateEmfShifts(kernel: Kernel): void {
  * Writes `point.cellV` and `point.emfV`.
  */
 export function updateEmf(kernel: Kernel, elapsedS: number, passedAs: Float64Array, filterA: Float64Array): void {
-  const { bank, state, point, chainOfCell, chargePerAs, chargePerS, offsetA, chainFixedV } = kernel;
+  const { bank, state, point, chargePerAs, chargePerS, offsetA, chainFixedV } = kernel;
   const { charge, hysteresis } = state;
-  const { cells, curveOfCell, ocv, hasHysteresis, hysteresisV, hysteresisPerAs, chainPolarisationOhm } = bank;
+  const { curveOfCell, ocv, hasHysteresis, hysteresisV, hysteresisPerAs, chainPolarisationOhm, chainCellStart } = bank;
   const { knots, coefficients, bucket } = ocv;
   const { cellV, emfV } = point;
-  const { chainPath, chainDecay } = kernel;
   const chains = emfV.length;
-  copyInto(chainFixedV, emfV);
-  if (hasHysteresis) updateChainDecay(kernel, elapsedS, passedAs);
   let curve = -1;
   let lowest = 0;
   let perUnit = 0;
   let firstBucket = 0;
   let most = 0;
-  for (let c = 0; c < cells; c++) {
-    const i = chainOfCell[c];
+  for (let i = 0; i < chains; i++) {
     const q = passedAs[i];
-    const z = charge[c] + chargePerAs[c] * q + chargePerS[c] * elapsedS;
-    // ocvV() of bank/ocv-curves.ts, written out: the call costs a third of the evaluation.
-    if (curveOfCell[c] !== curve) {
-      curve = curveOfCell[c];
-      lowest = ocv.lowest[curve];
-      perUnit = ocv.perUnit[curve];
-      firstBucket = ocv.firstBucket[curve];
-      most = ocv.buckets[curve] - 1;
+    const start = chainCellStart[i];
+    const end = chainCellStart[i + 1];
+    // The path gamma q / Q of the chain's first cell stands for those of the others but for a small difference.
+    const chainPath = hysteresisPerAs[start] * (q - offsetA[start] * elapsedS);
+    const chainDecay = hasHysteresis ? Math.exp(-Math.abs(chainPath)) : 1;
+    let sum = chainFixedV[i];
+    for (let c = start; c < end; c++) {
+      const z = charge[c] + chargePerAs[c] * q + chargePerS[c] * elapsedS;
+      // ocvV() of bank/ocv-curves.ts, written out: the call costs a third of the evaluation.
+      if (curveOfCell[c] !== curve) {
+        curve = curveOfCell[c];
+        lowest = ocv.lowest[curve];
+        perUnit = ocv.perUnit[curve];
+        firstBucket = ocv.firstBucket[curve];
+        most = ocv.buckets[curve] - 1;
+      }
+      const position = (z - lowest) * perUnit + 1;
+      const cell = position < 1 ? 0 : position >= most ? most : position | 0;
+      let piece = bucket[firstBucket + cell];
+      if (cell > 0) while (z >= knots[piece + 1]) piece++;
+      const d = z - knots[piece];
+      const at = piece << 2;
+      let volts = ((coefficients[at + 3] * d + coefficients[at + 2]) * d + coefficients[at + 1]) * d + coefficients[at];
+      if (hasHysteresis) {
+        // hysteresisAfter(), by the exponential of the chain and three terms of the series for what the cell differs by.
+        const h = hysteresis[c];
+        const path = hysteresisPerAs[c] * (q - offsetA[c] * elapsedS);
+        const branch = path >= 0 ? 1 : -1;
+        const more = branch * (path - chainPath);
+        const decay =
+          more * more < 0.01 && branch * chainPath >= 0
+            ? chainDecay * (1 - more * (1 - more * (0.5 - more / 6)))
+            : Math.exp(-branch * path);
+        volts += hysteresisV[c] * (branch + (h - branch) * decay);
+      }
+      cellV[c] = volts;
+      sum += volts;
     }
-    const position = (z - lowest) * perUnit + 1;
-    const cell = position < 1 ? 0 : position >= most ? most : position | 0;
-    let piece = bucket[firstBucket + cell];
-    if (cell > 0) while (z >= knots[piece + 1]) piece++;
-    const d = z - knots[piece];
-    const at = piece << 2;
-    let volts = ((coefficients[at + 3] * d + coefficients[at + 2]) * d + coefficients[at + 1]) * d + coefficients[at];
-    if (hasHysteresis) {
-      // hysteresisAfter(), by the exponential of the chain and three terms of the series for what the cell differs by.
-      const h = hysteresis[c];
-      const path = hysteresisPerAs[c] * (q - offsetA[c] * elapsedS);
-      const branch = path >= 0 ? 1 : -1;
-      const more = branch * (path - chainPath[i]);
-      const decay =
-        more * more < 0.01 && branch * chainPath[i] >= 0
-          ? chainDecay[i] * (1 - more * (1 - more * (0.5 - more / 6)))
-          : Math.exp(-branch * path);
-      volts += hysteresisV[c] * (branch + (h - branch) * decay);
-    }
-    cellV[c] = volts;
-    emfV[i] += volts;
+    emfV[i] = sum;
   }
   for (let first = 0; first < chainPolarisationOhm.length; first += chains) {
     for (let i = 0; i < chains; i++) emfV[i] += chainPolarisationOhm[first + i] * filterA[first + i];
-  }
-}
-
-/** Path length gamma q / Q of the first cell of every chain, signed, and exp(-|path|). */
-function updateChainDecay(kernel: Kernel, elapsedS: number, passedAs: Float64Array): void {
-  const { bank, chainPath, chainDecay, firstCellOfChain, offsetA } = kernel;
-  for (let i = 0; i < chainPath.length; i++) {
-    const c = firstCellOfChain[i];
-    chainPath[i] = bank.hysteresisPerAs[c] * (passedAs[i] - offsetA[c] * elapsedS);
-    chainDecay[i] = Math.exp(-Math.abs(chainPath[i]));
   }
 }
 

@@ -33,6 +33,7 @@ function settle(sketch: WiringSketch, cases: readonly ChainCase[], given: Partia
     regime: before,
     netA: 0,
     netW: 0,
+    fed: false,
   });
   const bus = blank();
   settleBus(bank, state, createNetworkCache(), emfV, terms, bus);

@@ -79,6 +79,12 @@ describe('growthPerMonth', () => {
     expect(growthPerMonth(values, 1)).toBeCloseTo(1.5, 12);
   });
 
+  it('takes 90 days for long enough', () => {
+    // By hand: 2 on days 31 to 60, 5 on days 61 to 90: 3 in 30 days. Seven-day means would see the same in 53 days.
+    const values = Float64Array.from({ length: 90 }, (_, day) => (day < 30 ? 100 : day < 60 ? 2 : 5));
+    expect(growthPerMonth(values, 1)).toBeCloseTo(3, 12);
+  });
+
   it('compares 7-day means below 90 days', () => {
     // By hand over 60 days: 1 on days 31 to 37, 5 on days 54 to 60: 4 in 23 days.
     const values = Float64Array.from({ length: 60 }, (_, day) => (day >= 30 && day < 37 ? 1 : day >= 53 ? 5 : 77));

@@ -5,16 +5,18 @@ import { type CycleSample, type Trace, traceInstance } from '../../src/simulatio
 import type { Study } from '../../src/study/study.js';
 import { studyOf } from '../study/study-under-test.js';
 
-/** What a candidate left: the outcomes of its twin and of every sampled bank, by column name. */
+/** Value of a column of outcomes; throws where there is no such column or it does not apply. */
+export type OutcomeValues = (column: string) => number;
+
+/** What a candidate left: its twin and its sampled banks in the order of their numbers. */
 export interface CandidateRun {
   readonly twin: OutcomeValues;
   readonly banks: readonly OutcomeValues[];
+  /** A column over all banks. */
+  readonly values: (column: string) => Float64Array;
 }
 
-/** @returns the value of a column; throws where there is no such column or it does not apply */
-export type OutcomeValues = (column: string) => number;
-
-/** Reads a study text and takes every candidate, its twin first, through all of its instances. */
+/** Reads a study text and takes every candidate through all of its instances. */
 export function runStudy(text: string): Readonly<Record<string, CandidateRun>> {
   const study = studyOf(text);
   return Object.fromEntries(study.candidates.map(({ key }) => [key, runCandidate(study, key)]));
@@ -26,36 +28,50 @@ function runCandidate(study: Study, key: string): CandidateRun {
   const columns = outcomeColumns({ strings, positions, checkpoints: prepared.checkpoints });
   const indexOf = new Map(columns.map(({ name }, index) => [name, index]));
   const byName =
-    (values: readonly (number | null)[]): OutcomeValues =>
+    ({ values }: { readonly values: readonly (number | null)[] }): OutcomeValues =>
     (column) => {
       const value = values[indexOf.get(column) ?? -1];
       if (typeof value !== 'number') throw new RangeError(`${key} has no value of ${column}`);
       return value;
     };
+  const banks = Array.from({ length: study.instances }, (_, i) => byName(simulateInstance(prepared, i + 1)));
   return {
-    twin: byName(simulateTwin(prepared).values),
-    banks: Array.from({ length: study.instances }, (_, i) => byName(simulateInstance(prepared, i + 1).values)),
+    twin: byName(simulateTwin(prepared)),
+    banks,
+    values: (column) => Float64Array.from(banks, (bank) => bank(column)),
   };
 }
 
-/** Traces one bank of a study text from its first cycle to its last. */
-export function traceStudy(
-  text: string,
-  { candidate = 'strings', instance = 1, everyS = 3600 }: TracedBank = {},
-): Trace {
-  const study = studyOf(text);
-  return traceInstance(study, { candidate, instance, fromCycle: 1, toCycle: study.cycles, everyS });
-}
-
+/** The bank of a study text to look at, and how often; by default the only one of candidate `strings`, hourly. */
 export interface TracedBank {
   readonly candidate?: string;
   readonly instance?: number;
   readonly everyS?: number;
 }
 
-/** Missing charge of every module of a sample, the largest of its cells, Ah. */
+/** Replays one bank of a study text from its first cycle to its last. */
+export function traceStudy(text: string, traced: TracedBank = {}): Trace {
+  return traceBank(studyOf(text), traced);
+}
+
+/** As `traceStudy`, of a study that has been read. */
+export function traceBank(
+  study: Study,
+  { candidate = 'strings', instance = 1, everyS = 3600 }: TracedBank = {},
+): Trace {
+  return traceInstance(study, { candidate, instance, fromCycle: 1, toCycle: study.cycles, everyS });
+}
+
+/** Missing charge Q (1 - z) of every module of a sample, the largest of its cells, Ah. */
 export function missingAh(bank: Bank, { modules }: CycleSample): readonly number[] {
   return modules.map(({ charge }, m) =>
     Math.max(...charge.map((z, k) => ((1 - z) * bank.capacityAs[bank.cellStart[m] + k]) / 3600)),
   );
+}
+
+/** The last sample before `timeS`. */
+export function sampleBefore({ samples }: Trace, timeS: number): CycleSample {
+  const found = samples.findLast((sample) => sample.timeS < timeS);
+  if (found === undefined) throw new RangeError(`no sample before ${timeS} s`);
+  return found;
 }

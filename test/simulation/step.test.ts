@@ -78,19 +78,24 @@ describe('filterLinear', () => {
 });
 
 describe('the step', () => {
-  /** Charge of the first of two unlike modules in parallel after an hour of 100 A in equal steps. */
-  function chargeAfterSteps(steps: number, polarisation: ModuleParameters['polarisation']): number {
-    const module = (id: string, ohm: number, z: number): ModuleParameters =>
-      bareModule(id, { pathResistanceOhm: ohm, arrivalCharge: [z], polarisation });
+  /** Two unlike modules in parallel at the beginning of 100 A. */
+  function pairUnderLoad(polarisation: ModuleParameters['polarisation'], z: readonly [number, number] = [0.95, 0.8]) {
+    const module = (id: string, ohm: number, charge: number): ModuleParameters =>
+      bareModule(id, { pathResistanceOhm: ohm, arrivalCharge: [charge], polarisation });
     const bank = bankOf('pair', {
-      modules: [[module('a', 0.01, 0.95)], [module('b', 0.014, 0.8)]],
+      modules: [[module('a', 0.01, z[0])], [module('b', 0.014, z[1])]],
       cycles: [],
       ocvTables: [straightTable(12, 2)],
       leads: noLeads(2),
     });
     const journey = journeyOf(bank);
     runSegment(journey, segmentOf(0, { loadA: 100 }), bank);
-    const { kernel, work } = journey;
+    return journey;
+  }
+
+  /** Charge of the first of the two after an hour in equal steps. */
+  function chargeAfterSteps(steps: number, polarisation: ModuleParameters['polarisation']): number {
+    const { kernel, work } = pairUnderLoad(polarisation);
     for (let step = 0; step < steps; step++) {
       tryStep(kernel, work, 3600 / steps);
       commitStep(kernel, work);
@@ -104,7 +109,7 @@ describe('the step', () => {
     // above); z1 = mean + dz / 2, mean = 0.875 - 0.5.
     const dz = -0.1 + 0.25 * Math.exp(-3600 / 2160);
     const exact = 0.375 + dz / 2;
-    const errors = [2, 4, 8, 16].map((steps) => Math.abs(chargeAfterSteps(steps, []) - exact));
+    const errors = [8, 16, 32, 64].map((steps) => Math.abs(chargeAfterSteps(steps, []) - exact));
     for (let k = 1; k < errors.length; k++) {
       const ratio = errors[k - 1] / errors[k];
       expect(ratio).toBeGreaterThan(6.5);
@@ -117,6 +122,21 @@ describe('the step', () => {
     const fine = chargeAfterSteps(2048, pairs);
     const errors = [8, 16, 32].map((steps) => Math.abs(chargeAfterSteps(steps, pairs) - fine));
     for (let k = 1; k < errors.length; k++) expect(errors[k - 1] / errors[k]).toBeGreaterThan(5.5);
+  });
+
+  it('estimates its error: none where the current is constant, an eighth with half the step elsewhere', () => {
+    // dz = -0.1 is where the sharing above comes to rest.
+    const resting = pairUnderLoad([], [0.7, 0.8]);
+    expect(tryStep(resting.kernel, resting.work, 600)).toBeLessThan(1e-6);
+    // From 67 s on the tolerance is one of charge, whatever the length.
+    const errors = [400, 200, 100].map((stepS) => {
+      const { kernel, work } = pairUnderLoad([]);
+      return tryStep(kernel, work, stepS);
+    });
+    for (let k = 1; k < errors.length; k++) {
+      expect(errors[k - 1] / errors[k]).toBeGreaterThan(6.5);
+      expect(errors[k - 1] / errors[k]).toBeLessThan(9.5);
+    }
   });
 
   it('is stable for polarisation at any length', () => {
