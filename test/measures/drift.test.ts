@@ -80,7 +80,7 @@ describe('growthPerMonth', () => {
   });
 
   it('takes 90 days for long enough', () => {
-    // By hand: 2 on days 31 to 60, 5 on days 61 to 90: 3 in 30 days. Seven-day means would see the same in 53 days.
+    // By hand: 2 on days 31 to 60, 5 on days 61 to 90: 3 in 30 days. Seven-day means at the ends would give 3 in 53 days.
     const values = Float64Array.from({ length: 90 }, (_, day) => (day < 30 ? 100 : day < 60 ? 2 : 5));
     expect(growthPerMonth(values, 1)).toBeCloseTo(3, 12);
   });
