@@ -1,4 +1,4 @@
-import { BLEED_ABOVE_LOWEST, BLEED_NONE, type Bank } from './bank.js';
+import { type Bank, BLEED_ABOVE_LOWEST, BLEED_NONE } from './bank.js';
 import { FLOW_A } from './protection.js';
 
 /**

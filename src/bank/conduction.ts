@@ -5,9 +5,13 @@ import { CLOSED, FORWARD, LEAK_S, LEAKING, type NetworkMap, solveNetwork } from 
 /** Maps of the patterns met lately; a bank runs through few of them again and again. */
 export interface NetworkCache {
   readonly maps: Map<number, NetworkMap>;
+  /** Room for the EMFs by which the chains enter the network. */
+  readonly effectiveV: Float64Array;
 }
 
 const MOST_MAPS = 64;
+/** Three states for each of so many chains make a key below 2^53. */
+const MOST_CHAINS = 32;
 /** Voltage by which a rectifier must be on the wrong side before it is switched: far below any voltage that matters. */
 export const SLACK_V = 1e-9;
 /**
@@ -17,12 +21,11 @@ export const SLACK_V = 1e-9;
 export const DEAD_BAND_V = 1e-5;
 
 export function createNetworkCache(): NetworkCache {
-  return { maps: new Map() };
+  return { maps: new Map(), effectiveV: new Float64Array(MOST_CHAINS) };
 }
 
 /** The map of the present conduction pattern, solved at most once while it stays in the cache. */
 export function networkMap(bank: Bank, conduction: Uint8Array, cache: NetworkCache): NetworkMap {
-  // Three states for each of at most 32 chains: below 2^53.
   let key = 0;
   for (let i = 0; i < conduction.length; i++) key = key * 3 + conduction[i];
   let map = cache.maps.get(key);
@@ -126,12 +129,17 @@ export function currentsInto(
 ): void {
   const map = networkMap(bank, state.conduction, cache);
   const count = map.chains;
+  const { effectiveV } = cache;
+  const { currentPerEmf, currentPerBank, voltagePerEmf } = map;
   let openV = 0;
-  for (let i = 0; i < count; i++) openV += map.voltagePerEmf[i] * effectiveEmfV(bank, state, i, emfV[i]);
+  for (let i = 0; i < count; i++) {
+    effectiveV[i] = effectiveEmfV(bank, state, i, emfV[i]);
+    openV += voltagePerEmf[i] * effectiveV[i];
+  }
   const bankA = atVoltage ? (fixed - openV) / map.bankOhm : fixed;
   for (let i = 0; i < count; i++) {
-    let sum = map.currentPerBank[i] * bankA;
-    for (let j = 0; j < count; j++) sum += map.currentPerEmf[i * count + j] * effectiveEmfV(bank, state, j, emfV[j]);
+    let sum = currentPerBank[i] * bankA;
+    for (let j = 0; j < count; j++) sum += currentPerEmf[i * count + j] * effectiveV[j];
     point.currentA[i] = sum;
   }
   point.map = map;

@@ -1,5 +1,5 @@
 import type { Bank } from './bank.js';
-import { BOTH_WAYS, type BankState, CHARGE_ONLY, DISCHARGE_ONLY, NO_WAY } from './bank-state.js';
+import { type BankState, BOTH_WAYS, CHARGE_ONLY, DISCHARGE_ONLY, NO_WAY } from './bank-state.js';
 
 /** The charge path of module `m` is open, for whatever reason. */
 export function chargePathOpen(bank: Bank, state: BankState, m: number): boolean {

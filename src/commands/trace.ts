@@ -101,7 +101,12 @@ async function writeTrace(folder: string, { bank, factors, samples, events }: Tr
 }
 
 /** How often each kind of event came, in a few lines. */
-function renderSummary({ candidate, instance }: TraceOptions, fromCycle: number, toCycle: number, trace: Trace): string {
+function renderSummary(
+  { candidate, instance }: TraceOptions,
+  fromCycle: number,
+  toCycle: number,
+  trace: Trace,
+): string {
   const counts = new Map<string, number>();
   for (const { kind } of trace.events) counts.set(kind, (counts.get(kind) ?? 0) + 1);
   const lines = [...counts].map(([kind, count]) => `${String(count).padStart(6)}  ${kind}`);

@@ -6,7 +6,15 @@ import { firstCrossing } from '../mathematics/first-crossing.js';
 import type { ChargerSettings, LoadSettings } from '../study/study.js';
 import { switchBleedWithin } from './bleed-within.js';
 import { type Chatter, countTrip, createChatter, leapOverChatter } from './chatter.js';
-import { copyInto, createKernel, type Kernel, solveKept, updateCellConstants, updateEmf, updateExtremes } from './kernel.js';
+import {
+  copyInto,
+  createKernel,
+  type Kernel,
+  solveKept,
+  updateCellConstants,
+  updateEmf,
+  updateExtremes,
+} from './kernel.js';
 import { settle } from './settle.js';
 import { commitStep, createStepWork, evaluateWithin, type StepWork, tryStep } from './step.js';
 import { createTerminal, type Terminal } from './terminal.js';
@@ -231,7 +239,8 @@ function turnedConditions(watch: Watch): number[] | null {
 function cutAtEvent(journey: Journey, turned: number[]): void {
   const { kernel, terminal, watch, work } = journey;
   const stepS = work.stepS;
-  const past = (): number => turned.reduce((most, at) => Math.max(most, pastChange(watch, at)), Number.NEGATIVE_INFINITY);
+  const past = (): number =>
+    turned.reduce((most, at) => Math.max(most, pastChange(watch, at)), Number.NEGATIVE_INFINITY);
   const endValue = past();
   const pastAt = (theta: number): number => {
     evaluateWithin(kernel, work, theta);
@@ -240,8 +249,7 @@ function cutAtEvent(journey: Journey, turned: number[]): void {
   };
   const least = Math.min(1, LEAST_STEP_S / stepS);
   const startValue = pastAt(1e-9);
-  const theta =
-    startValue < 0 ? firstCrossing(pastAt, 1e-9, startValue, 1, endValue, EVENT_TOLERANCE) : least;
+  const theta = startValue < 0 ? firstCrossing(pastAt, 1e-9, startValue, 1, endValue, EVENT_TOLERANCE) : least;
   // Rate of the condition that is first, close to its crossing.
   const before = pastAt(Math.max(1e-9, theta - RATE_SHARE));
   const perS = (pastAt(theta) - before) / (Math.min(theta, RATE_SHARE) * stepS);

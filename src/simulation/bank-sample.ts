@@ -1,7 +1,7 @@
 import { BOTH_WAYS, DISCHARGE_ONLY } from '../bank/bank-state.js';
+import { loadIsServed } from '../bank/bus.js';
 import { chainConductanceS, FORWARD, LEAKING } from '../bank/network.js';
 import { chargePathOpen, dischargePathOpen, moduleMode } from '../bank/paths.js';
-import { loadIsServed } from '../bank/bus.js';
 import type { Journey } from './advance.js';
 import { cellVoltageV } from './kernel.js';
 import { evaluateWithin } from './step.js';

@@ -96,14 +96,7 @@ function chainWithin(kernel: Kernel, work: StepWork, i: number, theta: number): 
 }
 
 /** Voltage of a cell at what `chainWithin` found. */
-function cellWithin(
-  kernel: Kernel,
-  work: StepWork,
-  i: number,
-  c: number,
-  elapsedS: number,
-  currentA: number,
-): number {
+function cellWithin(kernel: Kernel, work: StepWork, i: number, c: number, elapsedS: number, currentA: number): number {
   const { bank, state } = kernel;
   const passedAs = work.passedAs[i];
   const z = state.charge[c] + kernel.chargePerAs[c] * passedAs + kernel.chargePerS[c] * elapsedS;

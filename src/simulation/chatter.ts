@@ -110,7 +110,8 @@ function shiftClocks(journey: Journey, leapS: number): void {
     retryChargeS[m] += leapS;
     retryDischargeS[m] += leapS;
   }
-  for (const trips of recentTripsS) trips.forEach((tripS, k) => {
-    trips[k] = tripS + leapS;
-  });
+  for (const trips of recentTripsS)
+    trips.forEach((tripS, k) => {
+      trips[k] = tripS + leapS;
+    });
 }

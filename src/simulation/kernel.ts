@@ -131,7 +131,8 @@ export function updateCellConstants(kernel: Kernel): void {
 
 /** Sets the shifts of the EMFs by forward drops from the present conduction. */
 export function updateEmfShifts(kernel: Kernel): void {
-  for (let i = 0; i < kernel.emfShiftV.length; i++) kernel.emfShiftV[i] = effectiveEmfV(kernel.bank, kernel.state, i, 0);
+  for (let i = 0; i < kernel.emfShiftV.length; i++)
+    kernel.emfShiftV[i] = effectiveEmfV(kernel.bank, kernel.state, i, 0);
 }
 
 /**

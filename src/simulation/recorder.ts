@@ -120,7 +120,8 @@ export function recordStep(recorder: Recorder, journey: Journey, stepS: number):
   }
   const { chainMode } = kernel.state;
   let stringOpen = false;
-  for (let i = 0; i < chainMode.length; i++) if (chainMode[i] === CHARGE_ONLY || chainMode[i] === NO_WAY) stringOpen = true;
+  for (let i = 0; i < chainMode.length; i++)
+    if (chainMode[i] === CHARGE_ONLY || chainMode[i] === NO_WAY) stringOpen = true;
   if (asks && !journey.loadLost && stringOpen) {
     recorder.stringLostRunS += stepS;
     if (recorder.stringLostRunS > NOTICED_S) log.stringLost[at] = 1;

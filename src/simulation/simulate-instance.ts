@@ -17,7 +17,6 @@ import { drawnFeatures } from './drawn-features.js';
 import { beginBurstRecord, createRecorder, type Recorder, recordEvent, recordLeap, recordStep } from './recorder.js';
 import { runCourse } from './run-course.js';
 
-
 /** What all instances of a candidate share; made once per candidate and thread. */
 export interface PreparedCandidate {
   readonly study: Study;

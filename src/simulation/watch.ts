@@ -1,3 +1,5 @@
+import { wrongSideV } from '../bank/conduction.js';
+import type { BankEventKind } from '../bank/events.js';
 import { updateChainModes } from '../bank/paths.js';
 import {
   actOnProtection,
@@ -9,8 +11,6 @@ import {
   protectionValuesInto,
   updateSleep,
 } from '../bank/protection.js';
-import { wrongSideV } from '../bank/conduction.js';
-import type { BankEventKind } from '../bank/events.js';
 import type { Kernel } from './kernel.js';
 import {
   actOnTerminal,

@@ -81,8 +81,9 @@ describe('capacity lost by unlike modules of a 2S2P bank, CoV 5 %, at C/50', () 
     ['cross-linked', linked, Math.SQRT2 * 0.5641895835],
   ] as const)('has the mean and spread of normal order statistics, %s', (_, banks, expected) => {
     // n e_m sigma and sqrt(n) e_m sigma with e_2 = 0.56419 (Tippett, Biometrika 17 (1925) 364): 1.1284 and 0.7979
-    // sigma. Spread of the loss 0.603 sigma in both: sqrt(1 - 2/pi) of a half normal law with mean 0.7979, and
-    // sqrt(1/2) of that of two pairs with half that mean's sigma each. Band: three standard errors, and the bias.
+    // sigma. Its spread is 0.603 sigma in both: strings lose |a1 - a2| / 2 + |b1 - b2| / 2, each with sd
+    // sqrt(1 - 2/pi) sigma / sqrt(2); tied positions lose half a difference of sums, sd sqrt(1 - 2/pi) sigma.
+    // Band: three standard errors, and the bias.
     const lossAh = Float64Array.from(banks, ({ usableAh, capacityAh }) => idealAh(capacityAh) - usableAh);
     const { mean, variance } = summariseMoments(lossAh);
     const errorAh = (0.603 * SIGMA_AH) / Math.sqrt(BANKS);

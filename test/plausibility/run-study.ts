@@ -1,6 +1,7 @@
 import type { Bank } from '../../src/bank/bank.js';
+import type { OutcomeRow } from '../../src/measures/outcome-row.js';
 import { outcomeColumns } from '../../src/outcomes/columns.js';
-import { prepareCandidate, simulateInstance, simulateTwin } from '../../src/simulation/simulate-instance.js';
+import { type PreparedCandidate, prepareCandidate, simulateInstance } from '../../src/simulation/simulate-instance.js';
 import { type CycleSample, type Trace, traceInstance } from '../../src/simulation/trace-instance.js';
 import type { Study } from '../../src/study/study.js';
 import { studyOf } from '../study/study-under-test.js';
@@ -8,9 +9,8 @@ import { studyOf } from '../study/study-under-test.js';
 /** Value of a column of outcomes; throws where there is no such column or it does not apply. */
 export type OutcomeValues = (column: string) => number;
 
-/** What a candidate left: its twin and its sampled banks in the order of their numbers. */
+/** What a candidate left: its sampled banks in the order of their numbers. */
 export interface CandidateRun {
-  readonly twin: OutcomeValues;
   readonly banks: readonly OutcomeValues[];
   /** A column over all banks. */
   readonly values: (column: string) => Float64Array;
@@ -24,22 +24,25 @@ export function runStudy(text: string): Readonly<Record<string, CandidateRun>> {
 
 function runCandidate(study: Study, key: string): CandidateRun {
   const prepared = prepareCandidate(study, key);
-  const { strings, positions } = prepared.twin.bank;
-  const columns = outcomeColumns({ strings, positions, checkpoints: prepared.checkpoints });
-  const indexOf = new Map(columns.map(({ name }, index) => [name, index]));
-  const byName =
-    ({ values }: { readonly values: readonly (number | null)[] }): OutcomeValues =>
-    (column) => {
-      const value = values[indexOf.get(column) ?? -1];
-      if (typeof value !== 'number') throw new RangeError(`${key} has no value of ${column}`);
-      return value;
-    };
-  const banks = Array.from({ length: study.instances }, (_, i) => byName(simulateInstance(prepared, i + 1)));
+  const valuesOf = valuesByColumn(prepared);
+  const banks = Array.from({ length: study.instances }, (_, i) => valuesOf(simulateInstance(prepared, i + 1)));
   return {
-    twin: byName(simulateTwin(prepared)),
     banks,
     values: (column) => Float64Array.from(banks, (bank) => bank(column)),
   };
+}
+
+/** @returns what turns a row of the candidate into its values by column name */
+function valuesByColumn({ candidate, checkpoints, twin }: PreparedCandidate): (row: OutcomeRow) => OutcomeValues {
+  const { strings, positions } = twin.bank;
+  const columns = outcomeColumns({ strings, positions, checkpoints });
+  const indexOf = new Map(columns.map(({ name }, index) => [name, index]));
+  return ({ values }) =>
+    (column) => {
+      const value = values[indexOf.get(column) ?? -1];
+      if (typeof value !== 'number') throw new RangeError(`${candidate.key} has no value of ${column}`);
+      return value;
+    };
 }
 
 /** The bank of a study text to look at, and how often; by default the only one of candidate `strings`, hourly. */

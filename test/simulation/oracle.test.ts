@@ -5,6 +5,7 @@ import { join } from 'node:path';
 import { parseString } from 'fast-csv';
 import { describe, expect, it } from 'vitest';
 import { traceCommand } from '../../src/commands/trace.js';
+import { memoryShell } from '../commands/memory-shell.js';
 import {
   type ComparedEvent,
   compareEvents,
@@ -13,7 +14,6 @@ import {
   type Waveform,
 } from '../reference/contract.js';
 import { ORACLE_CASES, readOracle } from '../reference/oracle/oracle-case.js';
-import { memoryShell } from './memory-shell.js';
 import { oracleStudyText } from './oracle-study.js';
 
 type Row = Readonly<Record<string, string>>;
@@ -29,7 +29,7 @@ async function traceOutsideBank(name: string): Promise<{ waveform: Waveform; eve
     { source: 'outside.yaml', candidate: 'bank', instance: 1, everyS: 60, out: folder },
     shell,
   );
-  expect(shell.errors()).toContain('written to');
+  expect(shell.printed.err).toContain('written to');
   expect(status).toBe(0);
   const modules = await readRows(join(folder, 'modules.csv'));
   const bus = await readRows(join(folder, 'bus.csv'));
@@ -96,6 +96,5 @@ describe('traces of banks that a circuit simulator has run', () => {
     expect(waveforms.faults).toEqual([]);
     expect(events.faults).toEqual([]);
     expect(waveforms.comparedSamples).toBeGreaterThan(0.98 * oracle.waveform.timeS.length);
-    console.log(name, JSON.stringify({ ...waveforms, ...events }));
   });
 });

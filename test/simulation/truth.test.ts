@@ -31,7 +31,6 @@ describe('the engine against the independent slow rewrite of the physics', () =>
       expect(Math.max(...charge)).toBeLessThan(PROMISED);
       const quarter = (from: number): number => Math.max(...charge.slice(from, from + 45));
       expect(quarter(135)).toBeLessThan(3 * Math.max(quarter(0), 1e-5));
-      console.log(name, [0, 45, 90, 135].map(quarter), slow.events.length, fast.events.length);
     },
     240_000,
   );

@@ -1,0 +1,94 @@
+import { mkdtempSync, readFileSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { describe, expect, it } from 'vitest';
+import { type TraceOptions, traceCommand } from '../../src/commands/trace.js';
+import { studyOf } from '../study/study-under-test.js';
+import { memoryShell } from './memory-shell.js';
+
+const STUDY = `motleybank: 1
+title: A pair for a test (invented)
+seed: 5
+instances: 4
+cycles: 6
+stock:
+  pair: {grade: mixed-purchase, modules: [A, B], rated_Ah: 100}
+duty:
+  phases: [{discharge_W: 300, for_h: 4}, {rest_h: 0.5}, {charge: to-full, at_most_h: 6}]
+candidates:
+  pair: {wiring: strings, modules: [[A, B]]}
+`;
+
+const FILES = {
+  'pair.yaml': STUDY,
+  'run/study.resolved.json': JSON.stringify(studyOf(STUDY)),
+  'broken/study.resolved.json': '{',
+};
+
+async function trace(
+  more: Partial<TraceOptions>,
+): Promise<{ status: number; out: string; err: string; folder: string }> {
+  const shell = memoryShell(FILES);
+  const folder = mkdtempSync(join(tmpdir(), 'motleybank-trace-'));
+  const options = { source: 'pair.yaml', candidate: 'pair', instance: 2, out: folder, ...more };
+  const status = await traceCommand(options, shell);
+  return { status, out: shell.printed.out, err: shell.printed.err, folder: options.out };
+}
+
+const rowsOf = (folder: string, name: string): string[] =>
+  readFileSync(join(folder, name), 'utf8').trimEnd().split('\r\n');
+
+describe('trace', () => {
+  it('writes the last two cycles by the minute, and says what happened', async () => {
+    const { status, out, folder } = await trace({});
+    expect(status).toBe(0);
+    expect(out).toMatch(/^pair, sampled bank 2, cycles 5 to 6\n/);
+    const bus = rowsOf(folder, 'bus.csv');
+    expect(bus[0]).toBe('cycle,time_s,bus_V,bank_A,demand_W,served_W');
+    const times = bus.slice(1).map((row) => Number(row.split(',')[1]));
+    expect(times[1] - times[0]).toBeCloseTo(60, 6);
+    expect(new Set(bus.slice(1).map((row) => row.split(',')[0]))).toEqual(new Set(['5', '6']));
+    expect(rowsOf(folder, 'modules.csv')).toHaveLength(2 * (bus.length - 1) + 1);
+    // Two modules of four cells, each with the values of its module beside it.
+    expect(rowsOf(folder, 'drawn.csv')).toHaveLength(9);
+  });
+
+  it('shows the same from the folder of a run as from its study', async () => {
+    const fromStudy = await trace({ everyS: 600 });
+    const fromRun = await trace({ source: 'run', everyS: 600 });
+    for (const name of ['drawn.csv', 'modules.csv', 'bus.csv', 'events.csv']) {
+      expect(rowsOf(fromRun.folder, name)).toEqual(rowsOf(fromStudy.folder, name));
+    }
+  });
+
+  it('shows the same cycle whatever the window and the interval are', async () => {
+    const narrow = await trace({ fromCycle: 3, toCycle: 3, everyS: 900 });
+    const wide = await trace({ fromCycle: 1, toCycle: 6, everyS: 60 });
+    const eventsOfThird = (folder: string): string[] =>
+      rowsOf(folder, 'events.csv').filter((row) => row.startsWith('3,'));
+    expect(eventsOfThird(wide.folder)).toEqual(eventsOfThird(narrow.folder));
+    expect(eventsOfThird(wide.folder).length).toBeGreaterThan(0);
+  });
+
+  it.each([
+    [{ candidate: 'pai' }, '--candidate must be one of pair, got pai (did you mean pair?)'],
+    [{ toCycle: 7 }, '--to-cycle must be at most 6, got 7'],
+    [{ fromCycle: 4, toCycle: 3 }, '--from-cycle must be at most --to-cycle (3), got 4'],
+    [{ fromCycle: 1, toCycle: 6, everyS: 0.01 }, '--every must be longer or the window shorter'],
+    [{ source: 'nowhere.yaml' }, 'nowhere.yaml cannot be read'],
+    [{ source: 'broken' }, 'must be JSON as a run left it'],
+  ])('refuses %j', async (more, message) => {
+    const { status, out, err } = await trace(more);
+    expect(status).toBe(2);
+    expect(out).toBe('');
+    expect(err).toContain(message);
+  });
+
+  it('says in one line that a folder cannot be written', async () => {
+    const file = join(mkdtempSync(join(tmpdir(), 'motleybank-trace-')), 'file');
+    writeFileSync(file, '');
+    const { status, err } = await trace({ out: join(file, 'below') });
+    expect(status).toBe(2);
+    expect(err).toMatch(/cannot be written: /);
+  });
+});
