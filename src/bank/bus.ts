@@ -46,7 +46,7 @@ const LEAST_PER_VOLT = 1e-11;
 /** Share by which the bounds of two regimes overlap, so that a root between them is not lost to rounding. */
 const ROUNDING = 1e-9;
 /** Share of the discriminant that must be to spare before an overloaded bus is tried again. */
-export const OVERLOAD_MARGIN = 0.02;
+const OVERLOAD_MARGIN = 0.02;
 
 /** Regime and net terms of the bus: I_bank = netA + netW / V unless a voltage is held. */
 export interface BusPoint extends ConductionPoint {
@@ -96,6 +96,24 @@ export function settleBus(
   settleRegime(bank, state, cache, emfV, terms, bus);
   const charges = bus.regime === CHARGER_AT_POWER || bus.regime === CHARGER_AT_LIMIT || bus.regime === CHARGER_HOLDS;
   bus.fed = charges || state.conduction.some((conduction) => conduction !== LEAKING);
+}
+
+/**
+ * Whether an overloaded bus could carry its load again with some power to spare. Tried on a copy: nothing is changed.
+ */
+export function overloadEnds(
+  bank: Bank,
+  state: BankState,
+  cache: NetworkCache,
+  emfV: Float64Array,
+  terms: BusTerms,
+  bus: BusPoint,
+): boolean {
+  const conduction = Uint8Array.from(state.conduction);
+  const trial: BusPoint = { ...bus, currentA: Float64Array.from(bus.currentA) };
+  settleRegime(bank, state, cache, emfV, terms, trial);
+  state.conduction.set(conduction);
+  return loadIsServed(trial.regime);
 }
 
 function settleRegime(

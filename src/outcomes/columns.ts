@@ -24,13 +24,6 @@ export interface OutcomeLayout {
   readonly checkpoints: readonly number[];
 }
 
-/** The outcomes of one block: instances in ascending order. */
-export interface OutcomeBlock {
-  /** From 1. */
-  readonly block: number;
-  readonly rows: readonly OutcomeRow[];
-}
-
 /** Columns in order: bank factors, drawn features slot by slot, measures, by-cycle values. */
 export function outcomeColumns(layout: OutcomeLayout): readonly OutcomeColumn[] {
   const drawn = (name: string, unit: string, definition: string): OutcomeColumn => ({

@@ -21,7 +21,7 @@ import { createTerminal, type Terminal } from './terminal.js';
 import { createWatch, nextTurned, pastChange, turnOver, updateValues, type Watch } from './watch.js';
 
 /** Least progress of a step, also of one that ends at an event, s. */
-export const LEAST_STEP_S = 0.01;
+const LEAST_STEP_S = 0.01;
 const MOST_STEP_S = 1800;
 /** Step tried first after a jump of current, and what counts as one. */
 const FIRST_STEP_S = 60;
@@ -45,6 +45,8 @@ export interface Journey {
   readonly terminal: Terminal;
   readonly watch: Watch;
   readonly work: StepWork;
+  /** Factor on every tolerance of the stepper; 1 but for studies of convergence. */
+  readonly toleranceFactor: number;
   /** Length that the next step will try, s. */
   stepS: number;
   readonly startHighestV: Float64Array;
@@ -57,7 +59,7 @@ export interface Journey {
   /** Called when a burst begins from which a rate is taken, and when its rates have been applied `ratio` times more. */
   readonly onBurst: () => void;
   readonly onLeap: (ratio: number) => void;
-  /** The bus cannot carry the load that is connected. */
+  /** The bus could not carry the load, which has not been served since. */
   busFails: boolean;
   /** The load asks for something and does not get it: the bus fails, or the low-voltage disconnect is open. */
   loadLost: boolean;
@@ -74,6 +76,7 @@ export function createJourney(
   charger: ChargerSettings,
   load: LoadSettings,
   listeners: JourneyListeners,
+  toleranceFactor = 1,
 ): Journey {
   const kernel = createKernel(bank, state);
   const chatter = createChatter(bank.modules, bank.cells);
@@ -82,6 +85,7 @@ export function createJourney(
     terminal: createTerminal(charger, load),
     watch: createWatch(kernel),
     work: createStepWork(kernel),
+    toleranceFactor,
     stepS: FIRST_STEP_S,
     startHighestV: new Float64Array(bank.modules),
     startLowestV: new Float64Array(bank.modules),
@@ -108,7 +112,8 @@ export function settleJourney(journey: Journey): void {
   settle(kernel, terminal, watch, work, onEvent);
   const asks = terminal.demandW > 0 || terminal.demandA > 0;
   const fails = asks && terminal.loadConnected && !loadIsServed(kernel.bus.regime);
-  if (fails !== journey.busFails) {
+  const isBack = !asks || (terminal.loadConnected && !fails);
+  if (journey.busFails ? isBack : fails) {
     onEvent({ kind: fails ? 'load-lost' : 'load-back', timeS: kernel.nowS, module: -1, cell: -1 });
     journey.busFails = fails;
   }
@@ -144,7 +149,7 @@ export function advance(journey: Journey, untilS: number, stop: () => boolean): 
       continue;
     }
     const mostS = kernel.bank.ocv.hasKinks ? Math.min(MOST_STEP_S, kinkStepS(kernel)) : MOST_STEP_S;
-    const tryS = Math.min(journey.stepS, mostS);
+    const tryS = Math.min(journey.stepS, journey.toleranceFactor * mostS);
     const stepS = tryS * 1.1 > restS ? restS : tryS;
     const happened = takeStep(journey, stepS);
     if (restS - journey.work.stepS <= 1e-9 && kernel.nowS > goalS - 1e-6) kernel.nowS = goalS;
@@ -174,7 +179,7 @@ function takeStep(journey: Journey, stepS: number): boolean {
   let tryS = stepS;
   for (;;) {
     journey.attempts++;
-    const error = tryStep(kernel, work, tryS);
+    const error = tryStep(kernel, work, tryS) / journey.toleranceFactor;
     if (error === Number.POSITIVE_INFINITY) {
       // The load has no solution somewhere in the step: halve towards that instant; there the load goes off.
       if (tryS <= LEAST_STEP_S) {
@@ -186,7 +191,7 @@ function takeStep(journey: Journey, stepS: number): boolean {
       continue;
     }
     updateExtremes(kernel, work.lastA, work.endFilterA);
-    const changeV = voltageChangeV(journey) / MOST_VOLTAGE_CHANGE_V;
+    const changeV = voltageChangeV(journey) / (journey.toleranceFactor * MOST_VOLTAGE_CHANGE_V);
     // Third order: the error grows with the cube of the step, a voltage with the step itself.
     const grow = Math.min(0.9 / Math.cbrt(error), changeV > 0 ? 0.8 / changeV : 5, 5);
     if ((error > 1 || changeV > 1) && tryS > LEAST_STEP_S) {
@@ -249,7 +254,8 @@ function cutAtEvent(journey: Journey, turned: number[]): void {
   };
   const least = Math.min(1, LEAST_STEP_S / stepS);
   const startValue = pastAt(1e-9);
-  const theta = startValue < 0 ? firstCrossing(pastAt, 1e-9, startValue, 1, endValue, EVENT_TOLERANCE) : least;
+  const width = journey.toleranceFactor * EVENT_TOLERANCE;
+  const theta = startValue < 0 ? firstCrossing(pastAt, 1e-9, startValue, 1, endValue, width) : least;
   // Rate of the condition that is first, close to its crossing.
   const before = pastAt(Math.max(1e-9, theta - RATE_SHARE));
   const perS = (pastAt(theta) - before) / (Math.min(theta, RATE_SHARE) * stepS);
@@ -258,7 +264,10 @@ function cutAtEvent(journey: Journey, turned: number[]): void {
   // The interpolation misses slow crossings by seconds; a step of the right length does not.
   for (let correction = 0; correction < MOST_CORRECTIONS; correction++) {
     const lateS = past() / perS;
-    if (!(Math.abs(lateS) > CORRECTED_FROM_S && Math.abs(lateS) < MOST_CORRECTION * work.stepS)) break;
+    if (
+      !(Math.abs(lateS) > journey.toleranceFactor * CORRECTED_FROM_S && Math.abs(lateS) < MOST_CORRECTION * work.stepS)
+    )
+      break;
     takeAnew(journey, Math.min(stepS, Math.max(LEAST_STEP_S, work.stepS - lateS)));
   }
   turned.splice(0, turned.length, ...turned.filter((at) => byThen.has(at) || pastChange(watch, at) >= 0));

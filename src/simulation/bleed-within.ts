@@ -17,29 +17,62 @@ const HALVINGS = 8;
  * @returns true if any cell was switched
  */
 export function switchBleedWithin(kernel: Kernel, work: StepWork, correctionAs: Float64Array): boolean {
-  const { bank, state, chainOfCell, lowestV, highestV } = kernel;
+  const { bank, state, lowestV, highestV } = kernel;
   let switched = false;
   for (let m = 0; m < bank.modules; m++) {
     if (bank.bleedRule[m] === BLEED_NONE) continue;
     const first = bank.cellStart[m];
     const end = bank.cellStart[m + 1];
     if (highestV[m] < bank.bleedStopV[m] && !anyBleeding(state.bleeding, first, end)) continue;
-    const i = chainOfCell[first];
-    for (let c = first; c < end; c++) {
-      const was = state.bleeding[c] === 1;
-      const volts = cellVoltageV(kernel, c, work.lastA, work.endFilterA);
-      if (bleedsAfter(bank, m, was, volts, lowestV[m], work.lastA[i]) === was) continue;
-      if (!switched) correctionAs.fill(0);
-      switched = true;
-      const restS = (1 - switchingShare(kernel, work, m, c, was)) * work.stepS;
-      const efficiency = kernel.chargePerAs[c] * bank.capacityAs[c];
-      correctionAs[c] = (was ? 1 : -1) * efficiency * bank.bleedA[m] * restS;
-    }
-    if (switched) {
-      for (let c = first; c < end; c++) if (correctionAs[c] !== 0) state.bleeding[c] = correctionAs[c] < 0 ? 1 : 0;
-    }
+    if (!switched) correctionAs.fill(0);
+    // Cells that stop come first: what they did not lose lifts them before others are compared with them. Otherwise a
+    // cell that bled too long in a long step would have its neighbours bleed in turn.
+    const stopped = switchCells(kernel, work, m, true, lowestV[m], correctionAs);
+    const lowV = stopped ? liftedLowestV(kernel, work, m, correctionAs) : lowestV[m];
+    const started = switchCells(kernel, work, m, false, lowV, correctionAs);
+    switched ||= stopped || started;
   }
   return switched;
+}
+
+/** Switches those cells of module `m` that bled before (or did not, after `was`) and whose voltage asks for it. */
+function switchCells(
+  kernel: Kernel,
+  work: StepWork,
+  m: number,
+  was: boolean,
+  lowV: number,
+  correctionAs: Float64Array,
+): boolean {
+  const { bank, state, chainOfCell } = kernel;
+  let switched = false;
+  for (let c = bank.cellStart[m]; c < bank.cellStart[m + 1]; c++) {
+    if ((state.bleeding[c] === 1) !== was || correctionAs[c] !== 0) continue;
+    const volts = cellVoltageV(kernel, c, work.lastA, work.endFilterA);
+    if (bleedsAfter(bank, m, was, volts, lowV, work.lastA[chainOfCell[c]]) === was) continue;
+    switched = true;
+    state.bleeding[c] = was ? 0 : 1;
+    const restS = (1 - switchingShare(kernel, work, m, c, was)) * work.stepS;
+    const efficiency = kernel.chargePerAs[c] * bank.capacityAs[c];
+    correctionAs[c] = (was ? 1 : -1) * efficiency * bank.bleedA[m] * restS;
+  }
+  return switched;
+}
+
+/** Lowest cell voltage of module `m` at the end of the step, with the corrections found so far. */
+function liftedLowestV(kernel: Kernel, work: StepWork, m: number, correctionAs: Float64Array): number {
+  const { bank, state, chainOfCell, chargePerAs, chargePerS } = kernel;
+  let lowest = Number.POSITIVE_INFINITY;
+  for (let c = bank.cellStart[m]; c < bank.cellStart[m + 1]; c++) {
+    let volts = cellVoltageV(kernel, c, work.lastA, work.endFilterA);
+    if (correctionAs[c] !== 0) {
+      const z = state.charge[c] + chargePerAs[c] * work.endAs[chainOfCell[c]] + chargePerS[c] * work.stepS;
+      const curve = bank.curveOfCell[c];
+      volts += ocvV(bank.ocv, curve, z + correctionAs[c] / bank.capacityAs[c]) - ocvV(bank.ocv, curve, z);
+    }
+    lowest = Math.min(lowest, volts);
+  }
+  return lowest;
 }
 
 function anyBleeding(bleeding: Uint8Array, first: number, end: number): boolean {

@@ -21,7 +21,13 @@ const FACTORS = { loadFactor: 1, chargeFactor: 1 };
  *
  * @param nowS time that the state belongs to
  */
-export function testCapacity(bank: Bank, state: BankState, candidate: Candidate, nowS: number): TestedCapacity {
+export function testCapacity(
+  bank: Bank,
+  state: BankState,
+  candidate: Candidate,
+  nowS: number,
+  toleranceFactor = 1,
+): TestedCapacity {
   let discharging = false;
   let firstStringS: number | null = null;
   let emptyS: number | null = null;
@@ -41,6 +47,7 @@ export function testCapacity(bank: Bank, state: BankState, candidate: Candidate,
         if (discharging && emptyS === null) deliveredJ -= work.busEnergyJ;
       },
     },
+    toleranceFactor,
   );
   journey.kernel.nowS = nowS;
   const testA = bank.ratedAh / TEST_HOURS;

@@ -18,13 +18,14 @@ export function commissionBank(
   candidate: Candidate,
   moduleNamed: ReadonlyMap<string, ModuleParameters>,
   ocv: OcvCurves,
+  toleranceFactor = 1,
 ): BankState {
   const state = createBankState(bank);
   if (candidate.commissioning === 'as-received') return state;
   const ids = candidate.strings.flat();
   let cell = 0;
   for (const id of ids) {
-    const charge = chargeAlone(id, candidate, moduleNamed, ocv);
+    const charge = chargeAlone(id, candidate, moduleNamed, ocv, toleranceFactor);
     state.charge.set(charge, cell);
     cell += charge.length;
   }
@@ -37,6 +38,7 @@ function chargeAlone(
   candidate: Candidate,
   moduleNamed: ReadonlyMap<string, ModuleParameters>,
   ocv: OcvCurves,
+  toleranceFactor: number,
 ): Float64Array {
   const absorptionV = candidate.charger.absorptionV / candidate.strings[0].length;
   const alone: Candidate = {
@@ -62,6 +64,7 @@ function chargeAlone(
     },
     { disconnectV: null, disconnectDelayS: 0, reconnectV: 0 },
     {},
+    toleranceFactor,
   );
   const charge = { durationS: BENCH_LIMIT_S, loadW: 0, loadA: 0, chargeW: null, endsWhenCharged: true };
   runSegment(journey, charge, { loadFactor: 1, chargeFactor: 1 });

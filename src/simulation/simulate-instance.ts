@@ -24,6 +24,7 @@ export interface PreparedCandidate {
   readonly ocv: OcvCurves;
   readonly course: readonly DutyCycle[];
   readonly checkpoints: readonly number[];
+  readonly toleranceFactor: number;
   readonly twin: SimulatedBank;
 }
 
@@ -39,9 +40,10 @@ export interface SimulatedBank {
 /**
  * Gets a candidate ready: compiles its curves and course and takes its twin (every value at its mean) through the course.
  *
+ * @param toleranceFactor factor on every tolerance of the stepper; runs use 1, studies of convergence less
  * @throws RangeError if the study has no candidate of that key
  */
-export function prepareCandidate(study: Study, candidateKey: string): PreparedCandidate {
+export function prepareCandidate(study: Study, candidateKey: string, toleranceFactor = 1): PreparedCandidate {
   const candidate = study.candidates.find(({ key }) => key === candidateKey);
   if (candidate === undefined) throw new RangeError(`study must have a candidate ${candidateKey}`);
   const parts = {
@@ -50,6 +52,7 @@ export function prepareCandidate(study: Study, candidateKey: string): PreparedCa
     ocv: compileOcvCurves(study.ocvTables),
     course: dutyCourse(study.duty, study.cycles),
     checkpoints: checkpointCycles(study.cycles),
+    toleranceFactor,
   };
   return { ...parts, twin: simulateBank(parts, meanModules(study), meanBankFactors(study)) };
 }
@@ -73,15 +76,15 @@ export function simulateTwin(prepared: PreparedCandidate): OutcomeRow {
 
 /** A bank at the beginning of its course, with a recorder that listens to it. */
 export function startBank(
-  prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv'>,
+  prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv' | 'toleranceFactor'>,
   modules: ReadonlyMap<string, ModuleParameters>,
   also: JourneyListeners = {},
 ): { readonly journey: Journey; readonly recorder: Recorder } {
-  const { study, candidate, ocv } = prepared;
+  const { study, candidate, ocv, toleranceFactor } = prepared;
   const bank = buildBank(candidate, modules, ocv);
-  const state = commissionBank(bank, candidate, modules, ocv);
+  const state = commissionBank(bank, candidate, modules, ocv, toleranceFactor);
   const recorder = createRecorder(study.cycles);
-  const journey: Journey = createJourney(bank, state, candidate.charger, candidate.load, {
+  const listeners: JourneyListeners = {
     onEvent: (event) => {
       recordEvent(recorder, journey, event);
       also.onEvent?.(event);
@@ -92,21 +95,22 @@ export function startBank(
     },
     onBurst: () => beginBurstRecord(recorder),
     onLeap: (ratio) => recordLeap(recorder, ratio),
-  });
+  };
+  const journey = createJourney(bank, state, candidate.charger, candidate.load, listeners, toleranceFactor);
   return { journey, recorder };
 }
 
 function simulateBank(
-  prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv' | 'course'>,
+  prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv' | 'course' | 'toleranceFactor'>,
   modules: ReadonlyMap<string, ModuleParameters>,
   factors: BankFactors,
 ): SimulatedBank {
-  const { candidate, course } = prepared;
+  const { candidate, course, toleranceFactor } = prepared;
   const { journey, recorder } = startBank(prepared, modules);
   const { bank, state } = journey.kernel;
-  const start = testCapacity(bank, state, candidate, journey.kernel.nowS);
+  const start = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
   runCourse(journey, recorder, course, factors);
-  const end = testCapacity(bank, state, candidate, journey.kernel.nowS);
+  const end = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
   return { bank, factors, log: recorder.log, start, end };
 }
 

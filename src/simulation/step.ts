@@ -12,9 +12,9 @@ export interface StepWork {
   /** At the end of the latest attempt. */
   readonly endAs: Float64Array;
   readonly endFilterA: Float64Array;
-  /** Bus energy of the latest attempt, into the bank, J. */
   /** Cells whose bleed has been switched at the instant being settled. */
   readonly bleedSpent: Uint8Array;
+  /** Bus energy of the latest attempt, into the bank, J. */
   busEnergyJ: number;
   endBankA: number;
   endBankV: number;
@@ -24,7 +24,7 @@ export interface StepWork {
 /** Distance from a branch of the hysteresis at which a cell is taken to be on it. */
 const ON_BRANCH = 1e-6;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */
-export const CHARGE_TOLERANCE = 1e-5;
+const CHARGE_TOLERANCE = 1e-5;
 /** The same per second of a step: bounds the error of the mean current of short steps, as in a taper, 1/s. */
 const RATE_TOLERANCE = 1.5e-7;
 

@@ -8,16 +8,15 @@ import {
   CHARGER_HOLDS,
   chargerCurrentA,
   loadCurrentA,
-  OVERLOAD_MARGIN,
 } from '../bank/bus.js';
 import type { BankEventKind } from '../bank/events.js';
 import type { ChargerSettings, LoadSettings } from '../study/study.js';
 
 /** Conditions at the bus, watched like those of a BMS: they hold while their value is at least 0. */
 export const REGIME = 0;
-export const LOAD_SWITCH = 1;
+const LOAD_SWITCH = 1;
 export const TAIL = 2;
-export const ABSORPTION = 3;
+const ABSORPTION = 3;
 export const RESTART = 4;
 export const TERMINAL_KINDS = 5;
 
@@ -92,13 +91,10 @@ function regimeValue(terms: BusTerms, bus: BusPoint, bankA: number, bankV: numbe
       return Math.max(bankV - (terms.ceilingV ?? 0), terms.chargeW / bankV - terms.limitA);
     case CHARGER_AT_LIMIT:
       return Math.max(bankV - (terms.ceilingV ?? 0), terms.limitA - terms.chargeW / bankV);
+    // A dead bus waits for a path to close; an overloaded one is tried by the watch.
     case BUS_DEAD:
+    case BUS_OVERLOADED:
       return NEVER;
-    case BUS_OVERLOADED: {
-      // The bank rests, so its voltage is its open voltage.
-      const half = 0.5 * (bankV + bus.map.bankOhm * bus.netA);
-      return half > 0 ? half * half + (1 + OVERLOAD_MARGIN) * bus.map.bankOhm * bus.netW : NEVER;
-    }
     default:
       return offersCharge ? (terms.ceilingV ?? 0) - bankV : NEVER;
   }

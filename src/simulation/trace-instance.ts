@@ -47,7 +47,7 @@ export function traceInstance(study: Study, window: TraceWindow): Trace {
     onSample: (sample) => samples.push({ ...sample, cycle: recorder.cycle }),
   };
   const { journey, recorder } = startBank(
-    { study, candidate, ocv: compileOcvCurves(study.ocvTables) },
+    { study, candidate, ocv: compileOcvCurves(study.ocvTables), toleranceFactor: 1 },
     sampleModules(study, window.instance),
     {
       onEvent: (event) => {

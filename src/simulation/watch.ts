@@ -1,3 +1,4 @@
+import { BUS_OVERLOADED, overloadEnds } from '../bank/bus.js';
 import { wrongSideV } from '../bank/conduction.js';
 import type { BankEventKind } from '../bank/events.js';
 import { updateChainModes } from '../bank/paths.js';
@@ -79,6 +80,10 @@ export function updateValues(
   }
   for (let kind = 0; kind < TERMINAL_KINDS; kind++) {
     value[firstTerminal + kind] = terminalValue(terminal, terms, bus, kind, bankA, bankV);
+  }
+  if (bus.regime === BUS_OVERLOADED) {
+    const ends = overloadEnds(bank, state, kernel.cache, point.emfV, terms, bus);
+    value[firstTerminal + REGIME] = ends ? 1 : -1;
   }
 }
 

@@ -21,7 +21,7 @@ describe('check', () => {
   it('prints every value with its origin, at most 100 ASCII columns wide', () => {
     const { out } = check().printed;
     expect(out).toMatch(/^stock\.older$/m);
-    expect(out).toMatch(/^ {2}capacity_Ah +90 Ah +study$/m);
+    expect(out).toMatch(/^ {2}capacity_Ah +94 Ah +study$/m);
     expect(out).toMatch(/^ {2}capacity_Ah\.module +sd 3 % +grade older$/m);
     expect(out).toMatch(/^ {2}bms\.over_voltage\.release_V +3\.45 V +default$/m);
     expect(out).toMatch(/^ {2}block +32 +default$/m);

@@ -30,9 +30,9 @@ async function trace(
 ): Promise<{ status: number; out: string; err: string; folder: string }> {
   const shell = memoryShell(FILES);
   const folder = mkdtempSync(join(tmpdir(), 'motleybank-trace-'));
-  const options = { source: 'pair.yaml', candidate: 'pair', instance: 2, out: folder, ...more };
+  const options: TraceOptions = { source: 'pair.yaml', candidate: 'pair', instance: 2, out: folder, ...more };
   const status = await traceCommand(options, shell);
-  return { status, out: shell.printed.out, err: shell.printed.err, folder: options.out };
+  return { status, out: shell.printed.out, err: shell.printed.err, folder };
 }
 
 const rowsOf = (folder: string, name: string): string[] =>

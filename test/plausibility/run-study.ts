@@ -33,7 +33,11 @@ function runCandidate(study: Study, key: string): CandidateRun {
 }
 
 /** @returns what turns a row of the candidate into its values by column name */
-function valuesByColumn({ candidate, checkpoints, twin }: PreparedCandidate): (row: OutcomeRow) => OutcomeValues {
+export function valuesByColumn({
+  candidate,
+  checkpoints,
+  twin,
+}: PreparedCandidate): (row: OutcomeRow) => OutcomeValues {
   const { strings, positions } = twin.bank;
   const columns = outcomeColumns({ strings, positions, checkpoints });
   const indexOf = new Map(columns.map(({ name }, index) => [name, index]));

@@ -40,7 +40,7 @@ const SLACK = 1e-9;
  * by string from the negative end, carries I_k = g_k (V_above - V_below - E_k), positive into its positive post;
  * a branch that does not conduct leaks 1 uS instead. Every node and the bus leak `nodeLeakS` to bus minus.
  */
-export function pieceOf(shape: NetworkShape, branches: readonly Branch[], conducting: readonly boolean[]): Piece {
+function pieceOf(shape: NetworkShape, branches: readonly Branch[], conducting: readonly boolean[]): Piece {
   const { strings, positions, linkOhm, nodeLeakS } = shape;
   const perString = positions - 1;
   const size = strings * perString;

@@ -61,6 +61,7 @@ function waveformOfSamples(samples: readonly BankSample[]): Waveform {
         position,
         currentA: over(({ currentA }) => currentA),
         terminalV: over(({ terminalV }) => terminalV),
+        cells: over(({ cellV }) => cellV.length)[0],
         lowestCharge: over(({ charge }) => Math.min(...charge)),
         highestCharge: over(({ charge }) => Math.max(...charge)),
         lowestCellV: over(({ cellV }) => Math.min(...cellV)),

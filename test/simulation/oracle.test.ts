@@ -61,6 +61,7 @@ function waveformOf(bus: readonly Row[], modules: readonly Row[]): Waveform {
         position: Number(own[0].position),
         currentA: numbers('current_A'),
         terminalV: numbers('module_V'),
+        cells: 4,
         lowestCharge: numbers('lowest_charge_percent', 0.01),
         highestCharge: numbers('highest_charge_percent', 0.01),
         lowestCellV: numbers('lowest_cell_V'),

@@ -14,7 +14,7 @@ import { BENCH, CHARGE, DISCHARGE, oneCell, seconds } from './one-cell.js';
 function logOf(bank: ReferenceBank): CycleLog {
   const study = studyOf(bank);
   const named = new Map(bank.modules.flat().map((module) => [module.id, module]));
-  const parts = { study, candidate: bank.candidate, ocv: compileOcvCurves(bank.ocvTables) };
+  const parts = { study, candidate: bank.candidate, ocv: compileOcvCurves(bank.ocvTables), toleranceFactor: 1 };
   const { journey, recorder } = startBank(parts, named);
   runCourse(journey, recorder, dutyCourse(study.duty, study.cycles), bank);
   return recorder.log;

@@ -27,12 +27,6 @@ export function studyOf(text: string, files: Readonly<Record<string, string>> = 
   return result.study;
 }
 
-/** @returns the lines that a refused study prints */
-export function problemsOf(text: string, files: Readonly<Record<string, string>> = {}): readonly string[] {
-  const result = read(text, files);
-  return result.kind === 'refused' ? result.problems.map(renderProblem) : [];
-}
-
 export function populationOf(study: Study, key: string): PopulationStock {
   const stock = study.stocks.find((candidate) => candidate.key === key);
   if (stock?.kind !== 'population') throw new Error(`no population ${key}`);

@@ -37,7 +37,7 @@ export function readOracle(name: OracleCase): Oracle {
 }
 
 /** Writes an oracle's parameters down as explicit modules, a candidate and a duty of one cycle. */
-export function oracleBank(parameters: OracleParameters): { bank: ReferenceBank; phaseStartS: number[] } {
+function oracleBank(parameters: OracleParameters): { bank: ReferenceBank; phaseStartS: number[] } {
   const modules = parameters.modules.map((module) => oracleModule(parameters, module));
   const strings = [modules.slice(0, MODULES_IN_SERIES), modules.slice(MODULES_IN_SERIES)];
   const ohmOf = (id: string): number | null => parameters.resistors.find((resistor) => resistor.id === id)?.ohm ?? null;
