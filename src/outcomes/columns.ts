@@ -1,5 +1,4 @@
 import { DRAWN_FEATURES } from '../measures/drawn-features.js';
-import type { OutcomeRow } from '../measures/outcome-row.js';
 import { CYCLE_MEASURES, MEASURES } from '../measures/registry.js';
 
 export type { OutcomeRow } from '../measures/outcome-row.js';

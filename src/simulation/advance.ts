@@ -30,14 +30,13 @@ const JUMP_A = 2;
 const MOST_CHARGE_OVER_KINKS = 0.01;
 /** Change of a cell's voltage over a step above which it is tried again shorter, V: keeps events well bracketed. */
 const MOST_VOLTAGE_CHANGE_V = 0.1;
-/** Width to which an event is bracketed inside its step, share of the step. */
-const EVENT_TOLERANCE = 2e-4;
-/** Error of an event's time, judged by the rate of its condition over the step, from which the step is corrected. */
-const CORRECTED_FROM_S = 0.2;
-const MOST_CORRECTIONS = 2;
-/** Change of length that a correction may make, and distance over which the rate is taken, shares of the step. */
-const MOST_CORRECTION = 0.1;
-const RATE_SHARE = 0.01;
+/** Width to which an event is bracketed by interpolation, share of the step. */
+const EVENT_TOLERANCE = 0.01;
+/** Time by which a step may end after its event, s; judged by the rate of the condition. */
+const MOST_LATE_S = 0.02;
+const MOST_CORRECTIONS = 3;
+/** Change of length that a correction may make, share of the step. */
+const MOST_CORRECTION = 0.2;
 
 /** A bank on its way through time. */
 export interface Journey {
@@ -203,6 +202,7 @@ function takeStep(journey: Journey, stepS: number): boolean {
     journey.stepS = tryS === stepS ? Math.max(nextS, grow >= 1 ? journey.stepS : 0) : nextS;
     break;
   }
+  copyInto(watch.value, watch.startValue);
   updateValues(kernel, journey.terminal, watch, work.lastA, work.endBankA, work.endBankV);
   const turned = turnedConditions(watch);
   if (turned === null) {
@@ -238,39 +238,43 @@ function turnedConditions(watch: Watch): number[] | null {
 }
 
 /**
- * Cuts the latest attempt at the first instant at which one of `turned` turns over, takes it anew to there, and leaves
- * in `turned` the conditions that have turned over by then.
+ * Cuts the latest attempt just after the first instant at which one of `turned` turns over, takes it anew to there, and
+ * leaves in `turned` the conditions that have turned over by then.
+ *
+ * The instant is sought by interpolation inside the attempt, then put right with steps of the length found: what is
+ * interpolated misses a slow crossing by seconds.
  */
 function cutAtEvent(journey: Journey, turned: number[]): void {
-  const { kernel, terminal, watch, work } = journey;
+  const { kernel, terminal, watch, work, toleranceFactor } = journey;
   const stepS = work.stepS;
-  const past = (): number =>
-    turned.reduce((most, at) => Math.max(most, pastChange(watch, at)), Number.NEGATIVE_INFINITY);
-  const endValue = past();
-  const pastAt = (theta: number): number => {
-    evaluateWithin(kernel, work, theta);
-    updateValues(kernel, terminal, watch, kernel.point.currentA, kernel.point.bankA, kernel.point.bankV);
-    return past();
+  const furthest = (values: Float64Array): number => {
+    let most = Number.NEGATIVE_INFINITY;
+    for (const at of turned) most = Math.max(most, pastChange(watch, at, values[at]));
+    return most;
   };
-  const least = Math.min(1, LEAST_STEP_S / stepS);
-  const startValue = pastAt(1e-9);
-  const width = journey.toleranceFactor * EVENT_TOLERANCE;
-  const theta = startValue < 0 ? firstCrossing(pastAt, 1e-9, startValue, 1, endValue, width) : least;
-  // Rate of the condition that is first, close to its crossing.
-  const before = pastAt(Math.max(1e-9, theta - RATE_SHARE));
-  const perS = (pastAt(theta) - before) / (Math.min(theta, RATE_SHARE) * stepS);
-  const byThen = new Set(turned.filter((at) => pastChange(watch, at) >= 0));
-  takeAnew(journey, Math.max(LEAST_STEP_S, theta * stepS));
-  // The interpolation misses slow crossings by seconds; a step of the right length does not.
-  for (let correction = 0; correction < MOST_CORRECTIONS; correction++) {
-    const lateS = past() / perS;
-    if (
-      !(Math.abs(lateS) > journey.toleranceFactor * CORRECTED_FROM_S && Math.abs(lateS) < MOST_CORRECTION * work.stepS)
-    )
-      break;
-    takeAnew(journey, Math.min(stepS, Math.max(LEAST_STEP_S, work.stepS - lateS)));
+  const startValue = furthest(watch.startValue);
+  if (startValue >= 0) {
+    takeAnew(journey, LEAST_STEP_S);
+  } else {
+    const pastAt = (theta: number): number => {
+      evaluateWithin(kernel, work, theta);
+      updateValues(kernel, terminal, watch, kernel.point.currentA, kernel.point.bankA, kernel.point.bankV);
+      return furthest(watch.value);
+    };
+    const whole = { low: 0, lowValue: startValue, high: 1, highValue: furthest(watch.value) };
+    const crossing = firstCrossing(pastAt, whole, toleranceFactor * EVENT_TOLERANCE);
+    const perS = (crossing.highValue - crossing.lowValue) / ((crossing.high - crossing.low) * stepS);
+    takeAnew(journey, Math.max(LEAST_STEP_S, crossing.high * stepS));
+    const lateS = toleranceFactor * MOST_LATE_S;
+    for (let correction = 0; correction < MOST_CORRECTIONS && work.stepS > LEAST_STEP_S; correction++) {
+      const late = furthest(watch.value) / perS;
+      if ((late >= 0 && late <= lateS) || Math.abs(late) > MOST_CORRECTION * stepS) break;
+      takeAnew(journey, Math.min(stepS, Math.max(LEAST_STEP_S, work.stepS - late + 0.25 * lateS)));
+    }
   }
-  turned.splice(0, turned.length, ...turned.filter((at) => byThen.has(at) || pastChange(watch, at) >= 0));
+  // The first one counts as turned over even if the last correction left it a little short.
+  const first = Math.min(0, furthest(watch.value));
+  turned.splice(0, turned.length, ...turned.filter((at) => pastChange(watch, at, watch.value[at]) >= first));
 }
 
 /** Takes the step again with another length and brings all values to its end. */

@@ -4,7 +4,7 @@ import { ocvV } from '../bank/ocv-curves.js';
 import { cellVoltageV, hysteresisAfter, type Kernel } from './kernel.js';
 import type { StepWork } from './step.js';
 
-/** Halvings with which a switching instant is found inside a step: a 100 s step to half a second. */
+/** Halvings with which a switching instant is found inside a step: a 100 s step to a second. */
 const HALVINGS = 8;
 
 /**

@@ -35,6 +35,8 @@ const SETTLED = 1e-8;
  */
 export interface Watch {
   readonly value: Float64Array;
+  /** Values at the start of the step. */
+  readonly startValue: Float64Array;
   readonly met: Uint8Array;
   readonly dueS: Float64Array;
   /** When a condition that holds was met. */
@@ -53,6 +55,7 @@ export function createWatch(kernel: Kernel): Watch {
   const count = firstTerminal + TERMINAL_KINDS;
   return {
     value: new Float64Array(count),
+    startValue: new Float64Array(count),
     met: new Uint8Array(count),
     dueS: new Float64Array(count).fill(Number.POSITIVE_INFINITY),
     sinceS: new Float64Array(count).fill(Number.POSITIVE_INFINITY),
@@ -87,10 +90,14 @@ export function updateValues(
   }
 }
 
-/** How far a condition's value is past the point where `met` must change; below 0 it need not. */
-export function pastChange(watch: Watch, at: number): number {
-  if (at >= watch.firstChain && at <= watch.firstTerminal + REGIME) return watch.value[at] - SETTLED;
-  return watch.met[at] === 1 ? -HYSTERESIS - watch.value[at] : watch.value[at];
+/**
+ * How far a condition is past the point where `met` must change; below 0 it need not.
+ *
+ * @param value of condition `at`
+ */
+export function pastChange(watch: Watch, at: number, value: number): number {
+  if (at >= watch.firstChain && at <= watch.firstTerminal + REGIME) return value - SETTLED;
+  return watch.met[at] === 1 ? -HYSTERESIS - value : value;
 }
 
 /** Turns a condition over; one newly met starts its clock. Rectifiers and regimes are settled instead. */
@@ -115,13 +122,19 @@ export function turnOver(kernel: Kernel, terminal: Terminal, watch: Watch, at: n
 /** Turns over every condition whose value asks for it. */
 export function updateMet(kernel: Kernel, terminal: Terminal, watch: Watch): void {
   for (let at = 0; at < watch.met.length; at++) {
-    if (pastChange(watch, at) >= 0) turnOver(kernel, terminal, watch, at);
+    if (pastChange(watch, at, watch.value[at]) >= 0) turnOver(kernel, terminal, watch, at);
   }
 }
 
 /** The first condition from `from` on that must be turned over, -1 if there is none. */
 export function nextTurned(watch: Watch, from: number): number {
-  for (let at = from; at < watch.value.length; at++) if (pastChange(watch, at) >= 0) return at;
+  const { value, met, firstChain, firstTerminal } = watch;
+  for (let at = from; at < value.length; at++) {
+    // Most conditions are neither met nor near: told apart without asking closer.
+    if (value[at] < 0 && met[at] === 0) continue;
+    if (at >= firstChain && at <= firstTerminal + REGIME && value[at] < SETTLED) continue;
+    if (pastChange(watch, at, value[at]) >= 0) return at;
+  }
   return -1;
 }
 

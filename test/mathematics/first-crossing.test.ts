@@ -9,7 +9,10 @@ function search(f: (x: number) => number, width: number): { readonly at: number;
     looks++;
     return f(x);
   };
-  return { at: firstCrossing(counted, 0, f(0), 1, f(1), width), looks };
+  const bracket = firstCrossing(counted, { low: 0, lowValue: f(0), high: 1, highValue: f(1) }, width);
+  expect(bracket.lowValue).toBe(f(bracket.low));
+  expect(bracket.highValue).toBe(f(bracket.high));
+  return { at: bracket.high, looks };
 }
 
 describe('firstCrossing', () => {
