@@ -27,7 +27,7 @@ const MOST_STEP_S = 1800;
 const FIRST_STEP_S = 60;
 const JUMP_A = 2;
 /** Charge that a step may pass over a curve with kinks, fraction of capacity. */
-const MOST_CHARGE_OVER_KINKS = 0.01;
+const MOST_CHARGE_OVER_KINKS = 0.004;
 /** Change of a cell's voltage over a step above which it is tried again shorter, V: keeps events well bracketed. */
 const MOST_VOLTAGE_CHANGE_V = 0.1;
 /** Width to which an event is bracketed by interpolation, share of the step. */

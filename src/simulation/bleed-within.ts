@@ -1,4 +1,4 @@
-import { BLEED_NONE } from '../bank/bank.js';
+import { BLEED_ABOVE_LOWEST, BLEED_NONE } from '../bank/bank.js';
 import { bleedsAfter } from '../bank/bleed.js';
 import { ocvV } from '../bank/ocv-curves.js';
 import { cellVoltageV, hysteresisAfter, type Kernel } from './kernel.js';
@@ -89,9 +89,12 @@ function switchingShare(kernel: Kernel, work: StepWork, m: number, c: number, wa
   for (let halving = 0; halving < HALVINGS; halving++) {
     const theta = 0.5 * (low + high);
     const currentA = chainWithin(kernel, work, i, theta);
-    let lowestV = Number.POSITIVE_INFINITY;
-    for (let other = bank.cellStart[m]; other < bank.cellStart[m + 1]; other++) {
-      lowestV = Math.min(lowestV, cellWithin(kernel, work, i, other, theta * work.stepS, currentA));
+    let lowestV = Number.NEGATIVE_INFINITY;
+    if (bank.bleedRule[m] === BLEED_ABOVE_LOWEST) {
+      lowestV = Number.POSITIVE_INFINITY;
+      for (let other = bank.cellStart[m]; other < bank.cellStart[m + 1]; other++) {
+        lowestV = Math.min(lowestV, cellWithin(kernel, work, i, other, theta * work.stepS, currentA));
+      }
     }
     const cellV = cellWithin(kernel, work, i, c, theta * work.stepS, currentA);
     if (bleedsAfter(bank, m, was, cellV, lowestV, currentA) === was) low = theta;

@@ -55,6 +55,10 @@ export interface Kernel {
 export interface EvaluatedPoint {
   /** Open-circuit and hysteresis voltage of each cell. */
   readonly cellV: Float64Array;
+  /** Hysteresis state of each cell; not written where no cell has hysteresis. */
+  readonly cellHysteresis: Float64Array;
+  /** Piece of its curve on which each cell was found last. */
+  readonly pieceOfCell: Int32Array;
   readonly emfV: Float64Array;
   readonly effectiveV: Float64Array;
   readonly currentA: Float64Array;
@@ -90,6 +94,8 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
     emfShiftV: floats(chains),
     point: {
       cellV: floats(bank.cells),
+      cellHysteresis: floats(bank.cells),
+      pieceOfCell: new Int32Array(bank.cells),
       emfV: floats(chains),
       effectiveV: floats(chains),
       currentA: floats(chains),
@@ -147,7 +153,7 @@ export function updateEmf(kernel: Kernel, elapsedS: number, passedAs: Float64Arr
   const { charge, hysteresis } = state;
   const { curveOfCell, ocv, hasHysteresis, hysteresisV, hysteresisPerAs, chainPolarisationOhm, chainCellStart } = bank;
   const { knots, coefficients, bucket } = ocv;
-  const { cellV, emfV } = point;
+  const { cellV, cellHysteresis, pieceOfCell, emfV } = point;
   const chains = emfV.length;
   let curve = -1;
   let lowest = 0;
@@ -172,10 +178,15 @@ export function updateEmf(kernel: Kernel, elapsedS: number, passedAs: Float64Arr
         firstBucket = ocv.firstBucket[curve];
         most = ocv.buckets[curve] - 1;
       }
-      const position = (z - lowest) * perUnit + 1;
-      const cell = position < 1 ? 0 : position >= most ? most : position | 0;
-      let piece = bucket[firstBucket + cell];
-      if (cell > 0) while (z >= knots[piece + 1]) piece++;
+      // The piece of the last look is nearly always the right one still.
+      let piece = pieceOfCell[c];
+      if (!(z >= knots[piece] && z < knots[piece + 1])) {
+        const position = (z - lowest) * perUnit + 1;
+        const cell = position < 1 ? 0 : position >= most ? most : position | 0;
+        piece = bucket[firstBucket + cell];
+        if (cell > 0) while (z >= knots[piece + 1]) piece++;
+        pieceOfCell[c] = piece;
+      }
       const d = z - knots[piece];
       const at = piece << 2;
       let volts = ((coefficients[at + 3] * d + coefficients[at + 2]) * d + coefficients[at + 1]) * d + coefficients[at];
@@ -189,7 +200,9 @@ export function updateEmf(kernel: Kernel, elapsedS: number, passedAs: Float64Arr
           more * more < 0.01 && branch * chainPath >= 0
             ? chainDecay * (1 - more * (1 - more * (0.5 - more / 6)))
             : Math.exp(-branch * path);
-        volts += hysteresisV[c] * (branch + (h - branch) * decay);
+        const hAfter = branch + (h - branch) * decay;
+        cellHysteresis[c] = hAfter;
+        volts += hysteresisV[c] * hAfter;
       }
       cellV[c] = volts;
       sum += volts;

@@ -1,4 +1,4 @@
-import { copyInto, hysteresisAfter, type Kernel, solveKept, updateEmf, updateExtremes } from './kernel.js';
+import { copyInto, type Kernel, solveKept, updateEmf, updateExtremes } from './kernel.js';
 
 /** Room for the stages of one step; arrays over chains, filters pair by pair (pair * chains + chain). */
 export interface StepWork {
@@ -24,7 +24,7 @@ export interface StepWork {
 /** Distance from a branch of the hysteresis at which a cell is taken to be on it. */
 const ON_BRANCH = 1e-6;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */
-const CHARGE_TOLERANCE = 1e-5;
+const CHARGE_TOLERANCE = 2e-5;
 /** The same per second of a step: bounds the error of the mean current of short steps, as in a taper, 1/s. */
 const RATE_TOLERANCE = 1.5e-7;
 
@@ -168,9 +168,9 @@ function passedWithin(work: StepWork, theta: number, intoAs: Float64Array): void
   for (let i = 0; i < firstA.length; i++) intoAs[i] = rest * endAs[i] + first * firstA[i] + last * lastA[i];
 }
 
-/** Makes the end of the latest attempt the present. */
+/** Makes the end of the latest attempt, which must be what was evaluated last, the present. */
 export function commitStep(kernel: Kernel, work: StepWork): void {
-  const { bank, state, chainOfCell, chargePerAs, chargePerS, offsetA, bus } = kernel;
+  const { bank, state, chainOfCell, chargePerAs, chargePerS, offsetA, bus, point } = kernel;
   const { stepS, endAs, endFilterA } = work;
   const { cells } = bank;
   const pairs = bank.timeConstantS.length;
@@ -178,7 +178,7 @@ export function commitStep(kernel: Kernel, work: StepWork): void {
     const q = endAs[chainOfCell[c]];
     state.charge[c] += chargePerAs[c] * q + chargePerS[c] * stepS;
     if (bank.hasHysteresis) {
-      const h = hysteresisAfter(state.hysteresis[c], q - offsetA[c] * stepS, bank.hysteresisPerAs[c]);
+      const h = point.cellHysteresis[c];
       // Close to a branch the exponential no longer matters; on it, it costs nothing.
       state.hysteresis[c] = Math.abs(h) > 1 - ON_BRANCH ? Math.sign(h) : h;
     }
