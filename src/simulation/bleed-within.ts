@@ -1,7 +1,8 @@
 import { BLEED_ABOVE_LOWEST, BLEED_NONE } from '../bank/bank.js';
 import { bleedsAfter } from '../bank/bleed.js';
 import { ocvV } from '../bank/ocv-curves.js';
-import { cellVoltageV, hysteresisAfter, type Kernel } from './kernel.js';
+import { hysteresisAfter } from './chain-emf.js';
+import { cellVoltageV, type Kernel } from './kernel.js';
 import type { StepWork } from './step.js';
 
 /** Halvings with which a switching instant is found inside a step: a 100 s step to a second. */

@@ -4,15 +4,8 @@ import { settleBus } from '../bank/bus.js';
 import { fixConduction } from '../bank/conduction.js';
 import type { BankEvent, BankEventKind } from '../bank/events.js';
 import { updateChainModes } from '../bank/paths.js';
-import {
-  cellVoltageV,
-  copyInto,
-  type Kernel,
-  updateCellConstants,
-  updateEmf,
-  updateEmfShifts,
-  updateExtremes,
-} from './kernel.js';
+import { updateEmf } from './chain-emf.js';
+import { cellVoltageV, copyInto, type Kernel, updateCellConstants, updateEmfShifts, updateExtremes } from './kernel.js';
 import type { StepWork } from './step.js';
 import { type Terminal, updateTerms } from './terminal.js';
 import { actOnDue, updateMet, updateNextDue, updateValues, type Watch } from './watch.js';

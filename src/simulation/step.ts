@@ -1,4 +1,5 @@
-import { copyInto, type Kernel, solveKept, updateEmf, updateExtremes } from './kernel.js';
+import { updateEmf } from './chain-emf.js';
+import { copyInto, type Kernel, solveKept, updateExtremes } from './kernel.js';
 
 /** Room for the stages of one step; arrays over chains, filters pair by pair (pair * chains + chain). */
 export interface StepWork {
@@ -21,6 +22,8 @@ export interface StepWork {
   stepS: number;
 }
 
+/** Least progress of a step, also of one that ends at an event, s. */
+export const LEAST_STEP_S = 0.01;
 /** Distance from a branch of the hysteresis at which a cell is taken to be on it. */
 const ON_BRANCH = 1e-6;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */

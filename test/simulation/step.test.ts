@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { hysteresisAfter, updateCellConstants } from '../../src/simulation/kernel.js';
+import { hysteresisAfter } from '../../src/simulation/chain-emf.js';
+import { updateCellConstants } from '../../src/simulation/kernel.js';
 import { runSegment } from '../../src/simulation/run-cycle.js';
 import { commitStep, filterLinear, tryStep } from '../../src/simulation/step.js';
 import type { ModuleParameters } from '../../src/study/study.js';
