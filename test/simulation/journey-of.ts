@@ -6,15 +6,24 @@ import { runSegment, startCycle } from '../../src/simulation/run-cycle.js';
 import type { ReferenceBank } from '../reference/reference-bank.js';
 
 /** The engine at the beginning of a reference bank's first cycle. */
-export function journeyOf(bank: ReferenceBank, listeners: Partial<JourneyListeners> = {}): Journey {
+export function journeyOf(
+  bank: ReferenceBank,
+  listeners: Partial<JourneyListeners> = {},
+  toleranceFactor = 1,
+): Journey {
   const named = new Map(bank.modules.flat().map((module) => [module.id, module]));
   const built = buildBank(bank.candidate, named, compileOcvCurves(bank.ocvTables));
-  return createJourney(built, createBankState(built), bank.candidate.charger, bank.candidate.load, listeners);
+  const { charger, load } = bank.candidate;
+  return createJourney(built, createBankState(built), charger, load, listeners, toleranceFactor);
 }
 
 /** Takes a bank through all its cycles. */
-export function runThrough(bank: ReferenceBank, listeners: Partial<JourneyListeners> = {}): Journey {
-  const journey = journeyOf(bank, listeners);
+export function runThrough(
+  bank: ReferenceBank,
+  listeners: Partial<JourneyListeners> = {},
+  toleranceFactor = 1,
+): Journey {
+  const journey = journeyOf(bank, listeners, toleranceFactor);
   for (const cycle of bank.cycles) {
     startCycle(journey);
     for (const segment of cycle) runSegment(journey, segment, bank);

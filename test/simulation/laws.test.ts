@@ -35,6 +35,9 @@ interface Accounts {
   leapt: boolean;
 }
 
+/** The balances are exact, but for the error of the steps: taken at a tenth of their tolerances. */
+const BALANCE_TOLERANCE = 0.1;
+
 function keepAccounts(bank: ReferenceBank): {
   readonly journey: Journey;
   readonly accounts: Accounts;
@@ -53,56 +56,60 @@ function keepAccounts(bank: ReferenceBank): {
   };
   const curve = ocvCurve(bank.ocvTables[0]);
   const startCharge = bank.modules.flat().flatMap((module) => [...module.arrivalCharge]);
-  const journey = runThrough(bank, {
-    onLeap: () => {
-      accounts.leapt = true;
-    },
-    onStep: (moving, stepS) => {
-      const { kernel, work } = moving;
-      const { state, bank: built, offsetA, chainOfCell, point } = kernel;
-      accounts.busJ += work.busEnergyJ;
-      accounts.turnoverJ += Math.abs(work.busEnergyJ);
-      for (const [theta, weight] of GAUSS) {
-        evaluateWithin(kernel, work, theta);
-        const spanS = weight * stepS;
-        for (let c = 0; c < built.cells; c++) {
-          const chainA = point.currentA[chainOfCell[c]];
-          const cellA = chainA - offsetA[c];
-          const efficiency = cellA > 0 ? built.efficiency[c] : 1;
-          const passedAs = work.passedAs[chainOfCell[c]];
-          const z = state.charge[c] + kernel.chargePerAs[c] * passedAs + kernel.chargePerS[c] * theta * stepS;
-          const openV = curve(z);
-          let standingV = point.cellV[c] - openV + built.resistanceOhm[c] * cellA;
-          for (let k = 0; k < built.timeConstantS.length; k++) {
-            const chains = point.currentA.length;
-            const decay = Math.exp((-theta * stepS) / built.timeConstantS[k]);
-            const offset = offsetA[c] + (state.offsetFilterA[k * built.cells + c] - offsetA[c]) * decay;
-            standingV +=
-              built.polarisationOhm[k * built.cells + c] * (work.filterA[k * chains + chainOfCell[c]] - offset);
+  const journey = runThrough(
+    bank,
+    {
+      onLeap: () => {
+        accounts.leapt = true;
+      },
+      onStep: (moving, stepS) => {
+        const { kernel, work } = moving;
+        const { state, bank: built, offsetA, chainOfCell, point } = kernel;
+        accounts.busJ += work.busEnergyJ;
+        accounts.turnoverJ += Math.abs(work.busEnergyJ);
+        for (const [theta, weight] of GAUSS) {
+          evaluateWithin(kernel, work, theta);
+          const spanS = weight * stepS;
+          for (let c = 0; c < built.cells; c++) {
+            const chainA = point.currentA[chainOfCell[c]];
+            const cellA = chainA - offsetA[c];
+            const efficiency = cellA > 0 ? built.efficiency[c] : 1;
+            const passedAs = work.passedAs[chainOfCell[c]];
+            const z = state.charge[c] + kernel.chargePerAs[c] * passedAs + kernel.chargePerS[c] * theta * stepS;
+            const openV = curve(z);
+            let standingV = point.cellV[c] - openV + built.resistanceOhm[c] * cellA;
+            for (let k = 0; k < built.timeConstantS.length; k++) {
+              const chains = point.currentA.length;
+              const decay = Math.exp((-theta * stepS) / built.timeConstantS[k]);
+              const offset = offsetA[c] + (state.offsetFilterA[k * built.cells + c] - offsetA[c]) * decay;
+              standingV +=
+                built.polarisationOhm[k * built.cells + c] * (work.filterA[k * chains + chainOfCell[c]] - offset);
+            }
+            accounts.currentAs[c] += spanS * (efficiency * cellA - built.leakageA[c]);
+            accounts.lostJ +=
+              spanS * (openV * (built.leakageA[c] + (1 - efficiency) * cellA + offsetA[c]) + standingV * chainA);
           }
-          accounts.currentAs[c] += spanS * (efficiency * cellA - built.leakageA[c]);
-          accounts.lostJ +=
-            spanS * (openV * (built.leakageA[c] + (1 - efficiency) * cellA + offsetA[c]) + standingV * chainA);
+          accounts.lostJ += spanS * wiringW(bank, moving);
         }
-        accounts.lostJ += spanS * wiringW(bank, moving);
-      }
-      evaluateWithin(kernel, work, 1);
-      for (let c = 0; c < built.cells; c++) {
-        const [firstA, lastA] = [work.firstA, work.lastA].map((amps) => amps[chainOfCell[c]] - offsetA[c]);
-        const cellAs = work.endAs[chainOfCell[c]] - offsetA[c] * stepS;
-        accounts.passedAs[c] += (cellAs > 0 ? built.efficiency[c] : 1) * cellAs - built.leakageA[c] * stepS;
-        if (firstA * lastA < 0) {
-          accounts.slackAs[c] += (1 - built.efficiency[c]) * Math.max(Math.abs(firstA), Math.abs(lastA)) * stepS;
+        evaluateWithin(kernel, work, 1);
+        for (let c = 0; c < built.cells; c++) {
+          const [firstA, lastA] = [work.firstA, work.lastA].map((amps) => amps[chainOfCell[c]] - offsetA[c]);
+          const cellAs = work.endAs[chainOfCell[c]] - offsetA[c] * stepS;
+          accounts.passedAs[c] += (cellAs > 0 ? built.efficiency[c] : 1) * cellAs - built.leakageA[c] * stepS;
+          if (firstA * lastA < 0) {
+            accounts.slackAs[c] += (1 - built.efficiency[c]) * Math.max(Math.abs(firstA), Math.abs(lastA)) * stepS;
+          }
+          const m = built.moduleOfCell[c];
+          const standbyA = state.asleep[m] === 1 ? built.asleepA[m] : built.standbyA[m];
+          const bledBefore = offsetA[c] - standbyA > 0.5 * built.bleedA[m];
+          if (bledBefore === (state.bleeding[c] === 1)) continue;
+          accounts.slackAs[c] += built.bleedA[m] * stepS;
+          accounts.slackJ += 4 * built.bleedA[m] * stepS;
         }
-        const m = built.moduleOfCell[c];
-        const standbyA = state.asleep[m] === 1 ? built.asleepA[m] : built.standbyA[m];
-        const bledBefore = offsetA[c] - standbyA > 0.5 * built.bleedA[m];
-        if (bledBefore === (state.bleeding[c] === 1)) continue;
-        accounts.slackAs[c] += built.bleedA[m] * stepS;
-        accounts.slackJ += 4 * built.bleedA[m] * stepS;
-      }
+      },
     },
-  });
+    BALANCE_TOLERANCE,
+  );
   return { journey, accounts, startCharge };
 }
 
@@ -159,11 +166,11 @@ describe('the balances of random banks over their cycles', () => {
           expect(Math.abs(gainedAs - accounts.passedAs[c])).toBeLessThan(slackAs + 1e-9 * capacityAs[c]);
           // Currents inside a step are interpolated; where unlike modules level out at the limit of stable steps, that
           // leaves up to 5e-5 a step, while what was passed agrees with the slow rewrite to 2e-5 over all of them.
-          expect(Math.abs(gainedAs - accounts.currentAs[c])).toBeLessThan(slackAs + 5e-4 * capacityAs[c]);
+          expect(Math.abs(gainedAs - accounts.currentAs[c])).toBeLessThan(slackAs + 2e-4 * capacityAs[c]);
           storedJ += capacityAs[c] * integralOfOcv(bank, start, end);
         });
         const missingJ = Math.abs(accounts.busJ - storedJ - accounts.lostJ) - accounts.slackJ;
-        expect(missingJ).toBeLessThan(1e-3 * accounts.turnoverJ + 100);
+        expect(missingJ).toBeLessThan(3e-4 * accounts.turnoverJ + 30);
       }),
       { seed: 111, numRuns: 40, endOnFailure: true },
     );

@@ -129,8 +129,8 @@ describe('the step', () => {
     // dz = -0.1 is where the sharing above comes to rest.
     const resting = pairUnderLoad([], [0.7, 0.8]);
     expect(tryStep(resting.kernel, resting.work, 600)).toBeLessThan(1e-6);
-    // From 67 s on the tolerance is one of charge, whatever the length.
-    const errors = [400, 200, 100].map((stepS) => {
+    // From 134 s on the tolerance is one of charge, whatever the length.
+    const errors = [540, 270, 135].map((stepS) => {
       const { kernel, work } = pairUnderLoad([]);
       return tryStep(kernel, work, stepS);
     });
