@@ -166,7 +166,8 @@ function capacityMeasures(bank: Bank, { start, end, twin }: InstanceFacts): Part
     lost_capacity_start: 100 * (1 - start.usableAh / start.idealAh),
     lost_capacity: 100 * (1 - end.usableAh / end.idealAh),
     lost_capacity_of_rated: 100 * (1 - end.usableAh / bank.ratedAh),
-    lost_capacity_of_twin: 100 * (1 - end.usableAh / twinAh),
+    // A twin that can deliver nothing is no measure of anything.
+    lost_capacity_of_twin: twinAh > 0 ? 100 * (1 - end.usableAh / twinAh) : null,
   };
 }
 

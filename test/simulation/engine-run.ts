@@ -17,25 +17,32 @@ export interface EngineRun {
 }
 
 /** Takes a reference bank through its cycles with the engine, sampled every `everyS` seconds (never by default). */
-export function runEngine(bank: ReferenceBank, everyS = Number.POSITIVE_INFINITY): EngineRun {
+export function runEngine(bank: ReferenceBank, everyS = Number.POSITIVE_INFINITY, toleranceFactor = 1): EngineRun {
   const modules = new Map(bank.modules.flat().map((module) => [module.id, module]));
   const built = buildBank(bank.candidate, modules, compileOcvCurves(bank.ocvTables));
   const events: ComparedEvent[] = [];
   const samples: BankSample[] = [];
   const sampler: Sampler = { everyS, nextS: everyS, onSample: (sample) => samples.push(sample) };
-  const journey = createJourney(built, createBankState(built), bank.candidate.charger, bank.candidate.load, {
-    onEvent: ({ kind, timeS, module }) => {
-      const slot = module < 0 ? null : module;
-      events.push({
-        timeS,
-        // The slow rewrite calls the release of a lock a retry.
-        kind: kind === 'over-current-unlock' ? 'over-current-retry' : kind,
-        string: slot === null ? null : Math.floor(slot / built.positions) + 1,
-        position: slot === null ? null : (slot % built.positions) + 1,
-      });
+  const journey = createJourney(
+    built,
+    createBankState(built),
+    bank.candidate.charger,
+    bank.candidate.load,
+    {
+      onEvent: ({ kind, timeS, module }) => {
+        const slot = module < 0 ? null : module;
+        events.push({
+          timeS,
+          // The slow rewrite calls the release of a lock a retry.
+          kind: kind === 'over-current-unlock' ? 'over-current-retry' : kind,
+          string: slot === null ? null : Math.floor(slot / built.positions) + 1,
+          position: slot === null ? null : (slot % built.positions) + 1,
+        });
+      },
+      onStep: (_, stepS) => sampleStep(sampler, journey, stepS),
     },
-    onStep: (_, stepS) => sampleStep(sampler, journey, stepS),
-  });
+    toleranceFactor,
+  );
   const cycleEndCharge: number[][] = [];
   const segmentStartS: number[] = [];
   for (const cycle of bank.cycles) {
