@@ -9,7 +9,7 @@ const SIGMA_AH = 5;
 const LOAD_A = 4;
 /** What resistance and the end of the curve may cost in all, Ah. */
 const BIAS_AH = 0.1;
-const LINKS_MOHM = [0.1, 1, 10, 100, 1000];
+const LINKS_MOHM = [0.1, 1, 10, 100, 1000, 10_000];
 
 const wired = (wiring: string, more = '') => `{wiring: ${wiring}, modules: [[A1, A2], [B1, B2]]${more}}`;
 
