@@ -64,16 +64,21 @@ export function compileOcvCurves(tables: readonly OcvTable[]): OcvCurves {
   };
 }
 
-/** Open-circuit voltage of curve `index` at charge fraction `z` (any finite value), V. */
-export function ocvV(curves: OcvCurves, index: number, z: number): number {
-  const knots = curves.knots;
+/** Index of the piece of curve `index` that holds charge fraction `z` (any finite value). */
+export function findPiece(curves: OcvCurves, index: number, z: number): number {
   const position = (z - curves.lowest[index]) * curves.perUnit[index] + 1;
   const most = curves.buckets[index] - 1;
   const cell = position < 1 ? 0 : position >= most ? most : position | 0;
   let piece = curves.bucket[curves.firstBucket[index] + cell];
   // A grid cell can hold several pieces where the table is fine.
-  if (cell > 0) while (z >= knots[piece + 1]) piece++;
-  const d = z - knots[piece];
+  if (cell > 0) while (z >= curves.knots[piece + 1]) piece++;
+  return piece;
+}
+
+/** Open-circuit voltage of curve `index` at charge fraction `z` (any finite value), V. */
+export function ocvV(curves: OcvCurves, index: number, z: number): number {
+  const piece = findPiece(curves, index, z);
+  const d = z - curves.knots[piece];
   const c = curves.coefficients;
   const at = 4 * piece;
   return ((c[at + 3] * d + c[at + 2]) * d + c[at + 1]) * d + c[at];

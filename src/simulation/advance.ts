@@ -3,7 +3,7 @@ import type { BankState } from '../bank/bank-state.js';
 import { BUS_OVERLOADED, loadIsServed } from '../bank/bus.js';
 import type { BankEvent } from '../bank/events.js';
 import type { ChargerSettings, LoadSettings } from '../study/study.js';
-import { switchBleedWithin } from './bleed-within.js';
+import { type BleedPlan, carryOut, createBleedPlan, planBleed } from './bleed-within.js';
 import { updateEmf } from './chain-emf.js';
 import { type Chatter, countTrip, createChatter, leapOverChatter } from './chatter.js';
 import { cutAtEvent, turnedConditions } from './cut-at-event.js';
@@ -13,14 +13,17 @@ import { commitStep, createStepWork, LEAST_STEP_S, type StepWork, tryStep } from
 import { createTerminal, type Terminal } from './terminal.js';
 import { createWatch, turnOver, updateValues, type Watch } from './watch.js';
 
-const MOST_STEP_S = 1800;
+const MOST_STEP_S = 3600;
 /** Step tried first after a jump of current, and what counts as one. */
 const FIRST_STEP_S = 60;
 const JUMP_A = 2;
 /** Charge that a step may pass over a curve with kinks, fraction of capacity. */
-const MOST_CHARGE_OVER_KINKS = 0.004;
+const MOST_CHARGE_OVER_KINKS = 0.002;
 /** Change of a cell's voltage over a step above which it is tried again shorter, V: keeps events well bracketed. */
 const MOST_VOLTAGE_CHANGE_V = 0.1;
+/** Time for which a step may go on after a bleed has switched within it, s. */
+const MOST_BLEED_LATE_S = 100;
+
 /** A bank on its way through time. */
 export interface Journey {
   readonly kernel: Kernel;
@@ -33,7 +36,7 @@ export interface Journey {
   stepS: number;
   readonly startHighestV: Float64Array;
   readonly startLowestV: Float64Array;
-  readonly correctionAs: Float64Array;
+  readonly bleedPlan: BleedPlan;
   readonly chatter: Chatter;
   readonly onEvent: (event: BankEvent) => void;
   /** Called with every step before it is committed, while it can still be looked into. */
@@ -71,7 +74,7 @@ export function createJourney(
     stepS: FIRST_STEP_S,
     startHighestV: new Float64Array(bank.modules),
     startLowestV: new Float64Array(bank.modules),
-    correctionAs: new Float64Array(bank.cells),
+    bleedPlan: createBleedPlan(bank.cells),
     chatter,
     onEvent: (event) => {
       countTrip(chatter, event);
@@ -90,7 +93,7 @@ export function createJourney(
 /** Puts the bank in order now: to be called after anything at its terminal has changed. */
 export function settleJourney(journey: Journey): void {
   const { kernel, terminal, watch, work, onEvent } = journey;
-  copyInto(kernel.bus.currentA, work.secondA);
+  copyInto(kernel.bus.currentA, work.lastA);
   settle(kernel, terminal, watch, work, onEvent);
   const asks = terminal.demandW > 0 || terminal.demandA > 0;
   const fails = asks && terminal.loadConnected && !loadIsServed(kernel.bus.regime);
@@ -100,7 +103,7 @@ export function settleJourney(journey: Journey): void {
     journey.busFails = fails;
   }
   journey.loadLost = fails || (asks && !terminal.loadConnected);
-  if (currentsJumped(work.secondA, kernel.bus.currentA)) journey.stepS = Math.min(journey.stepS, FIRST_STEP_S);
+  if (currentsJumped(work.lastA, kernel.bus.currentA)) journey.stepS = Math.min(journey.stepS, FIRST_STEP_S);
 }
 
 /** After a jump the polarisation moves fast again, after an event without one it does not. */
@@ -155,7 +158,7 @@ function kinkStepS({ bank, bus }: Kernel): number {
 
 /** Takes one step of at most `stepS`. @returns true if it ended at an event */
 function takeStep(journey: Journey, stepS: number): boolean {
-  const { kernel, watch, work } = journey;
+  const { kernel, watch, work, bleedPlan } = journey;
   copyInto(kernel.highestV, journey.startHighestV);
   copyInto(kernel.lowestV, journey.startLowestV);
   let tryS = stepS;
@@ -183,6 +186,12 @@ function takeStep(journey: Journey, stepS: number): boolean {
     const nextS = Math.max(LEAST_STEP_S, tryS * Math.max(grow, 0.3));
     // A step cut short by something due says nothing against a longer one.
     journey.stepS = tryS === stepS ? Math.max(nextS, grow >= 1 ? journey.stepS : 0) : nextS;
+    planBleed(kernel, work, bleedPlan);
+    const lateS = journey.toleranceFactor * MOST_BLEED_LATE_S;
+    if (bleedPlan.lateS > lateS) {
+      tryS = tryS - bleedPlan.lateS + 0.3 * lateS;
+      continue;
+    }
     break;
   }
   copyInto(watch.value, watch.startValue);
@@ -192,7 +201,10 @@ function takeStep(journey: Journey, stepS: number): boolean {
     finishStep(journey);
     return false;
   }
-  if (work.stepS > LEAST_STEP_S) cutAtEvent(journey, turned);
+  if (work.stepS > LEAST_STEP_S) {
+    cutAtEvent(journey, turned);
+    planBleed(kernel, work, bleedPlan);
+  }
   finishStep(journey);
   for (const at of turned) turnOver(kernel, journey.terminal, watch, at);
   return true;
@@ -211,23 +223,22 @@ function voltageChangeV(journey: Journey): number {
   return change;
 }
 
-/** Lets listeners look at the latest attempt, switches bleed that changed inside it, and commits it. */
+/** Lets listeners look at the latest attempt, commits it and switches the bleed that changed inside it. */
 function finishStep(journey: Journey): void {
-  const { kernel, work, correctionAs } = journey;
-  const { state, bank, bus } = kernel;
+  const { kernel, work, bleedPlan } = journey;
+  const { state, bus, point } = kernel;
   journey.steps++;
-  const bled = switchBleedWithin(kernel, work, correctionAs);
   journey.onStep(journey, work.stepS);
   commitStep(kernel, work);
-  if (bled) for (let c = 0; c < bank.cells; c++) state.charge[c] += correctionAs[c] / bank.capacityAs[c];
+  if (bleedPlan.any) carryOut(kernel, bleedPlan);
   updateCellConstants(kernel);
-  if (bled) {
+  if (bleedPlan.any) {
     work.passedAs.fill(0);
     updateEmf(kernel, 0, work.passedAs, state.filterA);
     if (solveKept(kernel)) {
-      copyInto(kernel.point.currentA, bus.currentA);
-      bus.bankA = kernel.point.bankA;
-      bus.bankV = kernel.point.bankV;
+      copyInto(point.currentA, bus.currentA);
+      bus.bankA = point.bankA;
+      bus.bankV = point.bankV;
       copyInto(bus.currentA, work.firstA);
     }
     updateExtremes(kernel, bus.currentA, state.filterA);

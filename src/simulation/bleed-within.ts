@@ -1,63 +1,86 @@
 import { BLEED_ABOVE_LOWEST, BLEED_NONE } from '../bank/bank.js';
-import { bleedsAfter } from '../bank/bleed.js';
+import { pastBleedSwitch } from '../bank/bleed.js';
 import { ocvV } from '../bank/ocv-curves.js';
+import { firstCrossing } from '../mathematics/first-crossing.js';
 import { hysteresisAfter } from './chain-emf.js';
 import { cellVoltageV, type Kernel } from './kernel.js';
 import type { StepWork } from './step.js';
 
-/** Halvings with which a switching instant is found inside a step: a 100 s step to a second. */
-const HALVINGS = 8;
+/** Width to which a switching instant is bracketed, share of the step; within it the line through both ends is taken. */
+const SWITCHING_TOLERANCE = 0.02;
+
+/** Bleed that switches within a step: which cells, what that changes in their charge, and for how long it is late. */
+export interface BleedPlan {
+  readonly switched: Uint8Array;
+  /** Charge to add to each cell once the step is committed, As. */
+  readonly correctionAs: Float64Array;
+  any: boolean;
+  /** Longest time from a switching instant to the end of the step, s. */
+  lateS: number;
+}
+
+export function createBleedPlan(cells: number): BleedPlan {
+  return { switched: new Uint8Array(cells), correctionAs: new Float64Array(cells), any: false, lateS: 0 };
+}
 
 /**
- * Switches bleed that changed during the latest attempt, from the instant inside the step at which it did. The step
- * itself is not repeated: bleed is so small that only the charge it takes matters, and that is put right.
+ * Finds the bleed that switches during the latest attempt, from the instant inside the step at which it does. A step
+ * need not end there: bleed is so small that for a short while only the charge it takes matters, and that is put right.
  *
- * Call after the attempt's end has been evaluated and before it is committed.
- *
- * @param correctionAs charge to add to each cell after the commit, As; overwritten
- * @returns true if any cell was switched
+ * Call after the attempt's end has been evaluated and before it is committed. Nothing is switched yet.
  */
-export function switchBleedWithin(kernel: Kernel, work: StepWork, correctionAs: Float64Array): boolean {
+export function planBleed(kernel: Kernel, work: StepWork, plan: BleedPlan): void {
   const { bank, state, lowestV, highestV } = kernel;
-  let switched = false;
+  if (plan.any) {
+    plan.switched.fill(0);
+    plan.correctionAs.fill(0);
+    plan.any = false;
+    plan.lateS = 0;
+  }
   for (let m = 0; m < bank.modules; m++) {
     if (bank.bleedRule[m] === BLEED_NONE) continue;
     const first = bank.cellStart[m];
     const end = bank.cellStart[m + 1];
     if (highestV[m] < bank.bleedStopV[m] && !anyBleeding(state.bleeding, first, end)) continue;
-    if (!switched) correctionAs.fill(0);
     // Cells that stop come first: what they did not lose lifts them before others are compared with them. Otherwise a
     // cell that bled too long in a long step would have its neighbours bleed in turn.
-    const stopped = switchCells(kernel, work, m, true, lowestV[m], correctionAs);
-    const lowV = stopped ? liftedLowestV(kernel, work, m, correctionAs) : lowestV[m];
-    const started = switchCells(kernel, work, m, false, lowV, correctionAs);
-    switched ||= stopped || started;
+    const stopped = planCells(kernel, work, m, true, lowestV[m], plan);
+    const lowV = stopped ? liftedLowestV(kernel, work, m, plan.correctionAs) : lowestV[m];
+    planCells(kernel, work, m, false, lowV, plan);
   }
-  return switched;
 }
 
-/** Switches those cells of module `m` that bled before (or did not, after `was`) and whose voltage asks for it. */
-function switchCells(
-  kernel: Kernel,
-  work: StepWork,
-  m: number,
-  was: boolean,
-  lowV: number,
-  correctionAs: Float64Array,
-): boolean {
-  const { bank, state, chainOfCell } = kernel;
-  let switched = false;
-  for (let c = bank.cellStart[m]; c < bank.cellStart[m + 1]; c++) {
-    if ((state.bleeding[c] === 1) !== was || correctionAs[c] !== 0) continue;
-    const volts = cellVoltageV(kernel, c, work.lastA, work.endFilterA);
-    if (bleedsAfter(bank, m, was, volts, lowV, work.lastA[chainOfCell[c]]) === was) continue;
-    switched = true;
-    state.bleeding[c] = was ? 0 : 1;
-    const restS = (1 - switchingShare(kernel, work, m, c, was)) * work.stepS;
-    const efficiency = kernel.chargePerAs[c] * bank.capacityAs[c];
-    correctionAs[c] = (was ? 1 : -1) * efficiency * bank.bleedA[m] * restS;
+/** Switches what a plan says. To be called once its step is committed. */
+export function carryOut({ bank, state }: Kernel, plan: BleedPlan): void {
+  for (let c = 0; c < bank.cells; c++) {
+    if (plan.switched[c] === 0) continue;
+    state.bleeding[c] = 1 - state.bleeding[c];
+    state.charge[c] += plan.correctionAs[c] / bank.capacityAs[c];
   }
-  return switched;
+}
+
+/**
+ * Plans for those cells of module `m` that bled before (or did not, after `was`) and whose voltage asks for a switch.
+ *
+ * @returns true if there are any
+ */
+function planCells(kernel: Kernel, work: StepWork, m: number, was: boolean, lowV: number, plan: BleedPlan): boolean {
+  const { bank, state, chainOfCell } = kernel;
+  let any = false;
+  for (let c = bank.cellStart[m]; c < bank.cellStart[m + 1]; c++) {
+    if ((state.bleeding[c] === 1) !== was) continue;
+    const volts = cellVoltageV(kernel, c, work.lastA, work.endFilterA);
+    const past = pastBleedSwitch(bank, m, was, volts, lowV, work.lastA[chainOfCell[c]]);
+    if (past < 0) continue;
+    any = true;
+    const restS = (1 - switchingShare(kernel, work, m, c, was, past)) * work.stepS;
+    const efficiency = kernel.chargePerAs[c] * bank.capacityAs[c];
+    plan.switched[c] = 1;
+    plan.correctionAs[c] = (was ? 1 : -1) * efficiency * bank.bleedA[m] * restS;
+    plan.lateS = Math.max(plan.lateS, restS);
+  }
+  plan.any ||= any;
+  return any;
 }
 
 /** Lowest cell voltage of module `m` at the end of the step, with the corrections found so far. */
@@ -81,14 +104,11 @@ function anyBleeding(bleeding: Uint8Array, first: number, end: number): boolean 
   return false;
 }
 
-/** Share of the step after which cell `c` no longer bleeds (or does not) as it did at the start. */
-function switchingShare(kernel: Kernel, work: StepWork, m: number, c: number, was: boolean): number {
+/** Share of the step after which cell `c` no longer bleeds (or does not) as it did at the start; `endPast` at its end. */
+function switchingShare(kernel: Kernel, work: StepWork, m: number, c: number, was: boolean, endPast: number): number {
   const { bank } = kernel;
   const i = kernel.chainOfCell[c];
-  let low = 0;
-  let high = 1;
-  for (let halving = 0; halving < HALVINGS; halving++) {
-    const theta = 0.5 * (low + high);
+  const pastAt = (theta: number): number => {
     const currentA = chainWithin(kernel, work, i, theta);
     let lowestV = Number.NEGATIVE_INFINITY;
     if (bank.bleedRule[m] === BLEED_ABOVE_LOWEST) {
@@ -97,11 +117,20 @@ function switchingShare(kernel: Kernel, work: StepWork, m: number, c: number, wa
         lowestV = Math.min(lowestV, cellWithin(kernel, work, i, other, theta * work.stepS, currentA));
       }
     }
-    const cellV = cellWithin(kernel, work, i, c, theta * work.stepS, currentA);
-    if (bleedsAfter(bank, m, was, cellV, lowestV, currentA) === was) low = theta;
-    else high = theta;
-  }
-  return 0.5 * (low + high);
+    return pastBleedSwitch(
+      bank,
+      m,
+      was,
+      cellWithin(kernel, work, i, c, theta * work.stepS, currentA),
+      lowestV,
+      currentA,
+    );
+  };
+  const startPast = pastAt(0);
+  if (startPast >= 0) return 0;
+  const whole = { low: 0, lowValue: startPast, high: 1, highValue: endPast };
+  const { low, lowValue, high, highValue } = firstCrossing(pastAt, whole, SWITCHING_TOLERANCE);
+  return low + ((high - low) * lowValue) / (lowValue - highValue);
 }
 
 /**
@@ -121,7 +150,7 @@ function chainWithin(kernel: Kernel, work: StepWork, i: number, theta: number): 
       theta * (1 - theta) * (1 - theta) * first +
       theta * theta * (theta - 1) * last);
   work.passedAs[i] = passedAs;
-  const slope = (2 * (passedAs / elapsedS - first)) / elapsedS;
+  const slope = elapsedS > 0 ? (2 * (passedAs / elapsedS - first)) / elapsedS : 0;
   const chains = work.firstA.length;
   for (let k = 0; k < bank.timeConstantS.length; k++) {
     const tauS = bank.timeConstantS[k];

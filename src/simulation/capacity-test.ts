@@ -4,6 +4,7 @@ import type { TestedCapacity } from '../measures/instance-measures.js';
 import type { Candidate, DutySegment } from '../study/study.js';
 import { createJourney, type Journey } from './advance.js';
 import { runSegment } from './run-cycle.js';
+import { busEnergyJ } from './step.js';
 
 const HOUR_S = 3600;
 const LONGEST_CHARGE_S = 24 * HOUR_S;
@@ -43,8 +44,8 @@ export function testCapacity(
         if (kind === 'under-voltage-trip' || kind === 'over-current-discharge-trip') firstStringS ??= timeS;
         if (kind === 'load-lost') emptyS ??= timeS;
       },
-      onStep: ({ work }) => {
-        if (discharging && emptyS === null) deliveredJ -= work.busEnergyJ;
+      onStep: ({ kernel, work }) => {
+        if (discharging && emptyS === null) deliveredJ -= busEnergyJ(kernel, work);
       },
     },
     toleranceFactor,

@@ -1,3 +1,4 @@
+import { findPiece } from '../bank/ocv-curves.js';
 import type { Kernel } from './kernel.js';
 
 /**
@@ -5,71 +6,86 @@ import type { Kernel } from './kernel.js';
  *
  *   E = sum over cells of U(z) + M h + offset voltage, + sum_k R_k filter_k
  *
- * Writes `point.cellV` and `point.emfV`.
+ * Writes `point.cellV`, `point.cellHysteresis` and `point.emfV`. Two short loops over the cells instead of one long one:
+ * with all arrays in one loop the compiler runs out of registers and it takes three times as long.
  */
 export function updateEmf(kernel: Kernel, elapsedS: number, passedAs: Float64Array, filterA: Float64Array): void {
-  const { bank, state, point, chargePerAs, chargePerS, offsetA, chainFixedV } = kernel;
-  const { charge, hysteresis } = state;
-  const { curveOfCell, ocv, hasHysteresis, hysteresisV, hysteresisPerAs, chainPolarisationOhm, chainCellStart } = bank;
-  const { knots, coefficients, bucket } = ocv;
-  const { cellV, cellHysteresis, pieceOfCell, emfV } = point;
+  addOpenCircuit(kernel, elapsedS, passedAs);
+  if (kernel.bank.hasHysteresis) addHysteresis(kernel, elapsedS, passedAs);
+  const { chainPolarisationOhm } = kernel.bank;
+  const { emfV } = kernel.point;
   const chains = emfV.length;
-  let curve = -1;
-  let lowest = 0;
-  let perUnit = 0;
-  let firstBucket = 0;
-  let most = 0;
-  for (let i = 0; i < chains; i++) {
+  for (let first = 0; first < chainPolarisationOhm.length; first += chains) {
+    for (let i = 0; i < chains; i++) emfV[i] += chainPolarisationOhm[first + i] * filterA[first + i];
+  }
+}
+
+/** Begins the EMFs with what stands still and the open-circuit voltages. */
+function addOpenCircuit(kernel: Kernel, elapsedS: number, passedAs: Float64Array): void {
+  const { bank, state, point, chargePerAs, chargePerS, chainFixedV } = kernel;
+  const { charge } = state;
+  const { chainCellStart } = bank;
+  const { knots, coefficients } = bank.ocv;
+  const { cellV, pieceOfCell, emfV } = point;
+  for (let i = 0; i < emfV.length; i++) {
     const q = passedAs[i];
-    const start = chainCellStart[i];
     const end = chainCellStart[i + 1];
-    // The path gamma q / Q of the chain's first cell stands for those of the others but for a small difference.
-    const chainPath = hysteresisPerAs[start] * (q - offsetA[start] * elapsedS);
-    const chainDecay = hasHysteresis ? Math.exp(-Math.abs(chainPath)) : 1;
     let sum = chainFixedV[i];
-    for (let c = start; c < end; c++) {
+    for (let c = chainCellStart[i]; c < end; c++) {
       const z = charge[c] + chargePerAs[c] * q + chargePerS[c] * elapsedS;
-      // ocvV() of bank/ocv-curves.ts, written out: the call costs a third of the evaluation.
-      if (curveOfCell[c] !== curve) {
-        curve = curveOfCell[c];
-        lowest = ocv.lowest[curve];
-        perUnit = ocv.perUnit[curve];
-        firstBucket = ocv.firstBucket[curve];
-        most = ocv.buckets[curve] - 1;
-      }
-      // The piece of the last look is nearly always the right one still.
+      // ocvV() of bank/ocv-curves.ts, written out. The piece of the last look is nearly always the right one still.
       let piece = pieceOfCell[c];
       if (!(z >= knots[piece] && z < knots[piece + 1])) {
-        const position = (z - lowest) * perUnit + 1;
-        const cell = position < 1 ? 0 : position >= most ? most : position | 0;
-        piece = bucket[firstBucket + cell];
-        if (cell > 0) while (z >= knots[piece + 1]) piece++;
+        piece = findPiece(bank.ocv, bank.curveOfCell[c], z);
         pieceOfCell[c] = piece;
       }
       const d = z - knots[piece];
       const at = piece << 2;
-      let volts = ((coefficients[at + 3] * d + coefficients[at + 2]) * d + coefficients[at + 1]) * d + coefficients[at];
-      if (hasHysteresis) {
-        // hysteresisAfter(), by the exponential of the chain and three terms of the series for what the cell differs by.
-        const h = hysteresis[c];
-        const path = hysteresisPerAs[c] * (q - offsetA[c] * elapsedS);
-        const branch = path >= 0 ? 1 : -1;
-        const more = branch * (path - chainPath);
-        const decay =
-          more * more < 0.01 && branch * chainPath >= 0
-            ? chainDecay * (1 - more * (1 - more * (0.5 - more / 6)))
-            : Math.exp(-branch * path);
-        const hAfter = branch + (h - branch) * decay;
-        cellHysteresis[c] = hAfter;
-        volts += hysteresisV[c] * hAfter;
-      }
+      const volts =
+        ((coefficients[at + 3] * d + coefficients[at + 2]) * d + coefficients[at + 1]) * d + coefficients[at];
       cellV[c] = volts;
       sum += volts;
     }
     emfV[i] = sum;
   }
-  for (let first = 0; first < chainPolarisationOhm.length; first += chains) {
-    for (let i = 0; i < chains; i++) emfV[i] += chainPolarisationOhm[first + i] * filterA[first + i];
+}
+
+/** Difference of paths within a chain up to which three terms of the series do: 4e-6 of the hysteresis. */
+const MOST_APART = 0.1;
+
+/** Adds the hysteresis of the cells: by one exponential a chain, and the series for what the paths of its cells differ. */
+function addHysteresis(kernel: Kernel, elapsedS: number, passedAs: Float64Array): void {
+  const { bank, point, offsetA } = kernel;
+  const { hysteresis } = kernel.state;
+  const { hysteresisV, hysteresisPerAs, chainCellStart } = bank;
+  const { cellHysteresis, cellV, emfV } = point;
+  for (let i = 0; i < emfV.length; i++) {
+    const q = passedAs[i];
+    const start = chainCellStart[i];
+    const end = chainCellStart[i + 1];
+    const chainPath = Math.abs(hysteresisPerAs[start] * (q - offsetA[start] * elapsedS));
+    const chainDecay = Math.exp(-chainPath);
+    let apart = 0;
+    for (let c = start; c < end; c++) {
+      const path = hysteresisPerAs[c] * (q - offsetA[c] * elapsedS);
+      const branch = Math.sign(path);
+      const more = Math.abs(path) - chainPath;
+      const decay = chainDecay * (1 - more * (1 - more * (0.5 - more * (1 / 6))));
+      cellHysteresis[c] = branch + (hysteresis[c] - branch) * decay;
+      apart = Math.max(apart, Math.abs(more));
+    }
+    if (apart > MOST_APART) {
+      for (let c = start; c < end; c++) {
+        cellHysteresis[c] = hysteresisAfter(hysteresis[c], q - offsetA[c] * elapsedS, hysteresisPerAs[c]);
+      }
+    }
+    let sum = 0;
+    for (let c = start; c < end; c++) {
+      const volts = hysteresisV[c] * cellHysteresis[c];
+      cellV[c] += volts;
+      sum += volts;
+    }
+    emfV[i] += sum;
   }
 }
 

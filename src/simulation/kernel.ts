@@ -40,6 +40,9 @@ export interface Kernel {
   /** Voltage of a cell that stands still within a step: offset current through its resistances. */
   readonly fixedV: Float64Array;
   readonly chainFixedV: Float64Array;
+  /** Slopes of each chain's EMF now: by the charge it passes, V/As, and by what its cells lose of themselves, V/s. */
+  readonly emfPerAs: Float64Array;
+  readonly emfPerS: Float64Array;
   /** Shift of a chain's EMF by its forward drop. */
   readonly emfShiftV: Float64Array;
 
@@ -91,6 +94,8 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
     offsetA: floats(bank.cells),
     fixedV: floats(bank.cells),
     chainFixedV: floats(chains),
+    emfPerAs: floats(chains),
+    emfPerS: floats(chains),
     emfShiftV: floats(chains),
     point: {
       cellV: floats(bank.cells),
@@ -115,23 +120,75 @@ export function copyInto(from: Float64Array, into: Float64Array): void {
 
 /** Sets the constants of all cells from the state and the chain currents now. */
 export function updateCellConstants(kernel: Kernel): void {
-  const { bank, state, bus, chainOfCell, chargePerAs, chargePerS, offsetA, fixedV, chainFixedV } = kernel;
-  const { cells, moduleOfCell, capacityAs, polarisationOhm } = bank;
-  const pairs = bank.timeConstantS.length;
-  for (let i = 0; i < chainFixedV.length; i++) chainFixedV[i] = 0;
-  for (let c = 0; c < cells; c++) {
-    const m = moduleOfCell[c];
-    const i = chainOfCell[c];
+  // Short loops of few arrays: one long one runs out of registers and takes three times as long.
+  updateOffsets(kernel);
+  updateFixedVoltages(kernel);
+  updateSlopes(kernel);
+}
+
+function updateOffsets({ bank, state, bus, offsetA, chargePerAs, chargePerS }: Kernel): void {
+  const { cellStart, chainOfModule, capacityAs, efficiency, leakageA } = bank;
+  const { bleeding } = state;
+  for (let m = 0; m < bank.modules; m++) {
     const standbyA = state.asleep[m] === 1 ? bank.asleepA[m] : bank.standbyA[m];
-    const offset = state.bleeding[c] === 1 ? standbyA + bank.bleedA[m] : standbyA;
-    const efficiency = bus.currentA[i] > offset ? bank.efficiency[c] : 1;
-    offsetA[c] = offset;
-    chargePerAs[c] = efficiency / capacityAs[c];
-    chargePerS[c] = -(efficiency * offset + bank.leakageA[c]) / capacityAs[c];
-    let volts = -bank.resistanceOhm[c] * offset;
-    for (let k = 0; k < pairs; k++) volts -= polarisationOhm[k * cells + c] * state.offsetFilterA[k * cells + c];
-    fixedV[c] = volts;
-    chainFixedV[i] += volts;
+    const bleedA = bank.bleedA[m];
+    const chainA = bus.currentA[chainOfModule[m]];
+    const end = cellStart[m + 1];
+    for (let c = cellStart[m]; c < end; c++) {
+      const offset = bleeding[c] === 1 ? standbyA + bleedA : standbyA;
+      const efficient = chainA > offset ? efficiency[c] : 1;
+      const perAs = 1 / capacityAs[c];
+      offsetA[c] = offset;
+      chargePerAs[c] = efficient * perAs;
+      chargePerS[c] = -(efficient * offset + leakageA[c]) * perAs;
+    }
+  }
+}
+
+function updateFixedVoltages({ bank, state, offsetA, fixedV, chainFixedV }: Kernel): void {
+  const { cells, chainCellStart, resistanceOhm, polarisationOhm } = bank;
+  const { offsetFilterA } = state;
+  for (let i = 0; i < chainFixedV.length; i++) {
+    const end = chainCellStart[i + 1];
+    let sum = 0;
+    for (let c = chainCellStart[i]; c < end; c++) {
+      let volts = -resistanceOhm[c] * offsetA[c];
+      for (let at = c; at < polarisationOhm.length; at += cells) volts -= polarisationOhm[at] * offsetFilterA[at];
+      fixedV[c] = volts;
+      sum += volts;
+    }
+    chainFixedV[i] = sum;
+  }
+}
+
+/** The pieces must be those of the charges now, or next to them. */
+function updateSlopes({ bank, state, bus, point, chargePerAs, chargePerS, offsetA, emfPerAs, emfPerS }: Kernel): void {
+  const { chainCellStart, hysteresisV, hysteresisPerAs } = bank;
+  const { knots, coefficients } = bank.ocv;
+  const { charge, hysteresis } = state;
+  const { pieceOfCell } = point;
+  for (let i = 0; i < emfPerAs.length; i++) {
+    const end = chainCellStart[i + 1];
+    let perAs = 0;
+    let perS = 0;
+    for (let c = chainCellStart[i]; c < end; c++) {
+      const at = pieceOfCell[c] << 2;
+      const d = charge[c] - knots[pieceOfCell[c]];
+      const slope = (3 * coefficients[at + 3] * d + 2 * coefficients[at + 2]) * d + coefficients[at + 1];
+      perAs += slope * chargePerAs[c];
+      perS += slope * chargePerS[c];
+    }
+    if (bank.hasHysteresis) {
+      const chainA = bus.currentA[i];
+      for (let c = chainCellStart[i]; c < end; c++) {
+        const toBranch = chainA > offsetA[c] ? 1 - hysteresis[c] : 1 + hysteresis[c];
+        const slope = hysteresisV[c] * hysteresisPerAs[c] * toBranch;
+        perAs += slope;
+        perS -= slope * offsetA[c];
+      }
+    }
+    emfPerAs[i] = perAs;
+    emfPerS[i] = perS;
   }
 }
 

@@ -1,5 +1,5 @@
 import { BLEED_NONE } from '../bank/bank.js';
-import { bleedsAfter } from '../bank/bleed.js';
+import { pastBleedSwitch } from '../bank/bleed.js';
 import { settleBus } from '../bank/bus.js';
 import { fixConduction } from '../bank/conduction.js';
 import type { BankEvent, BankEventKind } from '../bank/events.js';
@@ -61,10 +61,9 @@ function switchBleed(kernel: Kernel, spent: Uint8Array): boolean {
     const m = bank.moduleOfCell[c];
     if (bank.bleedRule[m] === BLEED_NONE || spent[c] === 1) continue;
     const volts = cellVoltageV(kernel, c, bus.currentA, state.filterA);
-    const was = state.bleeding[c] === 1;
-    const is = bleedsAfter(bank, m, was, volts, lowestV[m], bus.currentA[chainOfCell[c]]);
-    if (is === was) continue;
-    state.bleeding[c] = is ? 1 : 0;
+    const bleeds = state.bleeding[c] === 1;
+    if (pastBleedSwitch(bank, m, bleeds, volts, lowestV[m], bus.currentA[chainOfCell[c]]) < 0) continue;
+    state.bleeding[c] = bleeds ? 0 : 1;
     spent[c] = 1;
     switched = true;
   }

@@ -1,12 +1,17 @@
 import { updateEmf } from './chain-emf.js';
 import { copyInto, type Kernel, solveKept, updateExtremes } from './kernel.js';
+import { createLinearised, factorLinearised, type Linearised, linearise, solveLinearised } from './linearised.js';
 
 /** Room for the stages of one step; arrays over chains, filters pair by pair (pair * chains + chain). */
 export interface StepWork {
+  readonly linearised: Linearised;
+  /** Chain currents at the start and at the end of the latest attempt. */
   readonly firstA: Float64Array;
-  readonly secondA: Float64Array;
-  readonly thirdA: Float64Array;
   readonly lastA: Float64Array;
+  /** What each of the three stages adds to charge, As, and to filtered currents, A. */
+  readonly stage1: StageChange;
+  readonly stage2: StageChange;
+  readonly stage3: StageChange;
   /** Charge passed since the start of the step, As. */
   readonly passedAs: Float64Array;
   readonly filterA: Float64Array;
@@ -15,11 +20,15 @@ export interface StepWork {
   readonly endFilterA: Float64Array;
   /** Cells whose bleed has been switched at the instant being settled. */
   readonly bleedSpent: Uint8Array;
-  /** Bus energy of the latest attempt, into the bank, J. */
-  busEnergyJ: number;
   endBankA: number;
   endBankV: number;
   stepS: number;
+}
+
+/** Change of the integrated quantities by one stage. */
+interface StageChange {
+  readonly chargeAs: Float64Array;
+  readonly filterA: Float64Array;
 }
 
 /** Least progress of a step, also of one that ends at an event, s. */
@@ -27,99 +36,133 @@ export const LEAST_STEP_S = 0.01;
 /** Distance from a branch of the hysteresis at which a cell is taken to be on it. */
 const ON_BRANCH = 1e-6;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */
-const CHARGE_TOLERANCE = 2e-5;
+const CHARGE_TOLERANCE = 5e-5;
 /** The same per second of a step: bounds the error of the mean current of short steps, as in a taper, 1/s. */
 const RATE_TOLERANCE = 1.5e-7;
+/** Embedded error of a filtered current, as a fraction of the charge of the smallest cell per second (0.01 C), 1/s. */
+const FILTER_TOLERANCE = 2.8e-6;
 
 export function createStepWork(kernel: Kernel): StepWork {
   const chains = kernel.emfShiftV.length;
   const filters = kernel.state.filterA.length;
+  const stage = (): StageChange => ({ chargeAs: new Float64Array(chains), filterA: new Float64Array(filters) });
   return {
+    linearised: createLinearised(chains),
     firstA: new Float64Array(chains),
-    secondA: new Float64Array(chains),
-    thirdA: new Float64Array(chains),
     lastA: new Float64Array(chains),
+    stage1: stage(),
+    stage2: stage(),
+    stage3: stage(),
     passedAs: new Float64Array(chains),
     filterA: new Float64Array(filters),
     endAs: new Float64Array(chains),
     endFilterA: new Float64Array(filters),
     bleedSpent: new Uint8Array(kernel.bank.cells),
-    busEnergyJ: 0,
     endBankA: 0,
     endBankV: 0,
     stepS: 0,
   };
 }
 
+/** Coefficients of ROS3. */
+const GAMMA = 0.435866521508459;
+const TIME_2 = 0.24291996454816805;
+const TIME_3 = 2.185138002766406;
+const C_21 = -1.0156171083877703;
+const C_31 = 4.07599564525377;
+const C_32 = 9.20767942983308;
+const END_2 = 6.1697947043828245;
+const END_3 = -0.42772256543218573;
+const ERROR_1 = 0.5;
+const ERROR_2 = -2.907955871680547;
+const ERROR_3 = 0.2235406989781157;
+
 /**
  * Tries one step of `stepS` seconds with pattern and regime kept; the state stays as it is until `commitStep`.
  *
- * The charge of each chain follows the embedded pair of order 3(2)
+ * Charge and filtered currents follow ROS3, a linearly implicit method of order 3 with an embedded one of order 2: near
+ * the top, and while the charger holds a voltage, strings share within seconds, and an explicit step could not be longer
+ * than that. With y the charges and filtered currents, f their rates, J the derivative of f and y0 at the start:
  *
- *   k1 = I(0), k2 = I(h/2; q = h/2 k1), k3 = I(3h/4; q = 3h/4 k2), q = h (2 k1 + 3 k2 + 4 k3) / 9, k4 = I(h; q)
- *   error = h (-5 k1 + 6 k2 + 8 k3 - 9 k4) / 72
- *
- * whose last evaluation is the first of the next step. Filtered currents follow their exponentials exactly for the
- * current that the stage assumes (constant within stages, linear with the right mean over the step), so no step length
- * is unstable for them.
+ *   (1 / (gamma h) - J) u_s = f(t_s, y_s) + sum_{r<s} c_sr u_r / h + gamma_s h df/dt,   y_1 = y0,   y_2 = y_3 = y0 + u_1
+ *   y(h) = y0 + u_1 + m_2 u_2 + m_3 u_3,   error = e_1 u_1 + e_2 u_2 + e_3 u_3
  *
  * @returns the largest error over the chains, in tolerances; Infinity if the bus has no solution on the way
- * @see Bogacki & Shampine 1989, Appl. Math. Letters 2(4), 321-325
+ * @see Sandu, Verwer, Blom, Spee, Carmichael & Potra 1997, Atmospheric Environment 31(20), 3459-3472 (coefficients from
+ *   memory; their order is tested)
  */
 export function tryStep(kernel: Kernel, work: StepWork, stepS: number): number {
-  const { bank, point, state, bus } = kernel;
-  const { firstA, secondA, thirdA, lastA, passedAs, filterA, endAs, endFilterA } = work;
+  const { bank, point, state } = kernel;
+  const { linearised, firstA, lastA, passedAs, filterA, endAs, endFilterA } = work;
+  const { chargeAs: q1, filterA: f1 } = work.stage1;
+  const { chargeAs: q2, filterA: f2 } = work.stage2;
+  const { chargeAs: q3, filterA: f3 } = work.stage3;
   const chains = firstA.length;
+  const filters = filterA.length;
   work.stepS = stepS;
+  const g = 1 / (GAMMA * stepS);
+  linearise(kernel, linearised);
+  factorLinearised(kernel, linearised, g);
 
-  const halfS = 0.5 * stepS;
-  for (let i = 0; i < chains; i++) passedAs[i] = halfS * firstA[i];
-  filterConstant(bank.timeConstantS, halfS, state.filterA, firstA, filterA);
-  updateEmf(kernel, halfS, passedAs, filterA);
+  stageRates(kernel, linearised, firstA, state.filterA, GAMMA * stepS, q1, f1);
+  solveLinearised(kernel, linearised, g, q1, f1);
+
+  for (let i = 0; i < chains; i++) passedAs[i] = q1[i];
+  for (let at = 0; at < filters; at++) filterA[at] = state.filterA[at] + f1[at];
+  updateEmf(kernel, GAMMA * stepS, passedAs, filterA);
   if (!solveKept(kernel)) return Number.POSITIVE_INFINITY;
-  copyInto(point.currentA, secondA);
-  const secondW = point.bankA * point.bankV;
+  const from1 = C_21 / stepS;
+  stageRates(kernel, linearised, point.currentA, filterA, TIME_2 * stepS, q2, f2);
+  for (let i = 0; i < chains; i++) q2[i] += from1 * q1[i];
+  for (let at = 0; at < filters; at++) f2[at] += from1 * f1[at];
+  solveLinearised(kernel, linearised, g, q2, f2);
 
-  const laterS = 0.75 * stepS;
-  for (let i = 0; i < chains; i++) passedAs[i] = laterS * secondA[i];
-  filterConstant(bank.timeConstantS, laterS, state.filterA, secondA, filterA);
-  updateEmf(kernel, laterS, passedAs, filterA);
-  if (!solveKept(kernel)) return Number.POSITIVE_INFINITY;
-  copyInto(point.currentA, thirdA);
-  const thirdW = point.bankA * point.bankV;
+  const also1 = C_31 / stepS;
+  const from2 = C_32 / stepS;
+  stageRates(kernel, linearised, point.currentA, filterA, TIME_3 * stepS, q3, f3);
+  for (let i = 0; i < chains; i++) q3[i] += also1 * q1[i] + from2 * q2[i];
+  for (let at = 0; at < filters; at++) f3[at] += also1 * f1[at] + from2 * f2[at];
+  solveLinearised(kernel, linearised, g, q3, f3);
 
-  for (let i = 0; i < chains; i++) endAs[i] = (stepS / 9) * (2 * firstA[i] + 3 * secondA[i] + 4 * thirdA[i]);
-  filterLinear(bank.timeConstantS, stepS, state.filterA, firstA, endAs, endFilterA);
+  let worst = 0;
+  const perCharge = 1 / Math.min(CHARGE_TOLERANCE, RATE_TOLERANCE * stepS);
+  for (let i = 0; i < chains; i++) {
+    endAs[i] = q1[i] + END_2 * q2[i] + END_3 * q3[i];
+    const errorAs = ERROR_1 * q1[i] + ERROR_2 * q2[i] + ERROR_3 * q3[i];
+    const perAs = 1 / bank.chainCapacityAs[i];
+    let error = Math.abs(errorAs) * perAs * perCharge;
+    if (!(error <= worst)) worst = error;
+    for (let at = i; at < filters; at += chains) {
+      endFilterA[at] = state.filterA[at] + f1[at] + END_2 * f2[at] + END_3 * f3[at];
+      const errorA = ERROR_1 * f1[at] + ERROR_2 * f2[at] + ERROR_3 * f3[at];
+      error = Math.abs(errorA) * perAs * (1 / FILTER_TOLERANCE);
+      if (!(error <= worst)) worst = error;
+    }
+  }
   updateEmf(kernel, stepS, endAs, endFilterA);
   if (!solveKept(kernel)) return Number.POSITIVE_INFINITY;
   copyInto(point.currentA, lastA);
   work.endBankA = point.bankA;
   work.endBankV = point.bankV;
-  work.busEnergyJ = (stepS / 9) * (2 * bus.bankA * bus.bankV + 3 * secondW + 4 * thirdW);
-
-  let worst = 0;
-  for (let i = 0; i < chains; i++) {
-    const errorAs = (stepS / 72) * (-5 * firstA[i] + 6 * secondA[i] + 8 * thirdA[i] - 9 * lastA[i]);
-    const error = Math.abs(errorAs) / bank.chainCapacityAs[i];
-    if (!(error <= worst)) worst = error;
-  }
-  return worst / Math.min(CHARGE_TOLERANCE, RATE_TOLERANCE * stepS);
+  return worst;
 }
 
-/** Filtered currents after `elapsedS` of constant chain currents: F = I + (F0 - I) exp(-t / tau). */
-function filterConstant(
-  timeConstantS: Float64Array,
-  elapsedS: number,
-  fromA: Float64Array,
+/** Rates f of charges and filtered currents at a stage, with the share `timeS` of what time alone changes. */
+function stageRates(
+  { bank }: Kernel,
+  { currentPerS }: Linearised,
   currentA: Float64Array,
-  intoA: Float64Array,
+  filterA: Float64Array,
+  timeS: number,
+  rateA: Float64Array,
+  filterRate: Float64Array,
 ): void {
+  const { timeConstantS } = bank;
   const chains = currentA.length;
-  for (let k = 0; k < timeConstantS.length; k++) {
-    const decay = Math.exp(-elapsedS / timeConstantS[k]);
-    for (let i = 0; i < chains; i++) {
-      intoA[k * chains + i] = currentA[i] + (fromA[k * chains + i] - currentA[i]) * decay;
-    }
+  for (let i = 0; i < chains; i++) rateA[i] = currentA[i] + timeS * currentPerS[i];
+  for (let k = 0, at = 0; k < timeConstantS.length; k++) {
+    const perS = 1 / timeConstantS[k];
+    for (let i = 0; i < chains; i++, at++) filterRate[at] = (rateA[i] - filterA[at]) * perS;
   }
 }
 
@@ -155,7 +198,9 @@ export function filterLinear(
 export function evaluateWithin(kernel: Kernel, work: StepWork, theta: number): boolean {
   const elapsedS = theta * work.stepS;
   passedWithin(work, theta, work.passedAs);
-  filterLinear(kernel.bank.timeConstantS, elapsedS, kernel.state.filterA, work.firstA, work.passedAs, work.filterA);
+  if (theta === 1) copyInto(work.endFilterA, work.filterA);
+  else
+    filterLinear(kernel.bank.timeConstantS, elapsedS, kernel.state.filterA, work.firstA, work.passedAs, work.filterA);
   updateEmf(kernel, elapsedS, work.passedAs, work.filterA);
   if (!solveKept(kernel)) return false;
   updateExtremes(kernel, kernel.point.currentA, work.filterA);
@@ -169,6 +214,18 @@ function passedWithin(work: StepWork, theta: number, intoAs: Float64Array): void
   const first = theta * (1 - theta) * (1 - theta) * stepS;
   const last = theta * theta * (theta - 1) * stepS;
   for (let i = 0; i < firstA.length; i++) intoAs[i] = rest * endAs[i] + first * firstA[i] + last * lastA[i];
+}
+
+/**
+ * Energy into the bank at its bus during the latest attempt, J, by Simpson's rule. Leaves the end as what was evaluated
+ * last.
+ */
+export function busEnergyJ(kernel: Kernel, work: StepWork): number {
+  const { bus, point } = kernel;
+  evaluateWithin(kernel, work, 0.5);
+  const middleW = point.bankA * point.bankV;
+  evaluateWithin(kernel, work, 1);
+  return (work.stepS / 6) * (bus.bankA * bus.bankV + 4 * middleW + point.bankA * point.bankV);
 }
 
 /** Makes the end of the latest attempt, which must be what was evaluated last, the present. */

