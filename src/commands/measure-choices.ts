@@ -3,7 +3,7 @@ import type { MeasureChoice } from '../study/acceptance.js';
 
 /** What an acceptance line may name; the study room may not know the registry, so it is handed this. */
 export function measureChoices(): readonly MeasureChoice[] {
-  return MEASURES.map(({ name, unit, statistics }) => ({
+  return MEASURES.filter(({ statistics }) => statistics.length > 0).map(({ name, unit, statistics }) => ({
     name,
     unit,
     statistics,

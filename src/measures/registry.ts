@@ -2,6 +2,7 @@ import type { CycleMeasure, Measure, Statistic, Window } from './measure.js';
 
 const SHARE: readonly Statistic[] = ['share_of_banks'];
 const LOSS: readonly Statistic[] = ['mean', 'median', 'percentile_95'];
+const NONE: readonly Statistic[] = [];
 const YIELD: readonly Statistic[] = ['mean', 'median', 'percentile_5'];
 
 function event<N extends string>(name: N, window: Window, title: string, definition: string) {
@@ -14,6 +15,19 @@ function loss<N extends string>(name: N, unit: string, window: Window, title: st
 
 function gain<N extends string>(name: N, unit: string, window: Window, title: string, definition: string) {
   return { name, unit, kind: 'amount', window, statistics: YIELD, title, definition } as const satisfies Measure;
+}
+
+/** A number that names a place: it has no mean and no percentile, only outcomes bank by bank. */
+function place<N extends string>(name: N, title: string, definition: string) {
+  return {
+    name,
+    unit: '',
+    kind: 'amount',
+    window: 'horizon',
+    statistics: NONE,
+    title,
+    definition,
+  } as const satisfies Measure;
 }
 
 const CHARGE_CUT =
@@ -75,24 +89,18 @@ export const MEASURES = [
     'first cycle with an early cutoff on charge',
     'Absent if there is none.',
   ),
-  loss(
+  place(
     'early_cutoff_on_charge_first_string',
-    '',
-    'horizon',
     'string of the first early cutoff on charge',
     'From 1; absent if there is none.',
   ),
-  loss(
+  place(
     'early_cutoff_on_charge_first_position',
-    '',
-    'horizon',
     'position of the first early cutoff on charge',
     'From the negative end, from 1; absent if there is none.',
   ),
-  loss(
+  place(
     'early_cutoff_on_charge_first_cell',
-    '',
-    'horizon',
     'cell of the first early cutoff on charge',
     'Extreme cell from the negative end, from 1; absent if there is none.',
   ),
@@ -143,24 +151,18 @@ export const MEASURES = [
     'first cycle with an early cutoff on discharge',
     'Absent if there is none.',
   ),
-  loss(
+  place(
     'early_cutoff_on_discharge_first_string',
-    '',
-    'horizon',
     'string of the first early cutoff on discharge',
     'From 1; absent if there is none.',
   ),
-  loss(
+  place(
     'early_cutoff_on_discharge_first_position',
-    '',
-    'horizon',
     'position of the first early cutoff on discharge',
     'From the negative end, from 1; absent if there is none.',
   ),
-  loss(
+  place(
     'early_cutoff_on_discharge_first_cell',
-    '',
-    'horizon',
     'cell of the first early cutoff on discharge',
     'Extreme cell from the negative end, from 1; absent if there is none.',
   ),

@@ -12,7 +12,7 @@ import { inPercent } from './estimate-unit.js';
  * Answers "how often, how much?": one measure of one candidate over its sampled banks.
  *
  * @param twin value of the candidate's twin, null if absent
- * @returns the twin's row, then a row per statistic of the measure
+ * @returns the twin's row, then a row per statistic of the measure; none of a measure without statistics
  */
 export function summariseMeasure(
   study: Study,
@@ -24,6 +24,7 @@ export function summariseMeasure(
   const { from, to } = windowCycles(measure.window, study.cycles);
   const about = { candidate: candidate.key, measure: measure.name, fromCycle: from, toCycle: to, unit: measure.unit };
   const { statistics } = measure;
+  if (statistics.length === 0) return [];
   const estimates =
     measure.kind === 'event'
       ? statistics.map((statistic) => ({ statistic, ...shareEstimate(values.present, study.confidenceFraction) }))
