@@ -122,9 +122,10 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
   program
     .command('schema')
     .description('print the JSON Schema of study files, for editors')
+    .option('--keys', 'all keys as Markdown tables for people, in place of the schema')
     .option('--out <file>', 'write it to a file')
     .addHelpText('after', '\nExample: motleybank schema --out study.schema.json')
-    .action(async (options: { out?: string }) => {
+    .action(async (options: { keys?: boolean; out?: string }) => {
       const { schemaCommand } = await import('./schema.js');
       status = schemaCommand(options, shellFor());
     });

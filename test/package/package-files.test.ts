@@ -10,6 +10,7 @@ const BESIDE = [
   'dist/study.schema.json',
   'package.json',
   'studies/demo-week.csv',
+  'studies/README.md',
   'studies/demo.yaml',
 ];
 
