@@ -11,7 +11,10 @@ const BESIDE = [
   'package.json',
   'studies/demo-week.csv',
   'studies/README.md',
+  'studies/clinic-48v.yaml',
   'studies/demo.yaml',
+  'studies/published-spreads.yaml',
+  'studies/workshop-mixed.yaml',
 ];
 
 const TOP_LEVEL = [
