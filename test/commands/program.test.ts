@@ -36,6 +36,13 @@ describe('the command line', () => {
     ['a missing study', ['run'], /missing required argument 'study'/],
     ['no threads', ['run', 'x.yaml', '--threads', '0'], /whole number from 1 to 1024/],
     ['a seed of nothing', ['run', 'x.yaml', '--seed', ''], /whole number or a text/],
+    [
+      'a seed below 0',
+      ['run', 'x.yaml', '--seed', '-1'],
+      /argument '-1' is invalid. It must be a whole number of at least 0/,
+    ],
+    ['a seed left out', ['run', 'x.yaml', '--seed', '--quiet'], /argument '--quiet' is invalid. It must be a whole/],
+    ['a mistyped seed', ['run', 'x.yaml', '--seed', '1e3'], /a text .* that does not look like another number/],
     ['half a bank', ['run', 'x.yaml', '--instances', '1.5'], /whole number from 1 to 10000000/],
     ['a trace without its bank', ['trace', 'x', '--candidate', 'a'], /--instance/],
     ['a step of nothing', ['trace', 'x', '--candidate', 'a', '--instance', '1', '--every', '0'], /number above 0/],
