@@ -38,12 +38,16 @@ const REASONS: Readonly<Record<string, string>> = {
   ENOSPC: 'no space is left',
 };
 
+/** Where a folder is to be made, two codes mean something else than for a file. */
+const FOLDER_REASONS: Readonly<Record<string, string>> = {
+  ENOENT: 'no folder can be made there',
+  EEXIST: 'a part of its path is a file',
+};
+
 function reasonOf(error: unknown): string {
-  const code = error instanceof Error && 'code' in error ? String(error.code) : '';
-  if (code === 'ENOENT' && error instanceof Error && 'syscall' in error && error.syscall === 'mkdir') {
-    return 'no folder can be made there';
-  }
-  return REASONS[code] ?? (error instanceof Error ? error.message : String(error));
+  const { code = '', syscall = '' }: Partial<NodeJS.ErrnoException> = error instanceof Error ? error : {};
+  const reason = syscall === 'mkdir' ? (FOLDER_REASONS[code] ?? REASONS[code]) : REASONS[code];
+  return reason ?? (error instanceof Error ? error.message : String(error));
 }
 
 function readText(path: string): TextOrProblem {

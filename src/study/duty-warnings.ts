@@ -3,12 +3,14 @@ import type { Candidate, Duty, Study } from './study.js';
 
 /** Longest stretch of load that counts as a short peak, s [own choice]. */
 const SHORT_PEAK_S = 300;
+/** Cycles at the end of the horizon that measures such as early cutoffs speak of. */
+const WINDOW_CYCLES = 30;
 /** Nominal voltage of a lithium iron phosphate cell, V. */
 const CELL_V = 3.2;
 
 /** @returns what the duty leaves untested, whatever the candidate */
 export function dutyWarnings({ duty, cycles }: Study): readonly string[] {
-  return [...peakWarnings(duty), ...partsThatNeverRun(duty, cycles)];
+  return [...peakWarnings(duty), ...partsThatNeverRun(duty, cycles), ...partsBeforeTheWindow(duty, cycles)];
 }
 
 function peakWarnings({ kind, parts }: Duty): readonly string[] {
@@ -29,6 +31,22 @@ function partsThatNeverRun({ parts }: Duty, cycles: number): readonly string[] {
   if (never.length === 0) return [];
   return [
     `${cycles} cycles end before these parts of the duty begin: ${never.join(', ')}; all parts take ${before} cycles`,
+  ];
+}
+
+/** Parts that run, but not in the window at the end of the horizon: the measures of that window do not know of them. */
+function partsBeforeTheWindow({ parts }: Duty, cycles: number): readonly string[] {
+  const turn = parts.flatMap((part) => new Array<string>(part.repeat * part.cycles.length).fill(part.name));
+  const at = (cycle: number): string => turn[(cycle - 1) % turn.length] ?? '';
+  const namesFrom = (first: number): readonly string[] => [
+    ...new Set(Array.from({ length: cycles - first + 1 }, (_, index) => at(first + index))),
+  ];
+  const seen = namesFrom(Math.max(1, cycles - WINDOW_CYCLES + 1));
+  const unseen = namesFrom(1).filter((name) => !seen.includes(name));
+  if (unseen.length === 0) return [];
+  return [
+    `measures of the last ${WINDOW_CYCLES} cycles see ${seen.join(', ')} only, not ${unseen.join(', ')}; to judge by the ` +
+      'hardest part, choose cycles so that they end with it',
   ];
 }
 

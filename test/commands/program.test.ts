@@ -35,7 +35,7 @@ describe('the command line', () => {
     ['an unknown option', ['check', 'x.yaml', '--thread'], /unknown option '--thread'/],
     ['a missing study', ['run'], /missing required argument 'study'/],
     ['no threads', ['run', 'x.yaml', '--threads', '0'], /whole number from 1 to 1024/],
-    ['a seed of nothing', ['run', 'x.yaml', '--seed', ''], /whole number or a text/],
+    ['a seed of nothing', ['run', 'x.yaml', '--seed', ''], /whole number of at least 0, or a text/],
     [
       'a seed below 0',
       ['run', 'x.yaml', '--seed', '-1'],

@@ -67,6 +67,22 @@ describe('the warning of parts that never run', () => {
   });
 });
 
+describe('the warning of parts before the window', () => {
+  it('names the parts that the last 30 cycles see, and those that they do not', () => {
+    // 40 cycles of summer, 5 dark: of 80 cycles the last 30 are 51 to 80, summer; of 90 they hold the dark 86 to 90.
+    const parts =
+      '[{name: summer, repeat: 40, phases: [{rest_h: 24}]}, {name: dark, repeat: 5, phases: [{rest_h: 24}]}]';
+    const at = (cycles: number) =>
+      warningsOf(studyWith({ duty: `duty: {parts: ${parts}}`, more: `cycles: ${cycles}\n` }));
+    expect(at(80)).toMatch(/^measures of the last 30 cycles see summer only, not dark; .* end with it$/m);
+    // The dark cycles 41 to 45 are the first five of the last thirty of 70, and 41 to 44 are lost to 75.
+    for (const cycles of [70, 74, 90]) expect(at(cycles)).not.toMatch(/measures of the last/);
+    expect(at(75)).toMatch(/measures of the last/);
+    // A part that never runs is told elsewhere.
+    expect(at(30)).not.toMatch(/measures of the last/);
+  });
+});
+
 describe('the warning of candidates of unlike voltage', () => {
   it('groups them by nominal voltage, 3.2 V a cell', () => {
     const short = '  short: {wiring: strings, modules: [[A1], [A2]]}\n';
