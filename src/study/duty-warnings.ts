@@ -36,10 +36,8 @@ function partsThatNeverRun({ parts }: Duty, cycles: number): readonly string[] {
 
 /** Parts that run, but not in the window at the end of the horizon: the measures of that window do not know of them. */
 function partsBeforeTheWindow({ parts }: Duty, cycles: number): readonly string[] {
-  const turn = parts.flatMap((part) => new Array<string>(part.repeat * part.cycles.length).fill(part.name));
-  const at = (cycle: number): string => turn[(cycle - 1) % turn.length] ?? '';
   const namesFrom = (first: number): readonly string[] => [
-    ...new Set(Array.from({ length: cycles - first + 1 }, (_, index) => at(first + index))),
+    ...new Set(Array.from({ length: cycles - first + 1 }, (_, index) => partOfCycle(parts, first + index))),
   ];
   const seen = namesFrom(Math.max(1, cycles - WINDOW_CYCLES + 1));
   const unseen = namesFrom(1).filter((name) => !seen.includes(name));
@@ -48,6 +46,14 @@ function partsBeforeTheWindow({ parts }: Duty, cycles: number): readonly string[
     `measures of the last ${WINDOW_CYCLES} cycles see ${seen.join(', ')} only, not ${unseen.join(', ')}; to judge by the ` +
       'hardest part, choose cycles so that they end with it',
   ];
+}
+
+/** Name of the part that a cycle (from 1) belongs to; after the last part the first begins again. */
+function partOfCycle(parts: Duty['parts'], cycle: number): string {
+  const ends: number[] = [];
+  for (const { repeat, cycles } of parts) ends.push((ends.at(-1) ?? 0) + repeat * cycles.length);
+  const place = (cycle - 1) % (ends.at(-1) ?? 1);
+  return parts[ends.findIndex((end) => place < end)]?.name ?? '';
 }
 
 /**
