@@ -1,10 +1,11 @@
 #!/usr/bin/env node
-import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { existsSync, readFileSync, writeFileSync } from 'node:fs';
 import { dirname } from 'node:path';
 import { performance } from 'node:perf_hooks';
 import process from 'node:process';
 import { runProgram } from './commands/program.js';
 import type { Shell } from './commands/shell.js';
+import { makeFolder } from './execution/make-folder.js';
 import type { TextOrProblem } from './study/read-text.js';
 
 // The only file that touches the process: it makes the real shell, runs one command line and sets the exit status.
@@ -33,12 +34,20 @@ const REASONS: Readonly<Record<string, string>> = {
   EACCES: 'no permission',
   EPERM: 'no permission',
   EEXIST: 'it is there already',
+  ENOTDIR: 'a part of its path is a file',
   ENOSPC: 'no space is left',
 };
 
+/** Where a folder is to be made, two codes mean something else than for a file. */
+const FOLDER_REASONS: Readonly<Record<string, string>> = {
+  ENOENT: 'no folder can be made there',
+  EEXIST: 'a part of its path is a file',
+};
+
 function reasonOf(error: unknown): string {
-  const code = error instanceof Error && 'code' in error ? String(error.code) : '';
-  return REASONS[code] ?? (error instanceof Error ? error.message : String(error));
+  const { code = '', syscall = '' }: Partial<NodeJS.ErrnoException> = error instanceof Error ? error : {};
+  const reason = syscall === 'mkdir' ? (FOLDER_REASONS[code] ?? REASONS[code]) : REASONS[code];
+  return reason ?? (error instanceof Error ? error.message : String(error));
 }
 
 function readText(path: string): TextOrProblem {
@@ -52,7 +61,7 @@ function readText(path: string): TextOrProblem {
 
 function writeText(path: string, text: string, flag: 'wx' | 'w'): string | null {
   try {
-    mkdirSync(dirname(path), { recursive: true });
+    makeFolder(dirname(path));
     writeFileSync(path, text, { flag });
     return null;
   } catch (error) {

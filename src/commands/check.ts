@@ -34,7 +34,10 @@ export function checkCommand(options: CheckOptions, shell: Shell, aids: CheckAid
 function twinWarnings(study: Study, aids: CheckAids): readonly string[] {
   const keys = aids.candidatesWhoseTwinLosesLoad(study);
   if (keys.length === 0) return [];
-  return [`the duty is too much even without spread: the twin loses load (${keys.join(', ')})`];
+  return [
+    `the duty is too much even without spread: the twin loses load (${keys.join(', ')}); lighten the load, charge more, ` +
+      'lower the low-voltage disconnect or take more capacity before comparing wirings',
+  ];
 }
 
 function renderCheck({ study, origins }: LoadedStudy, warnings: readonly string[], trial: Trial): string {

@@ -5,10 +5,6 @@ export const EXIT_STATUS = {
   ourFault: 1,
   /** Command line, study or input. */
   input: 2,
-  /** `--require` is not met. */
-  notMet: 3,
-  /** `--require` is not decided. */
-  notDecided: 4,
   /** The run ended with blocks missing. */
   blocksMissing: 5,
   interrupted: 130,

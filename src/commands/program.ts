@@ -1,4 +1,5 @@
 import { Command, CommanderError, InvalidArgumentError, Option } from 'commander';
+import { isSeed, SEED_RULE } from '../study/seed.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import type { Shell } from './shell.js';
 
@@ -7,8 +8,6 @@ Exit status:
   0  done
   1  a fault of this program, with its stack and how to report it
   2  command line, study or input
-  3  a requirement (--require) is not met
-  4  a requirement (--require) is not decided
   5  the run ended with blocks missing
   130, 143  interrupted (Ctrl-C, termination)
 `;
@@ -161,8 +160,9 @@ function wholeNumber(least: number, most: number): (text: string) => number {
 }
 
 function seedText(text: string): string {
-  if (text !== '' && text.length <= 200) return text;
-  throw new InvalidArgumentError('It must be a whole number or a text of at most 200 characters.');
+  // A text that begins with a hyphen is the next option: the seed was left out.
+  if (isSeed(text) && !text.startsWith('-')) return text;
+  throw new InvalidArgumentError(`It must be ${SEED_RULE}.`);
 }
 
 function positiveNumber(text: string): number {

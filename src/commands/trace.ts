@@ -1,6 +1,6 @@
-import { mkdir } from 'node:fs/promises';
 import { join, parse } from 'node:path';
 import { writeDurably } from '../execution/durable-file.js';
+import { makeFolder } from '../execution/make-folder.js';
 import { RUN_FILE } from '../execution/run-folder.js';
 import { errorCode } from '../execution/system-error.js';
 import { renderBusCsv, renderDrawnCsv, renderEventsCsv, renderModulesCsv } from '../output/trace-csv.js';
@@ -93,7 +93,7 @@ function defaultFolder({ source, candidate, instance }: TraceOptions): string {
 }
 
 async function writeTrace(folder: string, { bank, factors, samples, events }: Trace): Promise<void> {
-  await mkdir(folder, { recursive: true });
+  makeFolder(folder);
   await writeDurably(join(folder, 'drawn.csv'), await renderDrawnCsv(bank, factors));
   await writeDurably(join(folder, 'modules.csv'), await renderModulesCsv(samples));
   await writeDurably(join(folder, 'bus.csv'), await renderBusCsv(samples));

@@ -1,5 +1,5 @@
 import { createHash } from 'node:crypto';
-import { mkdir, readdir, readFile, rm } from 'node:fs/promises';
+import { readdir, readFile, rm } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 import { type BlockTask, TWIN_BLOCK } from '../outcomes/block.js';
 import type { ComputedBlock } from './compute-blocks.js';
@@ -7,6 +7,7 @@ import { UNFINISHED, writeDurably } from './durable-file.js';
 import { FolderRefused } from './folder-refused.js';
 import { Journal } from './journal.js';
 import { isLockFile, takeLock } from './lock.js';
+import { makeFolder } from './make-folder.js';
 import { errorCode } from './system-error.js';
 
 /** Names in a run folder, apart from the results. */
@@ -61,7 +62,7 @@ export class RunFolder {
 
   async write(name: string, text: string): Promise<void> {
     const path = join(this.path, name);
-    await mkdir(dirname(path), { recursive: true });
+    makeFolder(dirname(path));
     await writeDurably(path, text);
   }
 
@@ -96,12 +97,18 @@ export function sha256(text: string): string {
 
 /** Nothing is written into, or removed from, a folder that a run did not make. */
 async function refuseIfForeign(path: string): Promise<void> {
-  const names = await mkdir(path, { recursive: true })
-    .then(() => readdir(path))
-    .catch((error: unknown) => {
-      throw new FolderRefused(`${path} cannot be used: ${error instanceof Error ? error.message : String(error)}`);
-    });
+  const names = await namesIn(path);
   if (names.includes(RUN_FILE.journal) || names.includes(RUN_FILE.resolved)) return;
   const other = names.find((name) => !isLockFile(name) && !name.endsWith(UNFINISHED));
   if (other !== undefined) throw new FolderRefused(`${path} is not the folder of a run: it holds ${other}`);
+}
+
+/** Names in a folder, which is made where there is none. */
+async function namesIn(path: string): Promise<string[]> {
+  try {
+    makeFolder(path);
+    return await readdir(path);
+  } catch (error) {
+    throw new FolderRefused(`${path} cannot be used: ${error instanceof Error ? error.message : String(error)}`);
+  }
 }

@@ -6,6 +6,7 @@ import { renderComparisonTable } from './comparison-table.js';
 import { renderDecisionTable } from './decision-table.js';
 import { renderHardestCase } from './hardest-case-text.js';
 import { numberText } from './number-text.js';
+import { renderPackNotes } from './pack-notes.js';
 import { periodWords } from './period-words.js';
 import { asciiText, wrapText } from './plain-text.js';
 
@@ -19,7 +20,7 @@ import { asciiText, wrapText } from './plain-text.js';
 export function renderTable(answers: Answers, study: Study, folder: string): string {
   const blocks = [
     renderHead(answers, study),
-    renderDecisionTable(answers, study),
+    [...renderDecisionTable(answers, study), ...renderPackNotes(answers)],
     renderComparisonTable(answers, study),
     renderAcceptance(answers, study),
     renderHardestCase(answers, study, folder),

@@ -1,5 +1,6 @@
 import { MEASURES } from '../measures/registry.js';
 import { columnIndex, type OutcomeStore } from '../outcomes/outcome-store.js';
+import { packKind } from '../study/packs.js';
 import type { Candidate, Study } from '../study/study.js';
 import type { Answers, ByCycleRow, ComparisonRow, HardestCase, SummaryRow } from './answers.js';
 import { summariseCheckpoint } from './by-cycle.js';
@@ -36,6 +37,10 @@ export async function answerStudy(study: Study, store: OutcomeStore): Promise<An
     byCycle,
     comparisons,
     verdicts: judgeCandidates(study, summary),
+    packs: study.candidates.flatMap((candidate) => {
+      const kind = packKind(candidate, study.candidates);
+      return kind === null ? [] : [{ candidate: candidate.key, kind }];
+    }),
     hardestCase,
   };
 }

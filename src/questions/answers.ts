@@ -1,6 +1,7 @@
 import type { Statistic } from '../measures/measure.js';
 import type { Estimate } from '../statistics/estimate.js';
 import type { LineVerdict } from '../statistics/line-verdict.js';
+import type { PackKind } from '../study/packs.js';
 import type { AcceptanceLine } from '../study/study.js';
 
 /** What is said of a measure of one candidate; `twin` is the value of the bank with every value at its mean. */
@@ -72,6 +73,12 @@ export interface HardestCase {
   readonly loadLostCycles: number | null;
 }
 
+/** What a candidate of packs is beside the candidates of modules. */
+export interface PackAnswer {
+  readonly candidate: string;
+  readonly kind: PackKind;
+}
+
 /** Everything a run says about its study. Amounts are in the unit that the row names; percent, never fractions. */
 export interface Answers {
   /** Instances behind the answers: fewer than the study asks for if the run was interrupted. */
@@ -82,6 +89,8 @@ export interface Answers {
   readonly byCycle: readonly ByCycleRow[];
   readonly comparisons: readonly ComparisonRow[];
   readonly verdicts: readonly CandidateVerdict[];
+  /** Candidates of packs that are no like-for-like purchase, with what they are. */
+  readonly packs: readonly PackAnswer[];
   /** Null if no instance has a lost capacity or lost load. */
   readonly hardestCase: HardestCase | null;
 }

@@ -5,6 +5,11 @@ export interface NominalModule {
   readonly id: string;
   readonly stock: string;
   readonly cells: number;
+  readonly ratedAh: number;
+  /** Of a cell, the smallest. */
+  readonly capacityAh: number;
+  /** Charge fraction as received, of a cell, the smallest. */
+  readonly arrivalCharge: number;
   /** Of a cell, the largest. */
   readonly resistanceOhm: number;
   readonly overVoltageV: number;
@@ -33,6 +38,9 @@ function modulesOf(stock: Stock): readonly NominalModule[] {
       id,
       stock: stock.key,
       cells: stock.cellsInSeries,
+      ratedAh: stock.ratedAh,
+      capacityAh: quantities.capacityAh.nominal,
+      arrivalCharge: quantities.arrivalCharge.nominal,
       resistanceOhm: quantities.resistanceOhm.nominal,
       overVoltageV: quantities.overVoltageV.nominal,
       overVoltageReleaseV: quantities.overVoltageReleaseV.nominal,
@@ -46,6 +54,8 @@ function modulesOf(stock: Stock): readonly NominalModule[] {
     ...module,
     stock: stock.key,
     cells: module.capacityAh.length,
+    capacityAh: Math.min(...module.capacityAh),
+    arrivalCharge: Math.min(...module.arrivalCharge),
     resistanceOhm: Math.max(...module.resistanceOhm),
   }));
 }

@@ -11,12 +11,23 @@ const chargePower = amount(
   { description: 'Power the charger can give; without it only its own limit counts.' },
 ).optional();
 
+const peakPower = amount({ above: 0, atMost: 1e6 }, { description: 'Load over the last peak_s seconds of the phase.' });
+const peakSeconds = amount({ atLeast: 0.1, atMost: 86_400 }, { description: 'Length of the peak, within the phase.' });
+
 const PHASE_RULE = 'a phase such as {discharge_W: 1000, for_h: 3}, {rest_h: 1} or {charge: to-full, at_most_h: 8}';
 
 /** One phase; which one is told by its first key. */
 const PHASE = z.union(
   [
-    section({ discharge_W: power, for_h: hours }),
+    section({
+      discharge_W: power,
+      for_h: hours,
+      load_peak_W: peakPower.optional(),
+      peak_s: peakSeconds.optional(),
+    }).refine(
+      ({ load_peak_W, peak_s }) => (load_peak_W === undefined) === (peak_s === undefined),
+      'a phase with both load_peak_W and peak_s, or neither',
+    ),
     section({ discharge_A: amount({ above: 0, atMost: 100_000 }), for_h: hours }),
     section({ rest_h: hours }),
     section({ charge: z.literal('to-full', 'to-full'), at_most_h: hours, charge_W: chargePower }),
@@ -32,9 +43,10 @@ const PHASES = z
   .min(1, 'a list of phases')
   .max(10_000, 'a list of at most 10000 phases');
 
-/** CSV with the columns time_h, load_W, charge_W. */
+/** CSV with the columns time_h, load_W, charge_W and, together, load_peak_W and peak_s. */
 const PROFILE = filePath.meta({
-  description: 'CSV with the columns time_h (from 0, ascending), load_W and charge_W, constant until the next row.',
+  description:
+    'CSV with the columns time_h (from 0, ascending), load_W and charge_W, constant until the next row; optional: load_peak_W and peak_s, a peak of load at the end of the row.',
 });
 
 const PART = section({

@@ -7,11 +7,13 @@ const MOST_ROWS = 200_000;
 /** More faults of one table than anyone reads. */
 const MOST_PROBLEMS = 20;
 
-/** A column that a table must have. */
+/** A column that a table must have, or may have if it is optional. */
 export interface TableColumn {
   readonly name: string;
   readonly atLeast: number;
   readonly atMost: number;
+  /** The table may lack it, and where it has it a cell may be empty, which counts as 0. */
+  readonly optional?: boolean;
 }
 
 /** Rows of numbers with the line each stands in. */
@@ -33,14 +35,11 @@ interface Cell {
  *
  * Columns may stand in any order; line ends of any system, a byte order mark, blank lines at the end and quoted cells
  * are accepted. Anything else that is no number within the column's bounds is a problem with its line and column.
- *
- * @param notes why a column that the table may not have is refused, by its name
  */
 export function readNumericTable(
   text: string,
   file: string,
   wanted: readonly TableColumn[],
-  notes: Readonly<Record<string, string>> = {},
 ): { readonly table: NumericTable } | { readonly problems: Problem[] } {
   const problems: Problem[] = [];
   const fault = (line: number, column: number, path: string, message: string): void => {
@@ -52,18 +51,18 @@ export function readNumericTable(
   }
   const lines = text.replace(/^\uFEFF/, '').split(/\r\n|\n|\r/);
   while (lines.length > 0 && lines.at(-1)?.trim() === '') lines.pop();
-  const names = wanted.map(({ name }) => name).join(',');
+  const names = wanted.flatMap(({ name, optional }) => (optional ? [] : [name])).join(',');
   if (lines.length === 0 || !(lines[0] ?? '').includes(',')) {
     const got = lines.length === 0 ? 'an empty file' : showValue(lines[0]);
     fault(1, 1, '', `must be a table that begins with the line ${names}, got ${got}`);
     return { problems };
   }
   const header = cellsOf(lines[0] ?? '');
-  const order = orderOf(header, wanted, notes, fault);
+  const order = orderOf(header, wanted, fault);
   if (problems.length > 0) return { problems };
   if (lines.length < 2) fault(1, 1, '', 'must be a table with at least one row of numbers, got none');
   if (lines.length - 1 > MOST_ROWS) fault(1, 1, '', `must be at most ${MOST_ROWS} rows, got ${lines.length - 1}`);
-  const columns = new Map(wanted.map(({ name }) => [name, [] as number[]]));
+  const columns = new Map(order.map(({ name }) => [name, [] as number[]]));
   const rowLines: number[] = [];
   for (let index = 1; index < lines.length && problems.length < MOST_PROBLEMS; index++) {
     const cells = cellsOf(lines[index] ?? '');
@@ -75,7 +74,7 @@ export function readNumericTable(
     for (const [place, column] of order.entries()) {
       const cell = cells[place];
       if (cell === undefined) continue;
-      const value = numberOf(cell.text);
+      const value = column.optional && cell.text === '' ? 0 : numberOf(cell.text);
       if (value === undefined || !(value >= column.atLeast && value <= column.atMost)) {
         const rule = `a number from ${column.atLeast} to ${column.atMost}`;
         fault(line, cell.column, column.name, `must be ${rule}, got ${showValue(value ?? cell.text)}`);
@@ -90,7 +89,6 @@ export function readNumericTable(
 function orderOf(
   header: readonly Cell[],
   wanted: readonly TableColumn[],
-  notes: Readonly<Record<string, string>>,
   fault: (line: number, column: number, path: string, message: string) => void,
 ): readonly TableColumn[] {
   const names = wanted.map(({ name }) => name);
@@ -104,13 +102,12 @@ function orderOf(
     }
     const near = nearestName(text, names);
     if (near !== undefined) meant.add(near);
-    const note = Object.hasOwn(notes, text) ? notes[text] : undefined;
-    const hint = note ?? (near === undefined ? undefined : `did you mean ${near}?`);
+    const hint = near === undefined ? undefined : `did you mean ${near}?`;
     const rule = known === undefined ? `one of the columns ${names.join(', ')}` : 'a column that is given once';
     fault(1, column, text, `must be ${rule}, got ${showValue(text)}${hint === undefined ? '' : ` (${hint})`}`);
   }
-  for (const { name } of wanted) {
-    const missing = !meant.has(name) && !order.some((column) => column.name === name);
+  for (const { name, optional } of wanted) {
+    const missing = !optional && !meant.has(name) && !order.some((column) => column.name === name);
     if (missing) fault(1, 1, name, `must be a column, got ${showValue(header.map(({ text }) => text).join(','))}`);
   }
   return order;

@@ -3,15 +3,17 @@ import type { Problem } from './problem.js';
 import type { DutySegment } from './study.js';
 import { secondsFromHours } from './units.js';
 
-const NO_PEAKS = 'short peaks are not modelled: a row is constant until the next';
 const MOST_POWER_W = 1e6;
 const MOST_HOURS = 100_000;
+/** Shorter than any BMS reacts to, and not to be told from the rounding of times. */
+const SHORTEST_PEAK_S = 0.1;
 
 /** Times of rows are compared with cycle ends to a thousandth of a second: sums of decimal hours are not exact. */
 const TIME_TOLERANCE_S = 1e-3;
 
 /**
- * Reads a profile: powers that hold from their row's time to the next; the last row holds until the end of its cycle.
+ * Reads a profile: powers that hold from their row's time to the next; the last row holds until the end of its cycle. A
+ * row may end with a peak of load, `load_peak_W` for its last `peak_s` seconds.
  *
  * @returns the segments of each cycle, rows that straddle the end of a cycle split there; or every fault of the table
  */
@@ -20,16 +22,13 @@ export function readProfile(
   file: string,
   cycleH: number,
 ): { readonly cycles: readonly (readonly DutySegment[])[] } | { readonly problems: Problem[] } {
-  const read = readNumericTable(
-    text,
-    file,
-    [
-      { name: 'time_h', atLeast: 0, atMost: MOST_HOURS },
-      { name: 'load_W', atLeast: 0, atMost: MOST_POWER_W },
-      { name: 'charge_W', atLeast: 0, atMost: MOST_POWER_W },
-    ],
-    { load_peak_W: NO_PEAKS, peak_s: NO_PEAKS },
-  );
+  const read = readNumericTable(text, file, [
+    { name: 'time_h', atLeast: 0, atMost: MOST_HOURS },
+    { name: 'load_W', atLeast: 0, atMost: MOST_POWER_W },
+    { name: 'charge_W', atLeast: 0, atMost: MOST_POWER_W },
+    { name: 'load_peak_W', atLeast: 0, atMost: MOST_POWER_W, optional: true },
+    { name: 'peak_s', atLeast: 0, atMost: MOST_HOURS * 3600, optional: true },
+  ]);
   if ('problems' in read) return read;
   const { columns, lines } = read.table;
   const timeH = columns.get('time_h') ?? [];
@@ -47,35 +46,109 @@ export function readProfile(
     });
   }
   if (problems.length > 0) return { problems };
-  return {
-    cycles: cyclesOf(timeH, columns.get('load_W') ?? [], columns.get('charge_W') ?? [], secondsFromHours(cycleH)),
-  };
+  const cycleS = secondsFromHours(cycleH);
+  const rows = rowsOf(columns, timeH, cycleS);
+  problems.push(...peakProblems(columns, rows, file, lines));
+  return problems.length > 0 ? { problems } : { cycles: cyclesOf(rows, cycleS) };
 }
 
-function cyclesOf(
+/** A row with the time it holds. */
+interface ProfileRow {
+  readonly fromS: number;
+  readonly toS: number;
+  readonly loadW: number;
+  readonly chargeW: number;
+  /** Load over the last `peakS` seconds of the row. */
+  readonly peakW: number;
+  readonly peakS: number;
+}
+
+function rowsOf(
+  columns: ReadonlyMap<string, readonly number[]>,
   timeH: readonly number[],
-  loadW: readonly number[],
-  chargeW: readonly number[],
   cycleS: number,
-): DutySegment[][] {
+): readonly ProfileRow[] {
   const starts = timeH.map(secondsFromHours);
-  const lastStart = starts.at(-1) ?? 0;
-  const cycleCount = Math.floor((lastStart + TIME_TOLERANCE_S) / cycleS) + 1;
-  const cycles: DutySegment[][] = Array.from({ length: cycleCount }, () => []);
-  for (const [row, start] of starts.entries()) {
-    const end = starts[row + 1] ?? cycleCount * cycleS;
-    for (let from = start; end - from > TIME_TOLERANCE_S; ) {
-      const cycle = Math.floor((from + TIME_TOLERANCE_S) / cycleS);
-      const to = Math.min(end, (cycle + 1) * cycleS);
-      cycles[cycle]?.push({
-        durationS: to - from,
-        loadW: loadW[row] ?? 0,
-        loadA: 0,
-        chargeW: chargeW[row] ?? 0,
-        endsWhenCharged: false,
-      });
-      from = to;
+  const endS = cycleCountOf(starts.at(-1) ?? 0, cycleS) * cycleS;
+  const cellOf = (column: string, row: number): number => columns.get(column)?.[row] ?? 0;
+  return starts.map((fromS, row) => ({
+    fromS,
+    toS: starts[row + 1] ?? endS,
+    loadW: cellOf('load_W', row),
+    chargeW: cellOf('charge_W', row),
+    peakW: cellOf('load_peak_W', row),
+    peakS: cellOf('peak_s', row),
+  }));
+}
+
+function cycleCountOf(lastStartS: number, cycleS: number): number {
+  return Math.floor((lastStartS + TIME_TOLERANCE_S) / cycleS) + 1;
+}
+
+/** The two columns of peaks go together, and a peak is no trough and lies within its row. */
+function peakProblems(
+  columns: ReadonlyMap<string, readonly number[]>,
+  rows: readonly ProfileRow[],
+  file: string,
+  lines: readonly number[],
+): readonly Problem[] {
+  const has = (name: string): boolean => columns.has(name);
+  if (has('load_peak_W') !== has('peak_s')) {
+    const path = has('peak_s') ? 'load_peak_W' : 'peak_s';
+    return [
+      {
+        file,
+        line: 1,
+        column: 1,
+        path,
+        message: `must be a column beside ${has('peak_s') ? 'peak_s' : 'load_peak_W'}, got none`,
+      },
+    ];
+  }
+  return rows.flatMap(({ fromS, toS, loadW, peakW, peakS }, row) => {
+    const problem = (path: string, message: string): Problem => ({
+      file,
+      line: lines[row] ?? null,
+      column: 1,
+      path,
+      message,
+    });
+    if (peakS === 0) {
+      return peakW === 0 ? [] : [problem('peak_s', `must be above 0 beside load_peak_W ${peakW}, got ${peakS}`)];
     }
+    if (peakS < SHORTEST_PEAK_S) return [problem('peak_s', `must be 0 or at least ${SHORTEST_PEAK_S}, got ${peakS}`)];
+    const lengthS = Number((toS - fromS).toFixed(3));
+    return [
+      ...(peakS > toS - fromS + TIME_TOLERANCE_S
+        ? [problem('peak_s', `must be at most ${lengthS}, the length of its row, got ${peakS}`)]
+        : []),
+      ...(peakW < loadW ? [problem('load_peak_W', `must be at least load_W, ${loadW}, got ${peakW}`)] : []),
+    ];
+  });
+}
+
+function cyclesOf(rows: readonly ProfileRow[], cycleS: number): DutySegment[][] {
+  const cycles: DutySegment[][] = Array.from({ length: cycleCountOf(rows.at(-1)?.fromS ?? 0, cycleS) }, () => []);
+  for (const { fromS, toS, loadW, chargeW, peakW, peakS } of rows) {
+    const peakFromS = toS - peakS;
+    addStretch(cycles, cycleS, fromS, peakFromS, { loadW, chargeW });
+    addStretch(cycles, cycleS, Math.max(fromS, peakFromS), toS, { loadW: peakW, chargeW });
   }
   return cycles;
+}
+
+/** Adds a stretch of constant demand to the cycles that it lies in. */
+function addStretch(
+  cycles: readonly DutySegment[][],
+  cycleS: number,
+  fromS: number,
+  toS: number,
+  { loadW, chargeW }: Pick<DutySegment, 'loadW' | 'chargeW'>,
+): void {
+  for (let from = fromS; toS - from > TIME_TOLERANCE_S; ) {
+    const cycle = Math.floor((from + TIME_TOLERANCE_S) / cycleS);
+    const to = Math.min(toS, (cycle + 1) * cycleS);
+    cycles[cycle]?.push({ durationS: to - from, loadW, loadA: 0, chargeW, endsWhenCharged: false });
+    from = to;
+  }
 }

@@ -67,7 +67,10 @@ function writtenParts(input: DutyInput): readonly WrittenPart[] {
 }
 
 function cyclesOf(part: WrittenPart, cycleH: number, reading: Reading): DutyPart['cycles'] | undefined {
-  if (part.profile === undefined) return [(part.phases ?? []).map(segmentOf)];
+  if (part.profile === undefined) {
+    checkPeaks(part, reading);
+    return [(part.phases ?? []).flatMap(segmentsOf)];
+  }
   const text = reading.textOf([...part.path, 'profile'], part.profile);
   if (text === undefined) return undefined;
   const read = readProfile(text, part.profile, cycleH);
@@ -75,6 +78,27 @@ function cyclesOf(part: WrittenPart, cycleH: number, reading: Reading): DutyPart
   // Two parts may name one file; its faults are told once.
   if (!reading.problems.some(({ file }) => file === part.profile)) reading.problems.push(...read.problems);
   return undefined;
+}
+
+/** A peak is no trough and lies within its phase. */
+function checkPeaks({ path, phases }: WrittenPart, reading: Reading): void {
+  for (const [index, phase] of (phases ?? []).entries()) {
+    if (!('discharge_W' in phase) || phase.load_peak_W === undefined || phase.peak_s === undefined) continue;
+    const at = [...path, 'phases', index];
+    const { discharge_W, load_peak_W, peak_s, for_h } = phase;
+    if (load_peak_W < discharge_W) reading.fault([...at, 'load_peak_W'], `at least discharge_W, ${discharge_W}`);
+    const lengthS = secondsFromHours(for_h);
+    if (peak_s > lengthS) reading.fault([...at, 'peak_s'], `at most ${lengthS}, the length of its phase`);
+  }
+}
+
+/** The phase, and after it its peak. */
+function segmentsOf(phase: PhaseInput): DutySegment[] {
+  const whole = segmentOf(phase);
+  if (!('discharge_W' in phase) || phase.load_peak_W === undefined || phase.peak_s === undefined) return [whole];
+  const peak = { ...whole, durationS: phase.peak_s, loadW: phase.load_peak_W };
+  const beforeS = whole.durationS - phase.peak_s;
+  return beforeS > 0 ? [{ ...whole, durationS: beforeS }, peak] : [peak];
 }
 
 function segmentOf(phase: PhaseInput): DutySegment {

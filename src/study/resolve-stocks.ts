@@ -6,6 +6,7 @@ import type { OriginSource } from './origin.js';
 import type { Reading } from './reading.js';
 import { resolveExplicit } from './resolve-explicit.js';
 import { resolvePopulation } from './resolve-population.js';
+import { shareCellDraws } from './shared-cells.js';
 import type { StockInput } from './stock.js';
 import { isPopulation, type STOCKS } from './stocks.js';
 import type { Stock } from './study.js';
@@ -24,7 +25,7 @@ export function resolveStocks(input: StocksInput, ocv: OcvIndex, reading: Readin
       if (stock !== undefined) stocks.push(stock);
     } else stocks.push(resolveExplicit(key, written, ocv, reading));
   }
-  return stocks;
+  return stocks.map((stock) => shareCellDraws(stock, input[stock.key], stocks, reading));
 }
 
 /** A module's name is its identity: it draws its values by it, so it stands once in a study. */

@@ -2,6 +2,7 @@ import { resolveAcceptance } from './acceptance.js';
 import { didYouMean } from './nearest-name.js';
 import { resolveOcv } from './ocv.js';
 import type { Origin } from './origin.js';
+import { titledPacks } from './packs.js';
 import type { ReadStudyOptions } from './read-options.js';
 import type { Reading } from './reading.js';
 import { checkReleaseGaps } from './release-gap.js';
@@ -21,7 +22,7 @@ export function resolveStudy(input: StudyInput, options: ReadStudyOptions, readi
   const ocv = resolveOcv(input.ocv, reading);
   const stocks = resolveStocks(input.stock ?? {}, ocv, reading);
   const duty = input.duty && resolveDuty(input.duty, reading);
-  const candidates = resolveCandidates(input.candidates ?? {}, input.bank, stocks, reading);
+  const candidates = titledPacks(resolveCandidates(input.candidates ?? {}, input.bank, stocks, reading), reading);
   const reference = resolveReference(input, candidates, reading);
   const acceptance = resolveAcceptance(input.acceptance ?? [], options.measures, reading);
   if (duty === undefined) return undefined;

@@ -46,7 +46,15 @@ function stockContent(stock: Stock, used: ReadonlySet<string>, study: Study): ob
   if (stock.kind === 'population') {
     const moduleIds = stock.moduleIds.filter((id) => used.has(id));
     if (moduleIds.length === 0) return undefined;
-    return { ...stock, moduleIds, cell: { ...stock.cell, ocv: study.ocvTables[stock.cell.ocv] } };
+    const { cellsDrawnAs, ...rest } = stock;
+    const drawnAs = Object.entries(cellsDrawnAs ?? {}).filter(([id]) => used.has(id));
+    return {
+      ...rest,
+      moduleIds,
+      cell: { ...stock.cell, ocv: study.ocvTables[stock.cell.ocv] },
+      // Left out where there are none, so that keys of studies without them stay as they were.
+      ...(drawnAs.length > 0 && { cellsDrawnAs: Object.fromEntries(drawnAs) }),
+    };
   }
   const modules = stock.modules.filter(({ id }) => used.has(id));
   if (modules.length === 0) return undefined;

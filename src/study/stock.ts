@@ -4,11 +4,13 @@ import { POPULATION_BMS } from './bms.js';
 import { commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
 import { CORRELATIONS } from './correlation.js';
 import { GRADES } from './grade-name.js';
-import { moduleId } from './names.js';
-import { section } from './section.js';
+import { MODULE_ID, MODULE_ID_RULE, moduleId } from './names.js';
+import { named, section } from './section.js';
 import { cellSpread, moduleSpread, pointsSpread } from './spread.js';
 
 const MODULES_RULE = 'a list of module names such as [A1, A2], or a mapping of modules written down';
+
+const DRAWN_AS_RULE = 'a list of 1 to 4 modules from the negative end';
 
 /** A population of one make and age, from which its modules are drawn. */
 export const POPULATION = section({
@@ -29,6 +31,16 @@ export const POPULATION = section({
   path_resistance_mOhm: moduleSpread(POSSIBLE.seriesMOhm).optional(),
   joint_resistance_mOhm: moduleSpread(POSSIBLE.seriesMOhm).optional(),
   correlation: CORRELATIONS.optional(),
+  cells_drawn_as: named(
+    MODULE_ID,
+    MODULE_ID_RULE,
+    z.array(moduleId, DRAWN_AS_RULE).min(1, DRAWN_AS_RULE).max(4, DRAWN_AS_RULE),
+  )
+    .meta({
+      description:
+        'For packs compared with smaller modules, by pack: modules whose cell draws its cells take, in order. Lot and module draws stay its own. Without it the cells draw their own.',
+    })
+    .optional(),
   bms: POPULATION_BMS.optional(),
 });
 

@@ -5,6 +5,7 @@ import { BANK, CANDIDATES } from './candidate.js';
 import { DUTY } from './duty.js';
 import { OCV } from './ocv.js';
 import { section } from './section.js';
+import { SEED } from './seed.js';
 import { STOCKS } from './stocks.js';
 
 /** Version of the study format that this program reads. */
@@ -20,20 +21,13 @@ export const DEFAULT_TOP = {
   drift_limit_percent: 5,
 } as const;
 
-const SEED_RULE = 'a whole number of at least 0, or a text of at most 200 characters';
 const BLOCK_RULE = 'a power of 2 from 1 to 4096';
 
 /** A study file: the schema from which types, messages and the published JSON Schema are made. */
 export const STUDY_FILE = section({
   motleybank: z.literal(FORMAT, `${FORMAT}`).meta({ description: 'Version of the study format.' }),
   title: z.string('a text').max(200, 'a text of at most 200 characters').optional(),
-  seed: z
-    .union(
-      [z.number(SEED_RULE).int(SEED_RULE).gte(0, SEED_RULE), z.string(SEED_RULE).min(1, SEED_RULE).max(200, SEED_RULE)],
-      SEED_RULE,
-    )
-    .meta({ description: 'Whole number or text; 0 is a seed.', default: DEFAULT_TOP.seed })
-    .optional(),
+  seed: SEED.meta({ description: 'Whole number or text; 0 is a seed.', default: DEFAULT_TOP.seed }).optional(),
   instances: count(
     { atLeast: 1, atMost: 10_000_000 },
     { description: 'Sampled banks of every candidate.', default: DEFAULT_TOP.instances },

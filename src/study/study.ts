@@ -81,6 +81,16 @@ export interface PopulationStock {
   readonly correlations: readonly Correlation[];
   readonly cell: CellModel;
   readonly bms: BmsSettings;
+  /** By module: whose draws its cells take, one per cell from the negative end. Left out where all cells draw their own. */
+  readonly cellsDrawnAs?: Readonly<Record<string, readonly DrawnCell[]>>;
+}
+
+/** Address of the draws of a cell. */
+export interface DrawnCell {
+  readonly stock: string;
+  readonly module: string;
+  /** From 1, counted from the negative end. */
+  readonly cell: number;
 }
 
 /** Modules written down one by one: nothing is drawn. */

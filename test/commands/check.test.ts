@@ -45,8 +45,9 @@ describe('check', () => {
   it('warns of a duty whose twin loses load', () => {
     const { out } = check({}, { ...AIDS, candidatesWhoseTwinLosesLoad: () => ['native'] }).printed;
     expect(out.replaceAll('\n', ' ')).toMatch(
-      /warning: the duty is too much even without spread: the twin loses load \(native\)/,
+      /warning: the duty is too much even without spread: the twin loses load \(native\); lighten the load, charge more/,
     );
+    expect(check().printed.out).not.toMatch(/even without spread/);
   });
 
   it('prints one JSON document with --json', () => {

@@ -33,6 +33,27 @@ describe('dutyCourse', () => {
     ]);
   });
 
+  it('goes on from the start after a year of parts', () => {
+    // By hand: 26 weeks of summer are cycles 1 to 182, 8 dark weeks 183 to 238; 239 is the first of the next summer.
+    const week = (load: number) => Array.from({ length: 7 }, (_, day) => [segmentOf(24, { loadW: load + day })]);
+    const parts = duty(
+      { name: 'summer', repeat: 26, cycles: week(100) },
+      { name: 'dark', repeat: 8, cycles: week(500) },
+    );
+    const course = dutyCourse(parts, 365);
+    const at = (cycle: number) => [course[cycle - 1]?.part, course[cycle - 1]?.segments[0]?.loadW];
+    expect([1, 182, 183, 238, 239, 365].map(at)).toEqual([
+      ['summer', 100],
+      ['summer', 106],
+      ['dark', 500],
+      ['dark', 506],
+      ['summer', 100],
+      // 365 = 238 + 127, and 127 = 18 x 7 + 1.
+      ['summer', 100],
+    ]);
+    expect(course.filter(({ part }) => part === 'dark')).toHaveLength(56);
+  });
+
   it('stops within a part', () => {
     expect(dutyCourse(year, 1)).toHaveLength(1);
   });

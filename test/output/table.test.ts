@@ -65,6 +65,17 @@ describe('decision table', () => {
     expect(await table(hundred, hundredValues)).toBe(frozen);
   });
 
+  it('tells below it which packs are no like-for-like purchase, and nothing where there are none', async () => {
+    const candidates = [
+      madeUpCandidate('strings'),
+      madeUpCandidate('packs', { wiring: 'native', strings: [['P1'], ['P2']] }),
+    ];
+    const bought = await table(madeUpStudy({ candidates }), [{}, {}]);
+    expect(bought).toMatch(/^packs: different purchase \(packs bought as such, of a lot of their own\)$/m);
+    expect(bought).not.toMatch(/re-housed/);
+    expect(await table(madeUpStudy(), [{}, {}])).not.toMatch(/re-housed|different purchase/);
+  });
+
   it('shows early cutoffs on discharge only where there are some', async () => {
     expect(await table(hundred, hundredValues)).not.toContain('discharge');
     const [strings, ...others] = hundredValues;

@@ -57,6 +57,29 @@ describe('the exit status of the built program', () => {
     expect(err).not.toMatch(/\n +at /);
   });
 
+  it.each([
+    ['run', ['run', 'good.yaml', '--out', 'good.yaml/x/y'], /^good\.yaml\/x\/y cannot be used: ENOTDIR.*\n$/],
+    [
+      'new',
+      ['new', 'good.yaml/x/a.yaml'],
+      /^good\.yaml\/x\/a\.yaml cannot be written: a part of its path is a file\n$/,
+    ],
+    ['schema', ['schema', '--out', 'good.yaml/a'], /^good\.yaml\/a cannot be written: a part of its path is a file\n$/],
+  ])('is 2 with one message for a folder below a file, %s', async (_, args, message) => {
+    const { status, out, err } = await command(...args);
+    expect([status, out]).toEqual([2, '']);
+    expect(err).toMatch(message);
+  });
+
+  it.runIf(process.platform === 'linux').each([
+    ['run', ['run', 'good.yaml', '--out', '/proc/x'], /^\/proc\/x cannot be used: ENOENT.*\n$/],
+    ['new', ['new', '/proc/x/a.yaml'], /^\/proc\/x\/a\.yaml cannot be written: no folder can be made there\n$/],
+  ])('is 2 with one message where the system makes no folder, %s', async (_, args, message) => {
+    const { status, out, err } = await command(...args);
+    expect([status, out]).toEqual([2, '']);
+    expect(err).toMatch(message);
+  });
+
   it('is 0 when the reader of a pipe goes away early', async () => {
     const child = spawn(process.execPath, [CLI, 'schema'], { stdio: ['ignore', 'pipe', 'pipe'] });
     child.stdout.destroy();

@@ -135,7 +135,7 @@ describe('warnings', () => {
     expect(at(29.3)).toMatch(
       /absorption, 29.3 V, lies above the sum of the over-voltage thresholds of a string, 29.2 V/,
     );
-    expect(at(29.2)).not.toMatch(/absorption/);
+    expect(at(29.2)).not.toMatch(/above the sum/);
   });
 
   it('tell that a profile has no short peaks', () => {
@@ -143,7 +143,6 @@ describe('warnings', () => {
     expect(warningsOf(studyWith({ duty: 'duty: {profile: p.csv}' }), files).join()).toMatch(
       /short peaks are not tested/,
     );
-    expect(warningsOf(studyWith({})).join()).not.toMatch(/peaks/);
   });
 });
 
