@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { DEFAULT_AMBIENT_DEGC } from './ambient.js';
 import { amount, count } from './amount.js';
 import { filePath } from './file-path.js';
 import { exactlyOneOf, section } from './section.js';
@@ -11,16 +12,26 @@ const chargePower = amount(
   { description: 'Power the charger can give; without it only its own limit counts.' },
 ).optional();
 
+const ambient = amount(
+  { atLeast: -60, atMost: 80 },
+  { description: 'Temperature around the bank.', default: DEFAULT_AMBIENT_DEGC },
+).optional();
+
 const PHASE_RULE = 'a phase such as {discharge_W: 1000, for_h: 3}, {rest_h: 1} or {charge: to-full, at_most_h: 8}';
 
 /** One phase; which one is told by its first key. */
 const PHASE = z.union(
   [
-    section({ discharge_W: power, for_h: hours }),
-    section({ discharge_A: amount({ above: 0, atMost: 100_000 }), for_h: hours }),
-    section({ rest_h: hours }),
-    section({ charge: z.literal('to-full', 'to-full'), at_most_h: hours, charge_W: chargePower }),
-    section({ charge_for_h: hours, charge_W: chargePower }),
+    section({ discharge_W: power, for_h: hours, ambient_degC: ambient }),
+    section({ discharge_A: amount({ above: 0, atMost: 100_000 }), for_h: hours, ambient_degC: ambient }),
+    section({ rest_h: hours, ambient_degC: ambient }),
+    section({
+      charge: z.literal('to-full', 'to-full'),
+      at_most_h: hours,
+      charge_W: chargePower,
+      ambient_degC: ambient,
+    }),
+    section({ charge_for_h: hours, charge_W: chargePower, ambient_degC: ambient }),
   ],
   PHASE_RULE,
 );
@@ -32,9 +43,10 @@ const PHASES = z
   .min(1, 'a list of phases')
   .max(10_000, 'a list of at most 10000 phases');
 
-/** CSV with the columns time_h, load_W, charge_W. */
+/** CSV with the columns time_h, load_W, charge_W and, if wanted, ambient_degC. */
 const PROFILE = filePath.meta({
-  description: 'CSV with the columns time_h (from 0, ascending), load_W and charge_W, constant until the next row.',
+  description:
+    'CSV with the columns time_h (from 0, ascending), load_W, charge_W and, if wanted, ambient_degC, constant until the next row.',
 });
 
 const PART = section({
@@ -45,6 +57,7 @@ const PART = section({
   ).optional(),
   profile: PROFILE.optional(),
   phases: PHASES.optional(),
+  ambient_degC: ambient,
 }).refine(...exactlyOneOf('profile', 'phases'));
 
 const factor = amount({ above: 0, atMost: 100 });
@@ -58,6 +71,7 @@ export const DUTY = section({
     { atLeast: 0.1, atMost: 8784 },
     { description: 'Length of a cycle of a profile.', default: 24 },
   ).optional(),
+  ambient_degC: ambient,
   load_factor: bankSpread(factor).meta({ description: 'Factor on every load of a bank.', default: 1 }).optional(),
   charge_factor: bankSpread(factor)
     .meta({ description: 'Factor on the charging power of a bank.', default: 1 })

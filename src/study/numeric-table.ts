@@ -12,6 +12,8 @@ export interface TableColumn {
   readonly name: string;
   readonly atLeast: number;
   readonly atMost: number;
+  /** The table may do without it; then `columns` has none of its name. */
+  readonly isOptional?: boolean;
 }
 
 /** Rows of numbers with the line each stands in. */
@@ -52,7 +54,7 @@ export function readNumericTable(
   }
   const lines = text.replace(/^\uFEFF/, '').split(/\r\n|\n|\r/);
   while (lines.length > 0 && lines.at(-1)?.trim() === '') lines.pop();
-  const names = wanted.map(({ name }) => name).join(',');
+  const names = wanted.flatMap(({ name, isOptional }) => (isOptional ? [] : [name])).join(',');
   if (lines.length === 0 || !(lines[0] ?? '').includes(',')) {
     const got = lines.length === 0 ? 'an empty file' : showValue(lines[0]);
     fault(1, 1, '', `must be a table that begins with the line ${names}, got ${got}`);
@@ -63,7 +65,7 @@ export function readNumericTable(
   if (problems.length > 0) return { problems };
   if (lines.length < 2) fault(1, 1, '', 'must be a table with at least one row of numbers, got none');
   if (lines.length - 1 > MOST_ROWS) fault(1, 1, '', `must be at most ${MOST_ROWS} rows, got ${lines.length - 1}`);
-  const columns = new Map(wanted.map(({ name }) => [name, [] as number[]]));
+  const columns = new Map(order.map(({ name }) => [name, [] as number[]]));
   const rowLines: number[] = [];
   for (let index = 1; index < lines.length && problems.length < MOST_PROBLEMS; index++) {
     const cells = cellsOf(lines[index] ?? '');
@@ -109,8 +111,8 @@ function orderOf(
     const rule = known === undefined ? `one of the columns ${names.join(', ')}` : 'a column that is given once';
     fault(1, column, text, `must be ${rule}, got ${showValue(text)}${hint === undefined ? '' : ` (${hint})`}`);
   }
-  for (const { name } of wanted) {
-    const missing = !meant.has(name) && !order.some((column) => column.name === name);
+  for (const { name, isOptional } of wanted) {
+    const missing = !isOptional && !meant.has(name) && !order.some((column) => column.name === name);
     if (missing) fault(1, 1, name, `must be a column, got ${showValue(header.map(({ text }) => text).join(','))}`);
   }
   return order;

@@ -1,3 +1,4 @@
+import { ambientOf } from './ambient.js';
 import { readNumericTable } from './numeric-table.js';
 import type { Problem } from './problem.js';
 import type { DutySegment } from './study.js';
@@ -13,12 +14,14 @@ const TIME_TOLERANCE_S = 1e-3;
 /**
  * Reads a profile: powers that hold from their row's time to the next; the last row holds until the end of its cycle.
  *
+ * @param ambientDegC where the table has no column of that name
  * @returns the segments of each cycle, rows that straddle the end of a cycle split there; or every fault of the table
  */
 export function readProfile(
   text: string,
   file: string,
   cycleH: number,
+  ambientDegC?: number,
 ): { readonly cycles: readonly (readonly DutySegment[])[] } | { readonly problems: Problem[] } {
   const read = readNumericTable(
     text,
@@ -27,6 +30,7 @@ export function readProfile(
       { name: 'time_h', atLeast: 0, atMost: MOST_HOURS },
       { name: 'load_W', atLeast: 0, atMost: MOST_POWER_W },
       { name: 'charge_W', atLeast: 0, atMost: MOST_POWER_W },
+      { name: 'ambient_degC', atLeast: -60, atMost: 80, isOptional: true },
     ],
     { load_peak_W: NO_PEAKS, peak_s: NO_PEAKS },
   );
@@ -48,7 +52,13 @@ export function readProfile(
   }
   if (problems.length > 0) return { problems };
   return {
-    cycles: cyclesOf(timeH, columns.get('load_W') ?? [], columns.get('charge_W') ?? [], secondsFromHours(cycleH)),
+    cycles: cyclesOf(
+      timeH,
+      columns.get('load_W') ?? [],
+      columns.get('charge_W') ?? [],
+      secondsFromHours(cycleH),
+      (row) => columns.get('ambient_degC')?.[row] ?? ambientDegC,
+    ),
   };
 }
 
@@ -57,6 +67,7 @@ function cyclesOf(
   loadW: readonly number[],
   chargeW: readonly number[],
   cycleS: number,
+  ambientDegCOf: (row: number) => number | undefined,
 ): DutySegment[][] {
   const starts = timeH.map(secondsFromHours);
   const lastStart = starts.at(-1) ?? 0;
@@ -73,6 +84,7 @@ function cyclesOf(
         loadA: 0,
         chargeW: chargeW[row] ?? 0,
         endsWhenCharged: false,
+        ...ambientOf(ambientDegCOf(row)),
       });
       from = to;
     }

@@ -1,3 +1,4 @@
+import { ambientOf } from './ambient.js';
 import { DEFAULT_CYCLE_H, type DutyInput, type PhaseInput } from './duty.js';
 import { Layers } from './layers.js';
 import { readProfile } from './profile.js';
@@ -12,6 +13,8 @@ interface WrittenPart {
   readonly repeat: number;
   readonly profile?: string | undefined;
   readonly phases?: readonly PhaseInput[] | undefined;
+  /** Where a row or phase does not say otherwise; absent = 25. */
+  readonly ambientDegC?: number | undefined;
   readonly path: StudyPath;
 }
 
@@ -54,31 +57,39 @@ export function resolveDuty(input: DutyInput, reading: Reading): Duty | undefine
 }
 
 function writtenParts(input: DutyInput): readonly WrittenPart[] {
+  const ambientDegC = input.ambient_degC;
   if (input.parts === undefined) {
-    return [{ name: 'duty', repeat: 1, profile: input.profile, phases: input.phases, path: ['duty'] }];
+    return [{ name: 'duty', repeat: 1, profile: input.profile, phases: input.phases, ambientDegC, path: ['duty'] }];
   }
-  return input.parts.map(({ name, repeat, profile, phases }, index) => ({
+  return input.parts.map(({ name, repeat, profile, phases, ambient_degC }, index) => ({
     name,
     repeat: repeat ?? 1,
     profile,
     phases,
+    ambientDegC: ambient_degC ?? ambientDegC,
     path: ['duty', 'parts', index],
   }));
 }
 
 function cyclesOf(part: WrittenPart, cycleH: number, reading: Reading): DutyPart['cycles'] | undefined {
-  if (part.profile === undefined) return [(part.phases ?? []).map(segmentOf)];
+  if (part.profile === undefined) return [(part.phases ?? []).map((phase) => segmentOf(phase, part.ambientDegC))];
   const text = reading.textOf([...part.path, 'profile'], part.profile);
   if (text === undefined) return undefined;
-  const read = readProfile(text, part.profile, cycleH);
+  const read = readProfile(text, part.profile, cycleH, part.ambientDegC);
   if ('cycles' in read) return read.cycles;
   // Two parts may name one file; its faults are told once.
   if (!reading.problems.some(({ file }) => file === part.profile)) reading.problems.push(...read.problems);
   return undefined;
 }
 
-function segmentOf(phase: PhaseInput): DutySegment {
-  const idle = { loadW: 0, loadA: 0, chargeW: 0, endsWhenCharged: false };
+function segmentOf(phase: PhaseInput, ambientDegC: number | undefined): DutySegment {
+  const idle = {
+    loadW: 0,
+    loadA: 0,
+    chargeW: 0,
+    endsWhenCharged: false,
+    ...ambientOf(phase.ambient_degC ?? ambientDegC),
+  };
   if ('discharge_W' in phase) return { ...idle, durationS: secondsFromHours(phase.for_h), loadW: phase.discharge_W };
   if ('discharge_A' in phase) return { ...idle, durationS: secondsFromHours(phase.for_h), loadA: phase.discharge_A };
   if ('rest_h' in phase) return { ...idle, durationS: secondsFromHours(phase.rest_h) };
