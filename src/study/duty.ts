@@ -14,7 +14,10 @@ const chargePower = amount(
 
 const ambient = amount(
   { atLeast: -60, atMost: 80 },
-  { description: 'Temperature around the bank.', default: DEFAULT_AMBIENT_DEGC },
+  {
+    description: 'Temperature around the bank, where nothing nearer to it says otherwise.',
+    default: DEFAULT_AMBIENT_DEGC,
+  },
 ).optional();
 
 const PHASE_RULE = 'a phase such as {discharge_W: 1000, for_h: 3}, {rest_h: 1} or {charge: to-full, at_most_h: 8}';
