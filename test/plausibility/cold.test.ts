@@ -45,6 +45,15 @@ describe('a bank at a temperature', () => {
     expect(start(-10)).toEqual(start(25));
   });
 
+  it('has it at the end too, though its BMS refuse to charge it where it stands', () => {
+    const run = runOf(study(-10, '', '{charge_refusal: {below_degC: 0}}', 'rest_h: 1'));
+    const [start, end] = [run.values('usable_capacity_start'), run.values('usable_capacity')];
+    // Four cold days of standby and leakage, then charged to full for the test.
+    start.forEach((ampereHours, bank) => {
+      expect(end[bank]).toBeCloseTo(ampereHours, 0);
+    });
+  });
+
   it('is the same to the last digit with 25 degC written out', () => {
     const plain = study(25).replace('ambient_degC: 25, ', '');
     const written = study(25, ', slot_temperature_offset_K: [0, 0]');

@@ -4,6 +4,8 @@ import type { Journey, JourneyListeners } from '../../src/simulation/advance.js'
 import { createClimate } from '../../src/simulation/climate.js';
 import { runSegment } from '../../src/simulation/run-cycle.js';
 import type { DutySegment } from '../../src/study/study.js';
+import { bankOf } from '../reference/bank-of.js';
+import { noLeads } from '../reference/bare-module.js';
 import type { ReferenceBank } from '../reference/reference-bank.js';
 import { journeyOf } from './journey-of.js';
 import { CHARGE, DISCHARGE, oneCell, seconds } from './one-cell.js';
@@ -37,6 +39,26 @@ describe('a bank in the cold', () => {
     expect(busV(25)).toBeCloseTo(3.5 - 18 * 0.01, 9);
     expect(busV(-10)).toBeCloseTo(3 + 0.38 / 0.88 - 18 * (0.009 + 0.0029245), 6);
     expect(busV(40)).toBeCloseTo(3.5 - 18 * (0.009 + 0.00067945), 6);
+  });
+
+  it('finds every cell on its own curve after a change', () => {
+    // By hand: as above, two in series, the second 35 K colder; at 60 degC both still reach down to 0, at 25 degC the second
+    // has its floor at 0.12.
+    const [module] = oneCell([]).modules[0] ?? [];
+    if (module === undefined) throw new RangeError('no module');
+    const cycles = [[at(60, seconds(60)), at(25, seconds(0, DISCHARGE))]];
+    const pair = bankOf('pair', {
+      ...oneCell(cycles),
+      modules: [
+        [
+          { ...module, id: 'warm' },
+          { ...module, id: 'cold' },
+        ],
+      ],
+      leads: noLeads(1),
+      slotOffsetK: [[0, -35]],
+    });
+    expect(runInClimate(pair).kernel.bus.bankV).toBeCloseTo(3.5 + 3 + 0.38 / 0.88 - 18 * 0.02, 9);
   });
 
   it('leaks 1.67 times as fast 10 K above 25 degC', () => {

@@ -90,6 +90,18 @@ describe('the simulation key', () => {
     expect(keyOf(studyOf(plain.replace('for_h: 4', 'for_h: 4, ambient_degC: 25')))).toBe(keyOf(studyOf(plain)));
   });
 
+  it('does so of modules written down', () => {
+    const text = (more: string) =>
+      studyWith({}).replace(
+        '{modules: [A1, A2, A3, A4], rated_Ah: 100}',
+        `
+    defaults: {capacity_Ah: 100${more}}
+    modules: {A1: {}, A2: {}, A3: {}, A4: {}}`,
+      );
+    expect(keyOf(studyOf(text(', leakage_activation_kJ_per_mol: 50')))).toBe(keyOf(studyOf(text(''))));
+    expect(keyOf(studyOf(text(', temperature_offset_K: 1')))).not.toBe(keyOf(studyOf(text(''))));
+  });
+
   it.each([
     ['an ambient temperature', (text: string) => text.replace('for_h: 4', 'for_h: 4, ambient_degC: 20')],
     ['a warmer slot', (text: string) => text.replace('[A3, A4]]', '[A3, A4]], slot_temperature_offset_K: [0, 1]')],
