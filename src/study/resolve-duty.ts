@@ -1,4 +1,4 @@
-import { ambientOf } from './ambient.js';
+import { ambientOf, ambientOrigin } from './ambient.js';
 import { DEFAULT_CYCLE_H, type DutyInput, type PhaseInput } from './duty.js';
 import { Layers } from './layers.js';
 import { readProfile } from './profile.js';
@@ -48,6 +48,7 @@ export function resolveDuty(input: DutyInput, reading: Reading): Duty | undefine
       unit: '',
       source: 'study',
     });
+    reading.origins.push(ambientOrigin(input.parts === undefined ? 'duty' : `duty.parts.${part.name}`, cycles.flat()));
   }
   const loadFactor = bankSpreadOf(layers, 'load_factor', reading);
   const chargeFactor = bankSpreadOf(layers, 'charge_factor', reading);

@@ -3,7 +3,7 @@ import { sampleModules } from '../../src/sampling/sample-modules.js';
 import { simulationKey } from '../../src/study/simulation-key.js';
 import type { Study } from '../../src/study/study.js';
 import { inUnitOfKey, siFromKey } from '../../src/study/units.js';
-import { explicitOf, populationOf, studyOf, studyWith, studyWithStock } from './study-under-test.js';
+import { explicitOf, populationOf, read, studyOf, studyWith, studyWithStock } from './study-under-test.js';
 
 const RATED = 'rated_Ah: 100';
 const keyOf = (study: Study): string => {
@@ -41,6 +41,19 @@ describe('temperatures in a study', () => {
       'without.csv': 'time_h,load_W,charge_W\n0,5,0\n',
     };
     expect(ambients(studyOf(studyWith({ duty }), files))).toEqual([[[263.15, undefined]], [[278.15]]]);
+  });
+
+  it('are printed by check: the one there is, or the coldest and the warmest', () => {
+    const printed = (phases: string) => {
+      const result = read(studyWith({ duty: `duty: {phases: [${phases}]}` }));
+      if (result.kind === 'refused') throw new Error('refused');
+      return result.origins.find(({ path }) => path === 'duty.ambient_degC');
+    };
+    expect(printed('{rest_h: 1}')).toMatchObject({ value: '25', unit: 'degC', source: 'default' });
+    expect(printed('{rest_h: 1, ambient_degC: -10.1}, {rest_h: 1}')).toMatchObject({
+      value: '-10.1 to 25',
+      source: 'study',
+    });
   });
 
   it('are told of slots by position or by string', () => {
