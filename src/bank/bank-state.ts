@@ -25,6 +25,8 @@ export interface BankState {
   readonly underVoltage: Uint8Array;
   readonly overCurrentCharge: Uint8Array;
   readonly overCurrentDischarge: Uint8Array;
+  /** The BMS refuses charge current because the module is cold. */
+  readonly tooCold: Uint8Array;
   /** The over-current of that direction will not be tried again by itself. */
   readonly lockedCharge: Uint8Array;
   readonly lockedDischarge: Uint8Array;
@@ -61,6 +63,7 @@ export function createBankState(bank: Bank): BankState {
     underVoltage: new Uint8Array(modules),
     overCurrentCharge: new Uint8Array(modules),
     overCurrentDischarge: new Uint8Array(modules),
+    tooCold: new Uint8Array(modules),
     lockedCharge: new Uint8Array(modules),
     lockedDischarge: new Uint8Array(modules),
     retryChargeS: new Float64Array(modules).fill(Number.POSITIVE_INFINITY),
@@ -88,6 +91,7 @@ export function copyBankState(bank: Bank, state: BankState): BankState {
   copy.underVoltage.set(state.underVoltage);
   copy.overCurrentCharge.set(state.overCurrentCharge);
   copy.overCurrentDischarge.set(state.overCurrentDischarge);
+  copy.tooCold.set(state.tooCold);
   copy.lockedCharge.set(state.lockedCharge);
   copy.lockedDischarge.set(state.lockedDischarge);
   copy.retryChargeS.set(state.retryChargeS);

@@ -1,7 +1,9 @@
 import type { BleedOverride, Candidate, ModuleParameters } from '../study/study.js';
+import { sumChains } from './chain-sums.js';
 import { type ChainedWiring, chainWiring } from './chains.js';
 import type { OcvCurves } from './ocv-curves.js';
 import { type PlacedCell, type PlacedModule, placeModule, rehouse } from './placed-module.js';
+import { type BankTemperature, bankTemperature } from './temperature.js';
 import { wireCandidate } from './wiring-graph.js';
 
 export const BLEED_NONE = 0;
@@ -9,7 +11,7 @@ export const BLEED_EACH = 1;
 export const BLEED_ABOVE_LOWEST = 2;
 
 /**
- * One bank as flat arrays: everything about it that time does not change.
+ * One bank as flat arrays: everything about it that time does not change while its modules keep their temperatures.
  *
  * Modules are numbered string by string from the negative end, cells module by module from the negative end. Values of a
  * cell are at its number, of a module at its number; `polarisationOhm` is pair by pair (pair * cells + cell).
@@ -67,6 +69,7 @@ export interface Bank {
   /** `Infinity` where the drop is never bridged. */
   readonly recloseA: Float64Array;
   readonly placed: readonly PlacedModule[];
+  readonly temperature: BankTemperature;
 
   /** Sum over the modules of a chain of all resistances, leads included. */
   readonly chainOhm: Float64Array;
@@ -126,21 +129,14 @@ export function buildBank(
   const resistanceOhm = ofCells((cell) => cell.resistanceOhm);
   const capacityAs = ofCells((cell) => 3600 * cell.capacityAh);
   const count = wiring.chains.length;
-  const chainOhm = Float64Array.from(wiring.chains, (chain) => chain.ohm);
-  const chainPolarisationOhm = new Float64Array(timeConstants.length * count);
   const chainCapacityAs = new Float64Array(count).fill(Number.POSITIVE_INFINITY);
-  list.forEach((module, m) => {
-    chainOhm[chainOfModule[m]] += module.parameters.pathResistanceOhm;
-  });
   for (let c = 0; c < cells; c++) {
     const i = chainOfModule[moduleOfCell[c]];
-    chainOhm[i] += resistanceOhm[c];
     chainCapacityAs[i] = Math.min(chainCapacityAs[i], capacityAs[c]);
-    timeConstants.forEach((_, pair) => {
-      chainPolarisationOhm[pair * count + i] += polarisationOhm[pair * cells + c];
-    });
   }
   const hysteresisV = ofCells((cell) => cell.hysteresisV);
+  const pathOhm = ofModules((module) => module.pathResistanceOhm);
+  const summands = { wiring, moduleOfCell, chainOfModule, pathOhm, resistanceOhm, polarisationOhm };
   return {
     strings: placed.length,
     positions: placed[0].length,
@@ -164,7 +160,7 @@ export function buildBank(
     cellStart,
     chainOfModule,
     chainCellStart: Int32Array.from([...wiring.chains.map(({ modules }) => cellStart[modules[0]]), cells]),
-    pathOhm: ofModules((module) => module.pathResistanceOhm),
+    pathOhm,
     standbyA: ofModules((module) => module.standbyA),
     asleepA: ofModules(({ bms }) => bms.asleepA),
     overVoltageV: ofModules((module) => module.overVoltageV),
@@ -185,8 +181,8 @@ export function buildBank(
     forwardDropV: ofModules(({ bms }) => bms.forwardDropV),
     recloseA: ofModules(({ bms }) => bms.recloseA ?? Number.POSITIVE_INFINITY),
     placed: list,
-    chainOhm,
-    chainPolarisationOhm,
+    temperature: bankTemperature(candidate, placed),
+    ...sumChains(summands),
     chainCapacityAs,
     hasHysteresis: hysteresisV.some((volts) => volts !== 0),
   };

@@ -9,6 +9,8 @@ export type BankEventKind =
   | 'over-current-retry'
   | 'over-current-lock'
   | 'over-current-unlock'
+  | 'cold-charge-refusal'
+  | 'cold-charge-release'
   | 'load-disconnect'
   | 'load-reconnect'
   | 'load-lost'

@@ -3,7 +3,7 @@ import { type BankState, BOTH_WAYS, CHARGE_ONLY, DISCHARGE_ONLY, NO_WAY } from '
 
 /** The charge path of module `m` is open, for whatever reason. */
 export function chargePathOpen(bank: Bank, state: BankState, m: number): boolean {
-  if (state.overVoltage[m] === 1 || state.overCurrentCharge[m] === 1) return true;
+  if (state.overVoltage[m] === 1 || state.overCurrentCharge[m] === 1 || state.tooCold[m] === 1) return true;
   return state.overCurrentDischarge[m] === 1 && bank.overCurrentOpensBoth[m] === 1;
 }
 

@@ -1,4 +1,4 @@
-import type { ModuleParameters } from '../study/study.js';
+import type { Activation, ModuleParameters } from '../study/study.js';
 
 /** What one BMS protects: its cells from the negative end, each with its own values. */
 export interface PlacedModule {
@@ -17,6 +17,7 @@ export interface PlacedCell {
   readonly leakageA: number;
   readonly efficiency: number;
   readonly arrivalCharge: number;
+  readonly activation: Activation | undefined;
 }
 
 export function placeModule(parameters: ModuleParameters): PlacedModule {
@@ -35,6 +36,7 @@ export function placeModule(parameters: ModuleParameters): PlacedModule {
       leakageA: parameters.leakageA[k],
       efficiency: parameters.efficiency[k],
       arrivalCharge: parameters.arrivalCharge[k],
+      activation: parameters.activation,
     })),
   };
 }

@@ -35,7 +35,7 @@ export function protectionValuesInto(
   value: Float64Array,
 ): void {
   const { modules, chainOfModule } = bank;
-  const { overVoltage, underVoltage, overCurrentCharge, overCurrentDischarge } = state;
+  const { overVoltage, underVoltage, overCurrentCharge, overCurrentDischarge, tooCold } = state;
   for (let m = 0; m < modules; m++) {
     const currentA = chainA[chainOfModule[m]];
     value[m] = overVoltage[m] === 1 ? bank.overVoltageReleaseV[m] - highV[m] : highV[m] - bank.overVoltageV[m];
@@ -45,7 +45,8 @@ export function protectionValuesInto(
       overCurrentCharge[m] === 1 ? NEVER : currentA - bank.overCurrentChargeA[m];
     value[OVER_CURRENT_DISCHARGE * modules + m] =
       overCurrentDischarge[m] === 1 ? NEVER : -currentA - bank.overCurrentDischargeA[m];
-    const anyOpen = overVoltage[m] + underVoltage[m] + overCurrentCharge[m] + overCurrentDischarge[m] > 0;
+    const latches = overVoltage[m] + underVoltage[m] + overCurrentCharge[m] + overCurrentDischarge[m] + tooCold[m];
+    const anyOpen = latches > 0;
     value[RECLOSE * modules + m] = anyOpen ? bridging(bank, state, m, currentA) : NEVER;
     value[UNLOCK * modules + m] = anyOpen ? unlocking(bank, state, m, currentA) : NEVER;
   }

@@ -59,5 +59,7 @@ export function composeModule(
     bleedA: ofModule('bleedA'),
     bleedStartV: ofModule('bleedStartV'),
     bms: stock.bms,
+    ...(cell.activation !== undefined && { activation: cell.activation }),
+    temperatureOffsetK: ofModule('temperatureOffsetK'),
   };
 }

@@ -26,6 +26,7 @@ export const QUANTITY_ORDER: NamesOf<typeof QUANTITIES> = [
   'overCurrentDischargeA',
   'bleedA',
   'bleedStartV',
+  'temperatureOffsetK',
 ];
 
 /** One thing per quantity. */

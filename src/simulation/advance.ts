@@ -6,6 +6,7 @@ import type { ChargerSettings, LoadSettings } from '../study/study.js';
 import { type BleedPlan, carryOut, createBleedPlan, planBleed } from './bleed-within.js';
 import { updateEmf } from './chain-emf.js';
 import { type Chatter, countTrip, createChatter, leapOverChatter } from './chatter.js';
+import type { Climate } from './climate.js';
 import { cutAtEvent, turnedConditions } from './cut-at-event.js';
 import { copyInto, createKernel, type Kernel, solveKept, updateCellConstants, updateExtremes } from './kernel.js';
 import { settle } from './settle.js';
@@ -38,6 +39,8 @@ export interface Journey {
   readonly startLowestV: Float64Array;
   readonly bleedPlan: BleedPlan;
   readonly chatter: Chatter;
+  /** Null: the bank stays at 25 degC, whatever its duty says. */
+  climate: Climate | null;
   readonly onEvent: (event: BankEvent) => void;
   /** Called with every step before it is committed, while it can still be looked into. */
   readonly onStep: (journey: Journey, stepS: number) => void;
@@ -76,6 +79,7 @@ export function createJourney(
     startLowestV: new Float64Array(bank.modules),
     bleedPlan: createBleedPlan(bank.cells),
     chatter,
+    climate: null,
     onEvent: (event) => {
       countTrip(chatter, event);
       listeners.onEvent?.(event);

@@ -18,8 +18,10 @@ const FACTORS = { loadFactor: 1, chargeFactor: 1 };
 /**
  * Usable capacity of a bank as it stands, found on a copy of its state with latches kept: its own charger to the end of
  * charge (24 h at most), 1 h rest, then a fifth of rated capacity per hour until that cannot be carried for the first
- * time. A string may be lost on the way; a low-voltage disconnect plays no part.
+ * time. A string may be lost on the way; a low-voltage disconnect plays no part. The test stands at 25 degC, so that a BMS
+ * which refuses to charge a cold bank allows it here.
  *
+ * @param bank at 25 degC
  * @param nowS time that the state belongs to
  */
 export function testCapacity(
@@ -29,13 +31,15 @@ export function testCapacity(
   nowS: number,
   toleranceFactor = 1,
 ): TestedCapacity {
+  const copy = copyBankState(bank, state);
+  copy.tooCold.fill(0);
   let discharging = false;
   let firstStringS: number | null = null;
   let emptyS: number | null = null;
   let deliveredJ = 0;
   const journey: Journey = createJourney(
     bank,
-    copyBankState(bank, state),
+    copy,
     candidate.charger,
     { ...candidate.load, disconnectV: null },
     {

@@ -24,9 +24,10 @@ import { solveNetwork } from '../bank/network.js';
  * 1 otherwise, offset its standby and bleed current. Drift along a chain thus has no integration error.
  */
 export interface Kernel {
-  readonly bank: Bank;
+  /** As it is at the present temperatures. */
+  bank: Bank;
   readonly state: BankState;
-  readonly cache: NetworkCache;
+  cache: NetworkCache;
   readonly terms: BusTerms;
   /** Bus and chain currents now, that is at the start of the step. */
   readonly bus: BusPoint;

@@ -2,6 +2,7 @@ import type { BankFactors } from '../sampling/bank-factors.js';
 import type { DutySegment } from '../study/study.js';
 import { advance, type Journey, settleJourney } from './advance.js';
 import { resetChatter } from './chatter.js';
+import { takeAmbient } from './climate.js';
 
 /** Starts a cycle: a charger that restarts at each cycle works towards absorption again. */
 export function startCycle(journey: Journey): void {
@@ -27,6 +28,7 @@ export function runSegment(
   terminal.chargeW = segment.chargeW === null ? Number.POSITIVE_INFINITY : segment.chargeW * factors.chargeFactor;
   const isDone = (): boolean => (segment.endsWhenCharged && !terminal.charging) || stop();
   resetChatter(journey.chatter);
+  if (journey.climate !== null) takeAmbient(journey, journey.climate, segment.ambientK);
   settleJourney(journey);
   if (!isDone()) advance(journey, kernel.nowS + segment.durationS, isDone);
 }

@@ -12,6 +12,7 @@ import { sampleModules } from '../sampling/sample-modules.js';
 import type { Candidate, ModuleParameters, Study } from '../study/study.js';
 import { createJourney, type Journey, type JourneyListeners } from './advance.js';
 import { testCapacity } from './capacity-test.js';
+import { createClimate } from './climate.js';
 import { commissionBank } from './commission.js';
 import { drawnFeatures } from './drawn-features.js';
 import { beginBurstRecord, createRecorder, type Recorder, recordEvent, recordLeap, recordStep } from './recorder.js';
@@ -97,6 +98,7 @@ export function startBank(
     onLeap: (ratio) => recordLeap(recorder, ratio),
   };
   const journey = createJourney(bank, state, candidate.charger, candidate.load, listeners, toleranceFactor);
+  journey.climate = createClimate(bank);
   return { journey, recorder };
 }
 
@@ -107,6 +109,7 @@ function simulateBank(
 ): SimulatedBank {
   const { candidate, course, toleranceFactor } = prepared;
   const { journey, recorder } = startBank(prepared, modules);
+  // As it is before the course: at 25 degC, where capacity is tested and drawn features are stated.
   const { bank, state } = journey.kernel;
   const start = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
   runCourse(journey, recorder, course, factors);

@@ -56,8 +56,9 @@ export function traceInstance(study: Study, window: TraceWindow): Trace {
       onStep: (moving, stepS) => sampleStep(sampler, moving, stepS),
     },
   );
+  const { bank } = journey.kernel;
   runCourse(journey, recorder, dutyCourse(study.duty, window.toCycle), factors, (cycle) => {
     if (cycle === window.fromCycle) sampler.nextS = journey.kernel.nowS;
   });
-  return { bank: journey.kernel.bank, factors, samples, events };
+  return { bank, factors, samples, events };
 }

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { amount, choice, count } from './amount.js';
 import { bleedSection, cellVoltage } from './bleed.js';
+import { CHARGE_REFUSAL, DEFAULT_CHARGE_REFUSAL } from './charge-refusal.js';
 import { section } from './section.js';
 import { moduleSpread } from './spread.js';
 
@@ -46,6 +47,7 @@ function bmsSection<L extends z.ZodType>(leaf: (nominal: z.ZodNumber) => L) {
       .meta({ description: 'Permitted current that removes the forward drop; null = never.', default: 1 })
       .optional(),
     reclose_delay_s: seconds(0.1).optional(),
+    charge_refusal: CHARGE_REFUSAL.optional(),
     asleep_mA: amount({ atLeast: 0, atMost: 10_000 }, { default: 0.1 }).optional(),
     asleep_after_h: amount({ atLeast: 0, atMost: 8784 }, { default: 24 }).optional(),
   });
@@ -80,6 +82,7 @@ export const DEFAULT_BMS = {
   forward_drop_V: 0.7,
   reclose_A: 1,
   reclose_delay_s: 0.1,
+  charge_refusal: DEFAULT_CHARGE_REFUSAL,
   asleep_mA: 0.1,
   asleep_after_h: 24,
 } as const satisfies BmsInput;

@@ -6,6 +6,7 @@ import { STRING_LEADS } from './leads.js';
 import { LOAD } from './load.js';
 import { moduleId, NAME, NAME_RULE } from './names.js';
 import { named, section } from './section.js';
+import { SLOT_OFFSET } from './slot-offset.js';
 
 /** Longest string and most strings in parallel; with 16 cells per module that is 64 cells in series at most. */
 const MOST_POSITIONS = 4;
@@ -26,6 +27,7 @@ const options = {
   bleed: bleedSection((nominal) => nominal)
     .meta({ description: 'Replaces the bleed of every module, key by key.' })
     .optional(),
+  slot_temperature_offset_K: SLOT_OFFSET.optional(),
 };
 
 /** The section `bank`: options of every candidate that does not say otherwise. */

@@ -5,7 +5,7 @@ import type { ResolvedSpread } from './resolve-spread.js';
 import type { StudyPath } from './study-path.js';
 import { inUnitOfKey, unitOfKey } from './units.js';
 
-type Bound = 'above 0' | '0 or more' | 'above 0 and at most 1' | 'from 0 to 1';
+type Bound = 'above 0' | '0 or more' | 'above 0 and at most 1' | 'from 0 to 1' | 'from -50 to 50 K';
 
 /** Values a quantity of a real module can have. */
 const POSSIBLE: Readonly<Record<QuantityName, Bound>> = {
@@ -25,6 +25,7 @@ const POSSIBLE: Readonly<Record<QuantityName, Bound>> = {
   overCurrentDischargeA: 'above 0',
   bleedA: '0 or more',
   bleedStartV: 'above 0',
+  temperatureOffsetK: 'from -50 to 50 K',
 };
 
 /** Sums of decimals reach 1 only up to rounding. */
@@ -38,8 +39,10 @@ export function checkSupports(
 ): void {
   for (const [name, bound] of Object.entries(POSSIBLE) as [QuantityName, Bound][]) {
     const { lower, upper } = spreads[name];
-    const lowFails = bound.startsWith('above') ? !(lower > 0) : !(lower >= -ROUNDING);
-    const highFails = bound.endsWith('1') && !(upper <= 1 + ROUNDING);
+    const least = bound === 'from -50 to 50 K' ? -50 : 0;
+    const most = bound === 'from -50 to 50 K' ? 50 : bound.endsWith('1') ? 1 : Number.POSITIVE_INFINITY;
+    const lowFails = bound.startsWith('above') ? !(lower > 0) : !(lower >= least - ROUNDING);
+    const highFails = !(upper <= most + ROUNDING);
     if (!lowFails && !highFails) continue;
     const key = QUANTITY_KEYS[name];
     const shown = `${round(inUnitOfKey(key, lower))} to ${round(inUnitOfKey(key, upper))} ${unitOfKey(key)}`.trim();

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { DEFAULT_AMBIENT_DEGC } from './ambient.js';
 import { amount, count } from './amount.js';
 import { filePath } from './file-path.js';
 import { exactlyOneOf, section } from './section.js';
@@ -13,6 +14,13 @@ const chargePower = amount(
 
 const peakPower = amount({ above: 0, atMost: 1e6 }, { description: 'Load over the last peak_s seconds of the phase.' });
 const peakSeconds = amount({ atLeast: 0.1, atMost: 86_400 }, { description: 'Length of the peak, within the phase.' });
+const ambient = amount(
+  { atLeast: -60, atMost: 80 },
+  {
+    description: 'Temperature around the bank, where nothing nearer to it says otherwise.',
+    default: DEFAULT_AMBIENT_DEGC,
+  },
+).optional();
 
 const PHASE_RULE = 'a phase such as {discharge_W: 1000, for_h: 3}, {rest_h: 1} or {charge: to-full, at_most_h: 8}';
 
@@ -24,14 +32,20 @@ const PHASE = z.union(
       for_h: hours,
       load_peak_W: peakPower.optional(),
       peak_s: peakSeconds.optional(),
+      ambient_degC: ambient,
     }).refine(
       ({ load_peak_W, peak_s }) => (load_peak_W === undefined) === (peak_s === undefined),
       'a phase with both load_peak_W and peak_s, or neither',
     ),
-    section({ discharge_A: amount({ above: 0, atMost: 100_000 }), for_h: hours }),
-    section({ rest_h: hours }),
-    section({ charge: z.literal('to-full', 'to-full'), at_most_h: hours, charge_W: chargePower }),
-    section({ charge_for_h: hours, charge_W: chargePower }),
+    section({ discharge_A: amount({ above: 0, atMost: 100_000 }), for_h: hours, ambient_degC: ambient }),
+    section({ rest_h: hours, ambient_degC: ambient }),
+    section({
+      charge: z.literal('to-full', 'to-full'),
+      at_most_h: hours,
+      charge_W: chargePower,
+      ambient_degC: ambient,
+    }),
+    section({ charge_for_h: hours, charge_W: chargePower, ambient_degC: ambient }),
   ],
   PHASE_RULE,
 );
@@ -43,10 +57,10 @@ const PHASES = z
   .min(1, 'a list of phases')
   .max(10_000, 'a list of at most 10000 phases');
 
-/** CSV with the columns time_h, load_W, charge_W and, together, load_peak_W and peak_s. */
+/** CSV with the columns time_h, load_W, charge_W and, if wanted, load_peak_W with peak_s, and ambient_degC. */
 const PROFILE = filePath.meta({
   description:
-    'CSV with the columns time_h (from 0, ascending), load_W and charge_W, constant until the next row; optional: load_peak_W and peak_s, a peak of load at the end of the row.',
+    'CSV with the columns time_h (from 0, ascending), load_W and charge_W, constant until the next row; optional: load_peak_W and peak_s, a peak of load at the end of the row, and ambient_degC.',
 });
 
 const PART = section({
@@ -57,6 +71,7 @@ const PART = section({
   ).optional(),
   profile: PROFILE.optional(),
   phases: PHASES.optional(),
+  ambient_degC: ambient,
 }).refine(...exactlyOneOf('profile', 'phases'));
 
 const factor = amount({ above: 0, atMost: 100 });
@@ -70,6 +85,7 @@ export const DUTY = section({
     { atLeast: 0.1, atMost: 8784 },
     { description: 'Length of a cycle of a profile.', default: 24 },
   ).optional(),
+  ambient_degC: ambient,
   load_factor: bankSpread(factor).meta({ description: 'Factor on every load of a bank.', default: 1 }).optional(),
   charge_factor: bankSpread(factor)
     .meta({ description: 'Factor on the charging power of a bank.', default: 1 })

@@ -20,6 +20,7 @@ const EXPLICIT_MODULE = section({
   arrival_charge_percent: cellValues(POSSIBLE.chargePercent).optional(),
   path_resistance_mOhm: POSSIBLE.seriesMOhm.optional(),
   joint_resistance_mOhm: POSSIBLE.seriesMOhm.optional(),
+  temperature_offset_K: POSSIBLE.temperatureOffsetK.optional(),
   bms: EXPLICIT_BMS.optional(),
 }).refine(...oneLeakage);
 

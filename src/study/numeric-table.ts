@@ -12,8 +12,10 @@ export interface TableColumn {
   readonly name: string;
   readonly atLeast: number;
   readonly atMost: number;
-  /** The table may lack it, and where it has it a cell may be empty, which counts as 0. */
-  readonly optional?: boolean;
+  /** The table may do without it; then `columns` has none of its name. */
+  readonly isOptional?: boolean;
+  /** A cell may be empty, which counts as 0. */
+  readonly emptyIsZero?: boolean;
 }
 
 /** Rows of numbers with the line each stands in. */
@@ -51,7 +53,7 @@ export function readNumericTable(
   }
   const lines = text.replace(/^\uFEFF/, '').split(/\r\n|\n|\r/);
   while (lines.length > 0 && lines.at(-1)?.trim() === '') lines.pop();
-  const names = wanted.flatMap(({ name, optional }) => (optional ? [] : [name])).join(',');
+  const names = wanted.flatMap(({ name, isOptional }) => (isOptional ? [] : [name])).join(',');
   if (lines.length === 0 || !(lines[0] ?? '').includes(',')) {
     const got = lines.length === 0 ? 'an empty file' : showValue(lines[0]);
     fault(1, 1, '', `must be a table that begins with the line ${names}, got ${got}`);
@@ -74,7 +76,7 @@ export function readNumericTable(
     for (const [place, column] of order.entries()) {
       const cell = cells[place];
       if (cell === undefined) continue;
-      const value = column.optional && cell.text === '' ? 0 : numberOf(cell.text);
+      const value = column.emptyIsZero && cell.text === '' ? 0 : numberOf(cell.text);
       if (value === undefined || !(value >= column.atLeast && value <= column.atMost)) {
         const rule = `a number from ${column.atLeast} to ${column.atMost}`;
         fault(line, cell.column, column.name, `must be ${rule}, got ${showValue(value ?? cell.text)}`);
@@ -106,8 +108,8 @@ function orderOf(
     const rule = known === undefined ? `one of the columns ${names.join(', ')}` : 'a column that is given once';
     fault(1, column, text, `must be ${rule}, got ${showValue(text)}${hint === undefined ? '' : ` (${hint})`}`);
   }
-  for (const { name, optional } of wanted) {
-    const missing = !optional && !meant.has(name) && !order.some((column) => column.name === name);
+  for (const { name, isOptional } of wanted) {
+    const missing = !isOptional && !meant.has(name) && !order.some((column) => column.name === name);
     if (missing) fault(1, 1, name, `must be a column, got ${showValue(header.map(({ text }) => text).join(','))}`);
   }
   return order;

@@ -1,3 +1,4 @@
+import { ambientOf } from './ambient.js';
 import { readNumericTable } from './numeric-table.js';
 import type { Problem } from './problem.js';
 import type { DutySegment } from './study.js';
@@ -15,19 +16,22 @@ const TIME_TOLERANCE_S = 1e-3;
  * Reads a profile: powers that hold from their row's time to the next; the last row holds until the end of its cycle. A
  * row may end with a peak of load, `load_peak_W` for its last `peak_s` seconds.
  *
+ * @param ambientDegC where the table has no column of that name
  * @returns the segments of each cycle, rows that straddle the end of a cycle split there; or every fault of the table
  */
 export function readProfile(
   text: string,
   file: string,
   cycleH: number,
+  ambientDegC?: number,
 ): { readonly cycles: readonly (readonly DutySegment[])[] } | { readonly problems: Problem[] } {
   const read = readNumericTable(text, file, [
     { name: 'time_h', atLeast: 0, atMost: MOST_HOURS },
     { name: 'load_W', atLeast: 0, atMost: MOST_POWER_W },
     { name: 'charge_W', atLeast: 0, atMost: MOST_POWER_W },
-    { name: 'load_peak_W', atLeast: 0, atMost: MOST_POWER_W, optional: true },
-    { name: 'peak_s', atLeast: 0, atMost: MOST_HOURS * 3600, optional: true },
+    { name: 'load_peak_W', atLeast: 0, atMost: MOST_POWER_W, isOptional: true, emptyIsZero: true },
+    { name: 'peak_s', atLeast: 0, atMost: MOST_HOURS * 3600, isOptional: true, emptyIsZero: true },
+    { name: 'ambient_degC', atLeast: -60, atMost: 80, isOptional: true },
   ]);
   if ('problems' in read) return read;
   const { columns, lines } = read.table;
@@ -47,7 +51,7 @@ export function readProfile(
   }
   if (problems.length > 0) return { problems };
   const cycleS = secondsFromHours(cycleH);
-  const rows = rowsOf(columns, timeH, cycleS);
+  const rows = rowsOf(columns, timeH, cycleS, ambientDegC);
   problems.push(...peakProblems(columns, rows, file, lines));
   return problems.length > 0 ? { problems } : { cycles: cyclesOf(rows, cycleS) };
 }
@@ -61,12 +65,14 @@ interface ProfileRow {
   /** Load over the last `peakS` seconds of the row. */
   readonly peakW: number;
   readonly peakS: number;
+  readonly ambientDegC: number | undefined;
 }
 
 function rowsOf(
   columns: ReadonlyMap<string, readonly number[]>,
   timeH: readonly number[],
   cycleS: number,
+  ambientDegC: number | undefined,
 ): readonly ProfileRow[] {
   const starts = timeH.map(secondsFromHours);
   const endS = cycleCountOf(starts.at(-1) ?? 0, cycleS) * cycleS;
@@ -78,6 +84,7 @@ function rowsOf(
     chargeW: cellOf('charge_W', row),
     peakW: cellOf('load_peak_W', row),
     peakS: cellOf('peak_s', row),
+    ambientDegC: columns.get('ambient_degC')?.[row] ?? ambientDegC,
   }));
 }
 
@@ -129,10 +136,10 @@ function peakProblems(
 
 function cyclesOf(rows: readonly ProfileRow[], cycleS: number): DutySegment[][] {
   const cycles: DutySegment[][] = Array.from({ length: cycleCountOf(rows.at(-1)?.fromS ?? 0, cycleS) }, () => []);
-  for (const { fromS, toS, loadW, chargeW, peakW, peakS } of rows) {
+  for (const { fromS, toS, loadW, chargeW, peakW, peakS, ambientDegC } of rows) {
     const peakFromS = toS - peakS;
-    addStretch(cycles, cycleS, fromS, peakFromS, { loadW, chargeW });
-    addStretch(cycles, cycleS, Math.max(fromS, peakFromS), toS, { loadW: peakW, chargeW });
+    addStretch(cycles, cycleS, fromS, peakFromS, { loadW, chargeW, ambientDegC });
+    addStretch(cycles, cycleS, Math.max(fromS, peakFromS), toS, { loadW: peakW, chargeW, ambientDegC });
   }
   return cycles;
 }
@@ -143,12 +150,19 @@ function addStretch(
   cycleS: number,
   fromS: number,
   toS: number,
-  { loadW, chargeW }: Pick<DutySegment, 'loadW' | 'chargeW'>,
+  { loadW, chargeW, ambientDegC }: Pick<ProfileRow, 'loadW' | 'chargeW' | 'ambientDegC'>,
 ): void {
   for (let from = fromS; toS - from > TIME_TOLERANCE_S; ) {
     const cycle = Math.floor((from + TIME_TOLERANCE_S) / cycleS);
     const to = Math.min(toS, (cycle + 1) * cycleS);
-    cycles[cycle]?.push({ durationS: to - from, loadW, loadA: 0, chargeW, endsWhenCharged: false });
+    cycles[cycle]?.push({
+      durationS: to - from,
+      loadW,
+      loadA: 0,
+      chargeW,
+      endsWhenCharged: false,
+      ...ambientOf(ambientDegC),
+    });
     from = to;
   }
 }

@@ -19,6 +19,7 @@ export const QUANTITIES = [
   { name: 'overCurrentDischargeA', levels: ['lot', 'module'] },
   { name: 'bleedA', levels: ['lot', 'module'] },
   { name: 'bleedStartV', levels: ['lot', 'module'] },
+  { name: 'temperatureOffsetK', levels: ['lot', 'module'] },
 ] as const;
 
 export type QuantityName = (typeof QUANTITIES)[number]['name'];

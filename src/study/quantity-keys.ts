@@ -18,6 +18,7 @@ export const QUANTITY_KEYS = {
   overCurrentDischargeA: 'bms.over_current.discharge_A',
   bleedA: 'bms.bleed.current_mA',
   bleedStartV: 'bms.bleed.start_V',
+  temperatureOffsetK: 'temperature_offset_K',
 } as const satisfies Record<QuantityName, string>;
 
 const NAMES_BY_KEY: ReadonlyMap<string, QuantityName> = new Map(

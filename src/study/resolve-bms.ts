@@ -1,5 +1,6 @@
 import { STOP_BELOW_START_V } from './bleed.js';
 import type { BmsInput } from './bms.js';
+import { resolveChargeRefusal } from './charge-refusal.js';
 import type { Layers } from './layers.js';
 import type { QuantityName } from './quantities.js';
 import type { Reading } from './reading.js';
@@ -32,6 +33,7 @@ export function resolveBms(layers: Layers<BmsInput>, reading: Reading): Resolved
     bleedA: spreadIn(bleed, 'current_mA', reading),
     bleedStartV: spreadIn(bleed, 'start_V', reading),
   };
+  const chargeRefusal = resolveChargeRefusal(layers.inside('charge_refusal'), reading);
   const settings: BmsSettings = {
     overVoltageDelayS: over.si('delay_s', reading),
     overVoltageReleaseHoldS: over.si('release_hold_s', reading),
@@ -45,6 +47,7 @@ export function resolveBms(layers: Layers<BmsInput>, reading: Reading): Resolved
     bleed: resolveBleed(bleed, spreads.bleedStartV.nominal, reading),
     asleepA: layers.si('asleep_mA', reading),
     asleepAfterS: layers.si('asleep_after_h', reading),
+    ...(chargeRefusal !== undefined && { chargeRefusal }),
   };
   checkThresholds(layers, spreads, reading);
   return { settings, spreads };

@@ -4,6 +4,7 @@ import { type Layer, Layers } from './layers.js';
 import { DEFAULT_LEAD_MOHM, stringLeads } from './leads.js';
 import { defaultLoad, resolveLoad } from './load.js';
 import type { Reading } from './reading.js';
+import { slotOffsets } from './slot-offset.js';
 import type { BleedOverride, Candidate, Stock, StringLeads } from './study.js';
 import { moduleFacts, namedModules, type WiredModules, wireModules } from './wiring-rules.js';
 
@@ -55,6 +56,7 @@ function resolveCandidate(
 ): Candidate {
   const { wiring } = written;
   options.setting('wiring', reading);
+  const slotOffsetK = slotOffsetsOf(options, written.modules, reading);
   return {
     key,
     title: written.title ?? key,
@@ -66,6 +68,7 @@ function resolveCandidate(
     load: resolveLoad(options.inside('load'), reading),
     commissioning: options.setting('commissioning', reading),
     bleed: bleedOverride(options, reading),
+    ...(slotOffsetK !== undefined && { slotOffsetK }),
   };
 }
 
@@ -75,6 +78,23 @@ function leadsOf(options: Options, strings: number, reading: Reading): readonly 
   const path = options.pick('string_lead_mOhm')?.path ?? options.owner;
   reading.fault(path, `a list of ${strings}, one per string`);
   return [];
+}
+
+/** Absent unless the candidate or the bank says so: then nothing changes for banks of one temperature. */
+function slotOffsetsOf(
+  options: Options,
+  strings: CandidateInput['modules'],
+  reading: Reading,
+): Candidate['slotOffsetK'] {
+  const picked = options.pick('slot_temperature_offset_K');
+  if (picked === undefined) return undefined;
+  options.setting('slot_temperature_offset_K', reading);
+  const positions = strings[0]?.length ?? 0;
+  const offsets = slotOffsets(picked.value, strings.length, positions);
+  if (offsets === undefined) {
+    reading.fault(picked.path, `a list of ${positions}, one per position, or ${strings.length} such lists`);
+  }
+  return offsets;
 }
 
 /** Keys of the candidate and of the bank that stand over the bleed of every module. */

@@ -1,3 +1,4 @@
+import { ambientOf, ambientOrigin } from './ambient.js';
 import { DEFAULT_CYCLE_H, type DutyInput, type PhaseInput } from './duty.js';
 import { Layers } from './layers.js';
 import { readProfile } from './profile.js';
@@ -12,6 +13,8 @@ interface WrittenPart {
   readonly repeat: number;
   readonly profile?: string | undefined;
   readonly phases?: readonly PhaseInput[] | undefined;
+  /** Where a row or phase does not say otherwise; absent = 25. */
+  readonly ambientDegC?: number | undefined;
   readonly path: StudyPath;
 }
 
@@ -45,6 +48,7 @@ export function resolveDuty(input: DutyInput, reading: Reading): Duty | undefine
       unit: '',
       source: 'study',
     });
+    reading.origins.push(ambientOrigin(input.parts === undefined ? 'duty' : `duty.parts.${part.name}`, cycles.flat()));
   }
   const loadFactor = bankSpreadOf(layers, 'load_factor', reading);
   const chargeFactor = bankSpreadOf(layers, 'charge_factor', reading);
@@ -54,14 +58,16 @@ export function resolveDuty(input: DutyInput, reading: Reading): Duty | undefine
 }
 
 function writtenParts(input: DutyInput): readonly WrittenPart[] {
+  const ambientDegC = input.ambient_degC;
   if (input.parts === undefined) {
-    return [{ name: 'duty', repeat: 1, profile: input.profile, phases: input.phases, path: ['duty'] }];
+    return [{ name: 'duty', repeat: 1, profile: input.profile, phases: input.phases, ambientDegC, path: ['duty'] }];
   }
-  return input.parts.map(({ name, repeat, profile, phases }, index) => ({
+  return input.parts.map(({ name, repeat, profile, phases, ambient_degC }, index) => ({
     name,
     repeat: repeat ?? 1,
     profile,
     phases,
+    ambientDegC: ambient_degC ?? ambientDegC,
     path: ['duty', 'parts', index],
   }));
 }
@@ -69,11 +75,11 @@ function writtenParts(input: DutyInput): readonly WrittenPart[] {
 function cyclesOf(part: WrittenPart, cycleH: number, reading: Reading): DutyPart['cycles'] | undefined {
   if (part.profile === undefined) {
     checkPeaks(part, reading);
-    return [(part.phases ?? []).flatMap(segmentsOf)];
+    return [(part.phases ?? []).flatMap((phase) => segmentsOf(phase, part.ambientDegC))];
   }
   const text = reading.textOf([...part.path, 'profile'], part.profile);
   if (text === undefined) return undefined;
-  const read = readProfile(text, part.profile, cycleH);
+  const read = readProfile(text, part.profile, cycleH, part.ambientDegC);
   if ('cycles' in read) return read.cycles;
   // Two parts may name one file; its faults are told once.
   if (!reading.problems.some(({ file }) => file === part.profile)) reading.problems.push(...read.problems);
@@ -93,16 +99,22 @@ function checkPeaks({ path, phases }: WrittenPart, reading: Reading): void {
 }
 
 /** The phase, and after it its peak. */
-function segmentsOf(phase: PhaseInput): DutySegment[] {
-  const whole = segmentOf(phase);
+function segmentsOf(phase: PhaseInput, ambientDegC: number | undefined): DutySegment[] {
+  const whole = segmentOf(phase, ambientDegC);
   if (!('discharge_W' in phase) || phase.load_peak_W === undefined || phase.peak_s === undefined) return [whole];
   const peak = { ...whole, durationS: phase.peak_s, loadW: phase.load_peak_W };
   const beforeS = whole.durationS - phase.peak_s;
   return beforeS > 0 ? [{ ...whole, durationS: beforeS }, peak] : [peak];
 }
 
-function segmentOf(phase: PhaseInput): DutySegment {
-  const idle = { loadW: 0, loadA: 0, chargeW: 0, endsWhenCharged: false };
+function segmentOf(phase: PhaseInput, ambientDegC: number | undefined): DutySegment {
+  const idle = {
+    loadW: 0,
+    loadA: 0,
+    chargeW: 0,
+    endsWhenCharged: false,
+    ...ambientOf(phase.ambient_degC ?? ambientDegC),
+  };
   if ('discharge_W' in phase) return { ...idle, durationS: secondsFromHours(phase.for_h), loadW: phase.discharge_W };
   if ('discharge_A' in phase) return { ...idle, durationS: secondsFromHours(phase.for_h), loadA: phase.discharge_A };
   if ('rest_h' in phase) return { ...idle, durationS: secondsFromHours(phase.rest_h) };

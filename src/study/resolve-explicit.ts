@@ -70,6 +70,11 @@ function resolveModule(
     arrivalCharge: cellValues(layers, 'arrival_charge_percent', cells, reading) ?? [],
     pathResistanceOhm: layers.si('path_resistance_mOhm', reading) + layers.si('joint_resistance_mOhm', reading),
     standbyA: layers.si('standby_mA', reading),
+    activation: {
+      resistanceJPerMol: layers.si('resistance_activation_kJ_per_mol', reading),
+      leakageJPerMol: layers.si('leakage_activation_kJ_per_mol', reading),
+    },
+    temperatureOffsetK: layers.si('temperature_offset_K', reading),
   };
   const bms = resolveBms(layers.inside('bms') as Layers<BmsInput>, reading);
   return {

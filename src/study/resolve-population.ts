@@ -54,6 +54,7 @@ export function resolvePopulation(
     arrivalCharge: spreadOf(layers, 'arrival_charge_percent', reading),
     pathResistanceOhm: spreadOf(layers, 'path_resistance_mOhm', reading),
     jointResistanceOhm: spreadOf(layers, 'joint_resistance_mOhm', reading),
+    temperatureOffsetK: spreadOf(layers, 'temperature_offset_K', reading),
   };
   const correlations = resolveCorrelations(layers, reading);
   const cell = resolveCell(layers, ofModule.resistanceOhm.nominal, ocv, reading);
@@ -115,6 +116,10 @@ function resolveCell(
     })),
     hysteresisV: layers.si('hysteresis_mV', reading),
     hysteresisRate: layers.si('hysteresis_rate', reading),
+    activation: {
+      resistanceJPerMol: layers.si('resistance_activation_kJ_per_mol', reading),
+      leakageJPerMol: layers.si('leakage_activation_kJ_per_mol', reading),
+    },
   };
 }
 

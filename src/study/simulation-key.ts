@@ -1,7 +1,8 @@
 import { createHash } from 'node:crypto';
 import { canonicalJson } from './canonical-json.js';
 import { ENGINE } from './engine.js';
-import type { Candidate, Stock, Study } from './study.js';
+import { leavesReference } from './leaves-reference.js';
+import type { Candidate, PopulationStock, Stock, Study } from './study.js';
 
 /**
  * Identity of the outcomes of a candidate: SHA-256 of the canonical JSON of `simulationContent`.
@@ -18,13 +19,15 @@ export function simulationKey(study: Study, candidate: Candidate): string {
  * All that fixes the outcomes of a candidate, as plain data.
  *
  * Left out is what does not: titles, the candidate's name, acceptance lines, confidence, the number of instances, other
- * candidates, and modules and tables that the candidate does not use.
+ * candidates, modules and tables that the candidate does not use, and how its modules follow a temperature that stays
+ * at 25 degC.
  */
 export function simulationContent(study: Study, candidate: Candidate): Readonly<Record<string, unknown>> {
   const used = new Set(candidate.strings.flat());
   const { key: _key, title: _title, ...options } = candidate;
+  const isWarmed = leavesReference(study, candidate);
   const stocks = study.stocks.flatMap((stock) => {
-    const content = stockContent(stock, used, study);
+    const content = stockContent(stock, used, study, isWarmed);
     return content === undefined ? [] : [[stock.key, content]];
   });
   return {
@@ -42,21 +45,37 @@ export function simulationContent(study: Study, candidate: Candidate): Readonly<
 }
 
 /** A stock as far as it is used, its tables written out since their numbers are no identity; undefined if it is not. */
-function stockContent(stock: Stock, used: ReadonlySet<string>, study: Study): object | undefined {
+function stockContent(stock: Stock, used: ReadonlySet<string>, study: Study, isWarmed: boolean): object | undefined {
   if (stock.kind === 'population') {
     const moduleIds = stock.moduleIds.filter((id) => used.has(id));
     if (moduleIds.length === 0) return undefined;
     const { cellsDrawnAs, ...rest } = stock;
+    const { cell, quantities } = isWarmed ? stock : atReference(stock);
     const drawnAs = Object.entries(cellsDrawnAs ?? {}).filter(([id]) => used.has(id));
     return {
       ...rest,
       moduleIds,
-      cell: { ...stock.cell, ocv: study.ocvTables[stock.cell.ocv] },
+      quantities,
+      cell: { ...cell, ocv: study.ocvTables[cell.ocv] },
       // Left out where there are none, so that keys of studies without them stay as they were.
       ...(drawnAs.length > 0 && { cellsDrawnAs: Object.fromEntries(drawnAs) }),
     };
   }
   const modules = stock.modules.filter(({ id }) => used.has(id));
   if (modules.length === 0) return undefined;
-  return { ...stock, modules: modules.map((module) => ({ ...module, ocv: study.ocvTables[module.ocv] })) };
+  return {
+    ...stock,
+    modules: modules.map((module) => {
+      const { activation, temperatureOffsetK, ...rest } = module;
+      const warmed = isWarmed ? { activation, temperatureOffsetK } : {};
+      return { ...rest, ...warmed, ocv: study.ocvTables[module.ocv] };
+    }),
+  };
+}
+
+/** A population as far as it matters while no module leaves 25 degC. */
+function atReference(stock: PopulationStock): { readonly cell: object & { ocv: number }; readonly quantities: object } {
+  const { activation: _activation, ...cell } = stock.cell;
+  const { temperatureOffsetK: _offset, ...quantities } = stock.quantities;
+  return { cell, quantities };
 }

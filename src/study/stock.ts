@@ -30,6 +30,7 @@ export const POPULATION = section({
   arrival_charge_percent: pointsSpread(POSSIBLE.chargePercent).optional(),
   path_resistance_mOhm: moduleSpread(POSSIBLE.seriesMOhm).optional(),
   joint_resistance_mOhm: moduleSpread(POSSIBLE.seriesMOhm).optional(),
+  temperature_offset_K: moduleSpread(POSSIBLE.temperatureOffsetK).optional(),
   correlation: CORRELATIONS.optional(),
   cells_drawn_as: named(
     MODULE_ID,

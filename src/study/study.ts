@@ -110,6 +110,14 @@ export interface CellModel {
   readonly hysteresisV: number;
   /** Plett's gamma, dimensionless. */
   readonly hysteresisRate: number;
+  /** Absent: resistance and leakage are the same at every temperature. */
+  readonly activation?: Activation;
+}
+
+/** Activation energies by which resistance and leakage of a cell follow its temperature (Arrhenius), J/mol. */
+export interface Activation {
+  readonly resistanceJPerMol: number;
+  readonly leakageJPerMol: number;
 }
 
 /** Settings of a BMS that have no spread. */
@@ -130,6 +138,8 @@ export interface BmsSettings {
   /** Standby current after `asleepAfterS` with the discharge path open. */
   readonly asleepA: number;
   readonly asleepAfterS: number;
+  /** The charge path opens below one temperature and closes from a higher one on; absent: never. */
+  readonly chargeRefusal?: { readonly belowK: number; readonly releaseK: number };
 }
 
 export interface OverCurrentSettings {
@@ -184,6 +194,9 @@ export interface ModuleParameters {
   readonly bleedA: number;
   readonly bleedStartV: number;
   readonly bms: BmsSettings;
+  readonly activation?: Activation;
+  /** By how much the module is warmer than its slot, K; absent = 0. */
+  readonly temperatureOffsetK?: number;
 }
 
 /** A duty: parts in sequence, each repeated, the whole again and again up to the horizon. */
@@ -223,6 +236,8 @@ export interface DutySegment {
   readonly chargeW: number | null;
   /** The segment ends early when the charger's criterion is met. */
   readonly endsWhenCharged: boolean;
+  /** Temperature around the bank, K; absent = 298.15 (25 degC). */
+  readonly ambientK?: number;
 }
 
 export interface Candidate {
@@ -240,6 +255,8 @@ export interface Candidate {
   readonly commissioning: 'as-received' | 'each-module-full';
   /** Bleed that replaces that of every module of this candidate, key by key; null = as the modules have it. */
   readonly bleed: BleedOverride | null;
+  /** By how much each slot is warmer than ambient, string by string, K; absent = 0 everywhere. */
+  readonly slotOffsetK?: readonly (readonly number[])[];
 }
 
 export interface BleedOverride {

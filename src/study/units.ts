@@ -27,6 +27,9 @@ const KEY_UNITS: readonly KeyUnit[] = [
   { suffix: '_W', unit: 'W', toSi: same },
   { suffix: '_h', unit: 'h', toSi: (hours) => hours * SECONDS_PER_HOUR },
   { suffix: '_s', unit: 's', toSi: same },
+  { suffix: '_K', unit: 'K', toSi: same },
+  { suffix: '_degC', unit: 'degC', toSi: (celsius) => celsius + 273.15 },
+  { suffix: '_kJ_per_mol', unit: 'kJ/mol', toSi: (kilojoules) => kilojoules * 1000 },
 ];
 
 /** @returns the unit that a key of the study names, empty if it names none */
@@ -41,7 +44,8 @@ export function siFromKey(key: string, value: number): number {
 
 /** @returns a value of the resolved study in the unit that a key of the study names; inverse of `siFromKey` */
 export function inUnitOfKey(key: string, si: number): number {
-  return si / siFromKey(key, 1);
+  const zero = siFromKey(key, 0);
+  return (si - zero) / (siFromKey(key, 1) - zero);
 }
 
 /** @returns hours in seconds */

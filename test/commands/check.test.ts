@@ -69,7 +69,7 @@ describe('check', () => {
     expect(shell.printed.out).toBe('');
     expect(shell.printed.err.split('\n').slice(0, 3)).toEqual([
       'a.yaml:1:1 stock must be a mapping of names, got nothing',
-      'a.yaml:1:1 duty must be a mapping with keys among profile, phases, parts, cycle_h, load_factor, charge_factor, got nothing',
+      'a.yaml:1:1 duty must be a mapping with keys among profile, phases, parts, cycle_h, ambient_degC, load_factor, charge_factor, got nothing',
       'a.yaml:1:1 candidates must be a mapping of names, got nothing',
     ]);
     expect(shell.printed.err).toMatch(/a.yaml:2:1 instanses must be a known key.*did you mean instances/);

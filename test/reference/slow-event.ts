@@ -13,7 +13,10 @@ export type EventKind =
   | 'load-lost'
   | 'load-back'
   | 'charge-ended'
-  | 'charge-restart';
+  | 'charge-restart'
+  // The slow rewrite has one temperature: these are the engine's only.
+  | 'cold-charge-refusal'
+  | 'cold-charge-release';
 
 /** Strings, positions, cells and cycles count from 1; null where the event is the bank's or no single cell's. */
 export interface SlowEvent {

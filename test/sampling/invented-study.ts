@@ -52,6 +52,7 @@ export function inventedStock(changes: Partial<PopulationStock> = {}): Populatio
       overCurrentDischargeA: relativeSpread(100),
       bleedA: relativeSpread(0.05),
       bleedStartV: relativeSpread(3.45),
+      temperatureOffsetK: { ...relativeSpread(0), relative: false },
     },
     correlations: [{ level: 'module', of: ['capacityAh', 'resistanceOhm'], rho: -0.3 }],
     cell: {

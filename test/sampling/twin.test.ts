@@ -14,6 +14,7 @@ describe('the modules of the twin', () => {
     expect(modules.get('N3')).toEqual({
       id: 'N3',
       stock: 'newer',
+      temperatureOffsetK: 0,
       ratedAh: 100,
       ocv: 0,
       hysteresisV: 0.0075,
