@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { canonicalJson } from './canonical-json.js';
 import { ENGINE } from './engine.js';
-import type { Candidate, Stock, Study } from './study.js';
+import type { Candidate, PopulationStock, Stock, Study } from './study.js';
 
 /**
  * Identity of the outcomes of a candidate: SHA-256 of the canonical JSON of `simulationContent`.
@@ -46,9 +46,20 @@ function stockContent(stock: Stock, used: ReadonlySet<string>, study: Study): ob
   if (stock.kind === 'population') {
     const moduleIds = stock.moduleIds.filter((id) => used.has(id));
     if (moduleIds.length === 0) return undefined;
-    return { ...stock, moduleIds, cell: { ...stock.cell, ocv: study.ocvTables[stock.cell.ocv] } };
+    const cell = { ...stock.cell, ocv: study.ocvTables[stock.cell.ocv] };
+    return { ...stock, moduleIds, cell, ...ofModules(stock, moduleIds) };
   }
   const modules = stock.modules.filter(({ id }) => used.has(id));
   if (modules.length === 0) return undefined;
   return { ...stock, modules: modules.map((module) => ({ ...module, ocv: study.ocvTables[module.ocv] })) };
+}
+
+/** What a stock says of single modules, as far as these are used. */
+function ofModules({ lots, measured }: PopulationStock, moduleIds: readonly string[]): Partial<PopulationStock> {
+  const used = <V>(values: Readonly<Record<string, V>>): Record<string, V> =>
+    Object.fromEntries(Object.entries(values).filter(([id]) => moduleIds.includes(id)));
+  return {
+    ...(lots?.kind === 'by-name' && { lots: { ...lots, lotOf: used(lots.lotOf) } }),
+    ...(measured?.rows === 'of-each-module' && { measured: { ...measured, valuesOf: used(measured.valuesOf) } }),
+  };
 }

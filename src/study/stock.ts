@@ -4,6 +4,8 @@ import { POPULATION_BMS } from './bms.js';
 import { commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
 import { CORRELATIONS } from './correlation.js';
 import { GRADES } from './grade-name.js';
+import { LOTS } from './lots.js';
+import { MEASURED } from './measured.js';
 import { moduleId } from './names.js';
 import { section } from './section.js';
 import { cellSpread, moduleSpread, pointsSpread } from './spread.js';
@@ -30,6 +32,8 @@ export const POPULATION = section({
   joint_resistance_mOhm: moduleSpread(POSSIBLE.seriesMOhm).optional(),
   correlation: CORRELATIONS.optional(),
   bms: POPULATION_BMS.optional(),
+  lots: LOTS.optional(),
+  measured: MEASURED.optional(),
 });
 
 /** A population as written. */
