@@ -5,7 +5,7 @@ import { readTextTable } from './text-table.js';
 import { siFromKey, unitOfKey } from './units.js';
 
 /** Values beyond these are no measurement of anything in a bank. */
-const GREATEST = 1e9;
+const GREATEST = 1e6;
 
 /**
  * Deviations of a measured column from its mean, ascending, in the units of the resolved study.

@@ -32,7 +32,7 @@ export interface ResolvedMeasured {
   readonly spreads: Spreads;
 }
 
-const GREATEST = 1e9;
+const GREATEST = 1e6;
 const ID_COLUMN = 'module';
 const FIXED: Law = { law: 'fixed' };
 
