@@ -70,7 +70,7 @@ function partWords(
 ): string {
   const isMoved = (part.at ?? part.at_percent ?? 0) !== 0;
   const place = isMoved ? ` at ${amount(part.at, part.at_percent)}` : '';
-  return `${part.weight} parts (${wordsOf(lawOfPart(part), unit)}${place})`;
+  return `${part.weight} x (${wordsOf(lawOfPart(part), unit)}${place})`;
 }
 
 function amountWords(value: number, { key, relative }: WordsOwner): string {

@@ -66,7 +66,10 @@ const MIXED = section({
   at: offset({ atLeast: -1e6, atMost: 1e6 }, 'Middle of the part from that of the other parts at 0.'),
   at_percent: offset({ atLeast: -1000, atMost: 1000 }, 'As `at`, in percent of the nominal value.'),
   ...sd,
-  law: z.discriminatedUnion('law', PLAIN_LAWS, PLAIN_LAW_RULE).optional(),
+  law: z
+    .discriminatedUnion('law', PLAIN_LAWS, PLAIN_LAW_RULE)
+    .meta({ description: 'Any law but a mixture, about the middle of the part.' })
+    .optional(),
 })
   .refine(...atMostOneOf('at', 'at_percent'))
   .refine(...atMostOneOf('law', 'sd', 'sd_percent'));

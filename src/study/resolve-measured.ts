@@ -5,6 +5,7 @@ import { lawSupport } from './law-support.js';
 import type { Picked } from './layers.js';
 import type { MeasuredInput } from './measured.js';
 import { didYouMean } from './nearest-name.js';
+import type { Origin } from './origin.js';
 import { QUANTITIES, type QuantityName } from './quantities.js';
 import { QUANTITY_KEYS, quantityOfKey } from './quantity-keys.js';
 import type { Reading } from './reading.js';
@@ -202,17 +203,18 @@ function noteOrigin(
 ): void {
   const key = QUANTITY_KEYS[name];
   const own = renderPath([...owner, ...key.split('.')]);
-  const asideAt = new Set([own, `${own}.lot`, `${own}.module`]);
-  const kept = reading.origins.filter(({ path }) => !asideAt.has(path));
+  const isAside = ({ path }: Origin): boolean => [own, `${own}.lot`, `${own}.module`].includes(path);
   const values = used.map((row) => (column[row] ?? 0) / siFromKey(key, 1));
   const round = (value: number): number => Number(value.toPrecision(5));
   const range = `${round(Math.min(...values))} to ${round(Math.max(...values))}`;
   const sd = uncertainty?.[key] ?? 0;
   const drawn = rows === 'resampled' ? `one of ${values.length} rows, mean ${round(meanOf(values))}, ` : '';
-  reading.origins.splice(0, reading.origins.length, ...kept, {
+  const origin: Origin = {
     path: own,
     value: `${drawn}${range}${sd > 0 ? `, uncertain by sd ${sd}` : ''} (${file})`,
     unit: unitOfKey(key),
     source,
-  });
+  };
+  const told = reading.origins.flatMap((one) => (one.path === own ? [origin] : isAside(one) ? [] : [one]));
+  reading.origins.splice(0, reading.origins.length, ...told);
 }

@@ -117,7 +117,7 @@ describe('check', () => {
     // By hand: weights 0.75 and 0.25, mean -1; variance 0.75 x (0.5^2 + 1^2) + 0.25 x 3^2 = 3.1875.
     [
       '{nominal: 8, module: {law: mixture, of: [{weight: 3, sd: 0.5}, {weight: 1, at: -4}]}}',
-      'mixture of 3 parts (sd 0.5 mA) and 1 parts (none at -4 mA) (sd 1.785 mA)',
+      'mixture of 3 x (sd 0.5 mA) and 1 x (none at -4 mA) (sd 1.785 mA)',
     ],
     // By hand: (4 + 1 + 9) / 3 = 4.6667, root 2.160.
     [
