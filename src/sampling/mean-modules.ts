@@ -1,6 +1,7 @@
 import type { ModuleParameters, PopulationStock, Study } from '../study/study.js';
 import { composeModule } from './compose-module.js';
 import { meanDeviations } from './level-sampler.js';
+import { meanMeasured, withMeasured } from './measured-module.js';
 import { type PerQuantity, perQuantity } from './quantity-order.js';
 
 /**
@@ -18,5 +19,10 @@ function meanPopulation(stock: PopulationStock): ModuleParameters[] {
   const module = meanDeviations(stock, 'module');
   const shared = perQuantity((name) => lot[name] + module[name]);
   const cells = new Array<PerQuantity<number>>(stock.cellsInSeries).fill(meanDeviations(stock, 'cell'));
-  return stock.moduleIds.map((id) => composeModule(stock, id, shared, cells));
+  const { measured } = stock;
+  if (measured === undefined) return stock.moduleIds.map((id) => composeModule(stock, id, shared, cells));
+  return stock.moduleIds.map((id) => {
+    const own = withMeasured(stock, meanMeasured(measured, id), { shared, cells });
+    return composeModule(stock, id, own.shared, own.cells);
+  });
 }

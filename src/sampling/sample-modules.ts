@@ -2,15 +2,18 @@ import type { ModuleParameters, PopulationStock, Study } from '../study/study.js
 import { type BlockAddress, blockAddress } from './block-address.js';
 import { composeModule } from './compose-module.js';
 import { levelSampler } from './level-sampler.js';
-import { perQuantity } from './quantity-order.js';
+import { lotOf } from './lot-of.js';
+import { sampleMeasured, withMeasured } from './measured-module.js';
+import { type PerQuantity, perQuantity } from './quantity-order.js';
 import { uniformsOf } from './streams.js';
 
 /**
  * The modules of one instance by their ids: drawn for populations, as written for explicit stocks.
  *
  * What is drawn for a module depends on seed, block size, instance, its stock and its own id only. Candidates have no
- * part in it, so all of them get the same modules. All modules of a stock share the one lot of their instance. A pack may
- * take the cell draws of the modules it is compared with; its lot and module draws are its own all the same.
+ * part in it, so all of them get the same modules. Modules of one lot share what is drawn for it; a stock has one
+ * lot in an instance unless it says otherwise. A pack may take the cell draws of the modules it is compared with; its
+ * lot and module draws are its own all the same.
  *
  * @param instance from 1
  * @throws RangeError if the instance is not a whole number from 1, or a stock has laws or correlations that cannot be
@@ -27,15 +30,25 @@ function samplePopulation(seed: string, stock: PopulationStock, address: BlockAd
   const ofStock = { seed, ...address, stock: stock.key, module: null, cell: null };
   const drawModule = levelSampler(stock, 'module');
   const drawCell = levelSampler(stock, 'cell');
-  const lot = levelSampler(stock, 'lot')(uniformsOf({ ...ofStock, level: 'lot' }));
+  const drawLot = levelSampler(stock, 'lot');
+  const lots = new Map<string | undefined, PerQuantity<number>>();
+  const lotNamed = (name: string | undefined): PerQuantity<number> => {
+    const lot = lots.get(name) ?? drawLot(uniformsOf({ ...ofStock, level: 'lot', lot: name }));
+    lots.set(name, lot);
+    return lot;
+  };
   return stock.moduleIds.map((id) => {
     const ofModule = { ...ofStock, module: id };
-    const own = drawModule(uniformsOf({ ...ofModule, level: 'module' }));
+    const uniformOf = uniformsOf({ ...ofModule, level: 'module' });
+    const lot = lotNamed(lotOf(stock, id, uniformsOf({ ...ofModule, level: 'lot' })));
+    const own = drawModule(uniformOf);
     const cells = Array.from({ length: stock.cellsInSeries }, (_, place) => {
       const drawnAs = stock.cellsDrawnAs?.[id]?.[place] ?? { stock: stock.key, module: id, cell: place + 1 };
       return drawCell(uniformsOf({ ...ofStock, ...drawnAs, level: 'cell' }));
     });
     const shared = perQuantity((name) => lot[name] + own[name]);
-    return composeModule(stock, id, shared, cells);
+    if (stock.measured === undefined) return composeModule(stock, id, shared, cells);
+    const measured = withMeasured(stock, sampleMeasured(stock.measured, id, uniformOf), { shared, cells });
+    return composeModule(stock, id, measured.shared, measured.cells);
   });
 }

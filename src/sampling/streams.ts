@@ -10,6 +10,8 @@ export interface DrawScope {
   readonly level: 'bank' | 'lot' | 'module' | 'cell';
   /** From 1, counted from the negative end. */
   readonly cell: number | null;
+  /** One lot of several by its name; left out for the one lot that every stock has. */
+  readonly lot?: string | undefined;
 }
 
 /** Uniform number strictly between 0 and 1 that belongs to a quantity: the same however often it is asked for. */
@@ -28,7 +30,8 @@ export type UniformOf = (quantity: string) => number;
  * @see Neves & Araujo 2011, Fast and small nonlinear pseudorandom number generators for computer simulation, PPAM
  */
 export function uniformsOf(scope: DrawScope): UniformOf {
-  const { seed, block, index, stock, module, level, cell } = scope;
-  const key = JSON.stringify([seed, block, index, stock, module, level, cell]);
+  const { seed, block, index, stock, module, level, cell, lot } = scope;
+  const names = [seed, block, index, stock, module, level, cell];
+  const key = JSON.stringify(lot === undefined ? names : [...names, lot]);
   return (quantity) => seedrandom.tychei(key + quantity).double();
 }

@@ -1,4 +1,5 @@
-import type { Candidate, Stock, Study } from './study.js';
+import type { QuantityName } from './quantities.js';
+import type { Candidate, PopulationStock, Stock, Study } from './study.js';
 
 /** Nominal values of a module that rules and warnings compare with the bank it stands in. */
 export interface NominalModule {
@@ -33,21 +34,20 @@ export function nominalModules(study: Study, candidate: Candidate): readonly (re
 
 function modulesOf(stock: Stock): readonly NominalModule[] {
   if (stock.kind === 'population') {
-    const { quantities } = stock;
     return stock.moduleIds.map((id) => ({
       id,
       stock: stock.key,
       cells: stock.cellsInSeries,
       ratedAh: stock.ratedAh,
-      capacityAh: quantities.capacityAh.nominal,
-      arrivalCharge: quantities.arrivalCharge.nominal,
-      resistanceOhm: quantities.resistanceOhm.nominal,
-      overVoltageV: quantities.overVoltageV.nominal,
-      overVoltageReleaseV: quantities.overVoltageReleaseV.nominal,
-      underVoltageV: quantities.underVoltageV.nominal,
-      underVoltageReleaseV: quantities.underVoltageReleaseV.nominal,
-      overCurrentChargeA: quantities.overCurrentChargeA.nominal,
-      overCurrentDischargeA: quantities.overCurrentDischargeA.nominal,
+      capacityAh: nominalOf(stock, id, 'capacityAh'),
+      arrivalCharge: nominalOf(stock, id, 'arrivalCharge'),
+      resistanceOhm: nominalOf(stock, id, 'resistanceOhm'),
+      overVoltageV: nominalOf(stock, id, 'overVoltageV'),
+      overVoltageReleaseV: nominalOf(stock, id, 'overVoltageReleaseV'),
+      underVoltageV: nominalOf(stock, id, 'underVoltageV'),
+      underVoltageReleaseV: nominalOf(stock, id, 'underVoltageReleaseV'),
+      overCurrentChargeA: nominalOf(stock, id, 'overCurrentChargeA'),
+      overCurrentDischargeA: nominalOf(stock, id, 'overCurrentDischargeA'),
     }));
   }
   return stock.modules.map((module) => ({
@@ -58,4 +58,11 @@ function modulesOf(stock: Stock): readonly NominalModule[] {
     arrivalCharge: Math.min(...module.arrivalCharge),
     resistanceOhm: Math.max(...module.resistanceOhm),
   }));
+}
+
+/** What a module is measured to have, else the nominal value of its stock. */
+function nominalOf({ quantities, measured }: PopulationStock, id: string, name: QuantityName): number {
+  const place = measured?.quantities.indexOf(name) ?? -1;
+  const own = measured?.rows === 'of-each-module' ? measured.valuesOf[id]?.[place] : undefined;
+  return own ?? quantities[name].nominal;
 }

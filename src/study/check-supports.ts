@@ -31,27 +31,43 @@ const POSSIBLE: Readonly<Record<QuantityName, Bound>> = {
 /** Sums of decimals reach 1 only up to rounding. */
 const ROUNDING = 1e-12;
 
-/** Refuses spreads that can give an impossible value: nothing is clipped when modules are drawn. */
+/**
+ * Refuses spreads that can give an impossible value: nothing is clipped when modules are drawn.
+ *
+ * @param measured quantities left out, since faults of measured values are told where they stand
+ */
 export function checkSupports(
   owner: StudyPath,
   spreads: Readonly<Record<QuantityName, ResolvedSpread>>,
   reading: Reading,
+  measured: readonly QuantityName[] = [],
 ): void {
-  for (const [name, bound] of Object.entries(POSSIBLE) as [QuantityName, Bound][]) {
+  for (const name of Object.keys(POSSIBLE) as QuantityName[]) {
     const { lower, upper } = spreads[name];
-    const least = bound === 'from -50 to 50 K' ? -50 : 0;
-    const most = bound === 'from -50 to 50 K' ? 50 : bound.endsWith('1') ? 1 : Number.POSITIVE_INFINITY;
-    const lowFails = bound.startsWith('above') ? !(lower > 0) : !(lower >= least - ROUNDING);
-    const highFails = !(upper <= most + ROUNDING);
-    if (!lowFails && !highFails) continue;
-    const key = QUANTITY_KEYS[name];
-    const shown = `${round(inUnitOfKey(key, lower))} to ${round(inUnitOfKey(key, upper))} ${unitOfKey(key)}`.trim();
-    const rule = bound === 'from 0 to 1' ? 'from 0 to 100 %' : bound;
+    const fault = measured.includes(name) ? undefined : impossibleValue(name, lower, upper);
+    if (fault === undefined) continue;
     reading.faultWith(
-      [...owner, ...key.split('.')],
-      `must be spread so that every value is ${rule} (levels summed, unbounded laws cut at 5 sd), got ${shown}`,
+      [...owner, ...QUANTITY_KEYS[name].split('.')],
+      `must be spread so that every value is ${fault.rule} (levels summed, unbounded laws cut at 5 sd), got ${fault.shown}`,
     );
   }
+}
+
+/** @returns the rule that a quantity breaks somewhere between two values, with these in words; undefined if none */
+export function impossibleValue(
+  name: QuantityName,
+  lower: number,
+  upper: number,
+): { readonly rule: string; readonly shown: string } | undefined {
+  const bound = POSSIBLE[name];
+  const least = bound === 'from -50 to 50 K' ? -50 : 0;
+  const most = bound === 'from -50 to 50 K' ? 50 : bound.endsWith('1') ? 1 : Number.POSITIVE_INFINITY;
+  const lowFails = bound.startsWith('above') ? !(lower > 0) : !(lower >= least - ROUNDING);
+  const highFails = !(upper <= most + ROUNDING);
+  if (!lowFails && !highFails) return undefined;
+  const key = QUANTITY_KEYS[name];
+  const shown = `${round(inUnitOfKey(key, lower))} to ${round(inUnitOfKey(key, upper))} ${unitOfKey(key)}`.trim();
+  return { rule: bound === 'from 0 to 1' ? 'from 0 to 100 %' : bound, shown };
 }
 
 function round(value: number): number {

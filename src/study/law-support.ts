@@ -1,7 +1,6 @@
+import { cutWeibull } from '../mathematics/weibull.js';
+import { CUT_SDS, mixtureMean } from './law-moments.js';
 import type { Law } from './study.js';
-
-/** Unbounded laws are cut at so many standard deviations on either side. */
-const CUT_SDS = 5;
 
 /**
  * Least and greatest deviation that a law can give after its cut, in the unit of the law.
@@ -18,6 +17,28 @@ export function lawSupport(law: Law, nominal: number): { readonly lower: number;
       return { lower: -CUT_SDS * law.sd, upper: CUT_SDS * law.sd };
     case 'truncated-normal':
       return { lower: law.lower, upper: law.upper };
+    case 'triangular': {
+      const mean = (2 * law.halfWidth * (1 + law.peakFraction)) / 3;
+      return { lower: -mean, upper: 2 * law.halfWidth - mean };
+    }
+    case 'beta': {
+      const mean = (2 * law.halfWidth * law.alpha) / (law.alpha + law.beta);
+      return { lower: -mean, upper: 2 * law.halfWidth - mean };
+    }
+    case 'weibull': {
+      const { lower, upper, mean, uncutSd } = cutWeibull(law.shape, CUT_SDS);
+      return { lower: (law.sd * (lower - mean)) / uncutSd, upper: (law.sd * (upper - mean)) / uncutSd };
+    }
+    case 'resampled':
+      return { lower: law.values[0] ?? 0, upper: law.values.at(-1) ?? 0 };
+    case 'mixture': {
+      const ends = law.parts.map(({ at, law: own }) => ({ at, ...lawSupport(own, nominal) }));
+      const mean = mixtureMean(law, nominal);
+      return {
+        lower: law.factor * (Math.min(...ends.map(({ at, lower }) => at + lower)) - mean),
+        upper: law.factor * (Math.max(...ends.map(({ at, upper }) => at + upper)) - mean),
+      };
+    }
     case 'uniform':
       return { lower: -law.halfWidth, upper: law.halfWidth };
     case 'lognormal': {

@@ -3,9 +3,9 @@ import type { Problem } from './problem.js';
 import { showValue } from './show-value.js';
 
 const LONGEST_TEXT = 20_000_000;
-const MOST_ROWS = 200_000;
+export const MOST_ROWS = 200_000;
 /** More faults of one table than anyone reads. */
-const MOST_PROBLEMS = 20;
+export const MOST_PROBLEMS = 20;
 
 /** A column that a table must have, or may have if it is optional. */
 export interface TableColumn {
@@ -26,7 +26,8 @@ export interface NumericTable {
   readonly lines: readonly number[];
 }
 
-interface Cell {
+/** A cell with the place it stands at in its line. */
+export interface Cell {
   readonly text: string;
   /** From 1. */
   readonly column: number;
@@ -51,8 +52,7 @@ export function readNumericTable(
     fault(1, 1, '', `must be a table of at most ${LONGEST_TEXT} characters, got ${text.length}`);
     return { problems };
   }
-  const lines = text.replace(/^\uFEFF/, '').split(/\r\n|\n|\r/);
-  while (lines.length > 0 && lines.at(-1)?.trim() === '') lines.pop();
+  const lines = linesOf(text);
   const names = wanted.flatMap(({ name, isOptional }) => (isOptional ? [] : [name])).join(',');
   if (lines.length === 0 || !(lines[0] ?? '').includes(',')) {
     const got = lines.length === 0 ? 'an empty file' : showValue(lines[0]);
@@ -87,6 +87,13 @@ export function readNumericTable(
   return problems.length > 0 ? { problems } : { table: { columns, lines: rowLines } };
 }
 
+/** @returns the lines of a table without its byte order mark and blank lines at the end */
+export function linesOf(text: string): readonly string[] {
+  const lines = text.replace(/^\uFEFF/, '').split(/\r\n|\n|\r/);
+  while (lines.length > 0 && lines.at(-1)?.trim() === '') lines.pop();
+  return lines;
+}
+
 /** The wanted columns in the order of the header. */
 function orderOf(
   header: readonly Cell[],
@@ -115,7 +122,8 @@ function orderOf(
   return order;
 }
 
-function cellsOf(line: string): Cell[] {
+/** @returns the cells of a line, without quotes and the spaces around them */
+export function cellsOf(line: string): Cell[] {
   let column = 1;
   return line.split(',').map((raw) => {
     const text = raw.trim();
@@ -127,7 +135,8 @@ function cellsOf(line: string): Cell[] {
 
 const DECIMAL = /^[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?$/;
 
-function numberOf(text: string): number | undefined {
+/** @returns the number that a cell holds in decimal notation, undefined if it holds none */
+export function numberOf(text: string): number | undefined {
   if (!DECIMAL.test(text)) return undefined;
   const value = Number(text);
   return Number.isFinite(value) ? value : undefined;

@@ -66,4 +66,15 @@ export class Reading {
     this.inputs.push({ path: file, text: read.text });
     return read.text;
   }
+
+  /** Records the problems of a file that the study names, once if several parts of the study read it. */
+  addTableProblems(problems: readonly Problem[]): void {
+    for (const problem of problems) {
+      const isKnown = this.problems.some(
+        ({ file, line, column, message }) =>
+          file === problem.file && line === problem.line && column === problem.column && message === problem.message,
+      );
+      if (!isKnown) this.problems.push(problem);
+    }
+  }
 }

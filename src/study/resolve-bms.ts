@@ -89,7 +89,7 @@ function resolveBleed(layers: Layers<NonNullable<BmsInput['bleed']>>, startV: nu
 }
 
 /** Thresholds of one BMS must stand in order for every value that their spreads allow. */
-function checkThresholds(
+export function checkThresholds(
   layers: Layers<BmsInput>,
   spreads: Readonly<Record<BmsQuantity, ResolvedSpread>>,
   reading: Reading,

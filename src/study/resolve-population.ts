@@ -5,14 +5,17 @@ import { resolveCorrelations } from './correlation.js';
 import { gradeLayer } from './grade.js';
 import { DEFAULT_GRADE } from './grade-name.js';
 import { type Layer, Layers } from './layers.js';
+import { resolveLots } from './lots.js';
 import type { OcvIndex } from './ocv.js';
 import type { OriginSource } from './origin.js';
 import { QUANTITIES, type QuantityName } from './quantities.js';
+import { QUANTITY_KEYS } from './quantity-keys.js';
 import type { Reading } from './reading.js';
-import { resolveBms } from './resolve-bms.js';
+import { checkThresholds, resolveBms } from './resolve-bms.js';
+import { resolveMeasured } from './resolve-measured.js';
 import { type ResolvedSpread, resolveSpread } from './resolve-spread.js';
 import type { StockInput } from './stock.js';
-import type { CellModel, PopulationStock, Spread } from './study.js';
+import type { CellModel, Correlation, PopulationStock, Spread } from './study.js';
 import { renderPath, type StudyPath } from './study-path.js';
 import { inUnitOfKey, siFromKey } from './units.js';
 
@@ -59,8 +62,17 @@ export function resolvePopulation(
   const correlations = resolveCorrelations(layers, reading);
   const cell = resolveCell(layers, ofModule.resistanceOhm.nominal, ocv, reading);
   const bms = resolveBms(layers.inside('bms'), reading);
-  const resolved = { ...ofModule, ...bms.spreads };
-  checkSupports(owner, resolved, reading);
+  const lots = resolveLots(own, modules, reading);
+  const asSpread = { ...ofModule, ...bms.spreads };
+  const table = own.pick('measured');
+  const measured =
+    table && resolveMeasured(table, { owner, moduleIds: modules, cellsInSeries, spreads: asSpread }, reading);
+  const resolved = measured?.spreads ?? asSpread;
+  checkSupports(owner, resolved, reading, measured?.measured.quantities);
+  if (measured !== undefined) {
+    checkThresholds(layers.inside('bms'), resolved, reading);
+    warnOfSplitCorrelations(key, correlations, measured.measured.quantities, reading);
+  }
   return {
     kind: 'population',
     key,
@@ -71,7 +83,25 @@ export function resolvePopulation(
     correlations,
     cell,
     bms: bms.settings,
+    ...(lots !== undefined && { lots }),
+    ...(measured !== undefined && { measured: measured.measured }),
   };
+}
+
+/** What is measured is not drawn, so nothing that is drawn can follow it. */
+function warnOfSplitCorrelations(
+  key: string,
+  correlations: readonly Correlation[],
+  measured: readonly QuantityName[],
+  reading: Reading,
+): void {
+  for (const { level, of } of correlations) {
+    if (level === 'cell' || of.every((name) => !measured.includes(name))) continue;
+    const [one, other] = of.map((name) => QUANTITY_KEYS[name]);
+    reading.warnings.push(
+      `stock ${key}: a correlation of ${one} and ${other} at level ${level} has no effect, since not both are drawn`,
+    );
+  }
 }
 
 /** The label's capacity; a stock that tells only its nominal capacity is rated at that. */

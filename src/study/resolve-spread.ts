@@ -1,8 +1,11 @@
+import type { LawInput } from './law.js';
+import { isFixed, isInPercent, lawInSi } from './law-in-si.js';
 import { lawSupport } from './law-support.js';
+import { lawWords } from './law-words.js';
 import type { Layers } from './layers.js';
 import type { OriginSource } from './origin.js';
 import type { Reading } from './reading.js';
-import type { LawInput, Level, SpreadInput, SpreadMapping } from './spread.js';
+import type { Level, SpreadInput, SpreadMapping } from './spread.js';
 import type { Law } from './study.js';
 import { renderPath, type StudyPath } from './study-path.js';
 import { siFromKey, unitOfKey } from './units.js';
@@ -49,7 +52,8 @@ export function resolveSpread<T extends object, K extends keyof T & string>(
   const nominalSi = siFromKey(key, nominal.value);
   const resolved = (level: Level): Law => {
     const part = parts.get(level);
-    return part === undefined ? { law: 'fixed' } : lawInSi(part, key, nominalSi, relative, reading);
+    if (part === undefined) return { law: 'fixed' };
+    return lawInSi(part.value, { key, nominalSi, relative, path: part.path, reading });
   };
   const laws = { lot: resolved('lot'), module: resolved('module'), cell: resolved('cell'), bank: resolved('bank') };
   const own = [...layers.owner, key];
@@ -63,7 +67,7 @@ export function resolveSpread<T extends object, K extends keyof T & string>(
     if (isFixed(value)) continue;
     reading.origins.push({
       path: renderPath([...own, level]),
-      value: wordsOf(value, unitOfKey(key)),
+      value: lawWords(value, laws[level], { key, nominalSi, relative }),
       unit: '',
       source,
     });
@@ -107,66 +111,4 @@ function lawWritten(written: SpreadMapping, level: Level): { value: LawInput; ke
   const percent = written[`${level}_sd_percent`];
   if (percent !== undefined) return { value: { law: 'normal', sd_percent: percent }, key: `${level}_sd_percent` };
   return undefined;
-}
-
-function isFixed(law: LawInput): boolean {
-  if (law.law === 'fixed') return true;
-  if (law.law === 'uniform') return (law.half_width ?? law.half_width_percent) === 0;
-  return (law.sd ?? law.sd_percent) === 0;
-}
-
-function isInPercent(law: LawInput): boolean {
-  if (law.law === 'fixed') return true;
-  const sd = 'sd' in law && law.sd !== undefined;
-  const halfWidth = 'half_width' in law && law.half_width !== undefined;
-  return !sd && !halfWidth;
-}
-
-function lawInSi(part: Part<LawInput>, key: string, nominalSi: number, relative: boolean, reading: Reading): Law {
-  const law = part.value;
-  if (law.law === 'fixed' || isFixed(law)) return { law: 'fixed' };
-  const si = (own: number | undefined, percent: number | undefined): number => {
-    if (own !== undefined) return siFromKey(key, own);
-    return ((percent ?? 0) / 100) * (relative ? 1 : Math.abs(nominalSi));
-  };
-  switch (law.law) {
-    case 'normal':
-      return { law: 'normal', sd: si(law.sd, law.sd_percent) };
-    case 'lognormal':
-      if (!(nominalSi > 0)) {
-        reading.fault(part.path, 'another law where the nominal value is not above 0');
-        return { law: 'fixed' };
-      }
-      return { law: 'lognormal', sd: si(law.sd, law.sd_percent) };
-    case 'uniform':
-      return { law: 'uniform', halfWidth: si(law.half_width, law.half_width_percent) };
-    case 'truncated-normal': {
-      const halfWidth = si(law.half_width, law.half_width_percent);
-      if (!(halfWidth > 0)) {
-        reading.fault(part.path, 'a truncated normal law with a half width above 0');
-        return { law: 'fixed' };
-      }
-      return { law: 'truncated-normal', sd: si(law.sd, law.sd_percent), lower: -halfWidth, upper: halfWidth };
-    }
-  }
-}
-
-/** @returns the law in a few words, e.g. `sd 0.012 V, cut at +-0.04 V`; without the name of a law it is normal */
-function wordsOf(law: LawInput, unit: string): string {
-  const amount = (own: number | undefined, percent: number | undefined): string => {
-    const [value, suffix] = own === undefined ? [percent, '%'] : [own, unit === '%' ? 'points' : unit];
-    return `${value} ${suffix}`.trim();
-  };
-  switch (law.law) {
-    case 'fixed':
-      return 'none';
-    case 'normal':
-      return `sd ${amount(law.sd, law.sd_percent)}`;
-    case 'lognormal':
-      return `lognormal, sd ${amount(law.sd, law.sd_percent)}`;
-    case 'uniform':
-      return `uniform, +-${amount(law.half_width, law.half_width_percent)}`;
-    case 'truncated-normal':
-      return `sd ${amount(law.sd, law.sd_percent)}, cut at +-${amount(law.half_width, law.half_width_percent)}`;
-  }
 }

@@ -59,6 +59,7 @@ function stockContent(stock: Stock, used: ReadonlySet<string>, study: Study, isW
       cell: { ...cell, ocv: study.ocvTables[cell.ocv] },
       // Left out where there are none, so that keys of studies without them stay as they were.
       ...(drawnAs.length > 0 && { cellsDrawnAs: Object.fromEntries(drawnAs) }),
+      ...ofModules(stock, moduleIds),
     };
   }
   const modules = stock.modules.filter(({ id }) => used.has(id));
@@ -78,4 +79,14 @@ function atReference(stock: PopulationStock): { readonly cell: object & { ocv: n
   const { activation: _activation, ...cell } = stock.cell;
   const { temperatureOffsetK: _offset, ...quantities } = stock.quantities;
   return { cell, quantities };
+}
+
+/** What a stock says of single modules, as far as these are used. */
+function ofModules({ lots, measured }: PopulationStock, moduleIds: readonly string[]): Partial<PopulationStock> {
+  const used = <V>(values: Readonly<Record<string, V>>): Record<string, V> =>
+    Object.fromEntries(Object.entries(values).filter(([id]) => moduleIds.includes(id)));
+  return {
+    ...(lots?.kind === 'by-name' && { lots: { ...lots, lotOf: used(lots.lotOf) } }),
+    ...(measured?.rows === 'of-each-module' && { measured: { ...measured, valuesOf: used(measured.valuesOf) } }),
+  };
 }

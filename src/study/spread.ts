@@ -1,41 +1,6 @@
 import { z } from 'zod';
-import { amount } from './amount.js';
-import { atMostOneOf, exactlyOneOf, section } from './section.js';
-
-const amountOf = amount({ atLeast: 0, atMost: 1e6 }, { description: 'In the unit of the quantity.' });
-const percentOf = amount({ atLeast: 0, atMost: 1000 }, { description: 'Percent of the nominal value.' });
-const sdOrPercent = exactlyOneOf('sd', 'sd_percent');
-
-/** Law of a deviation, mean 0, in the unit of the quantity or in percent of its nominal value. */
-const LAW = z.discriminatedUnion(
-  'law',
-  [
-    section({ law: z.literal('fixed') }),
-    section({ law: z.literal('normal'), sd: amountOf.optional(), sd_percent: percentOf.optional() }).refine(
-      ...sdOrPercent,
-    ),
-    section({
-      law: z.literal('truncated-normal'),
-      sd: amountOf.optional(),
-      sd_percent: percentOf.optional(),
-      half_width: amountOf.optional(),
-      half_width_percent: percentOf.optional(),
-    })
-      .refine(...sdOrPercent)
-      .refine(...exactlyOneOf('half_width', 'half_width_percent')),
-    section({ law: z.literal('lognormal'), sd: amountOf.optional(), sd_percent: percentOf.optional() }).refine(
-      ...sdOrPercent,
-    ),
-    section({
-      law: z.literal('uniform'),
-      half_width: amountOf.optional(),
-      half_width_percent: percentOf.optional(),
-    }).refine(...exactlyOneOf('half_width', 'half_width_percent')),
-  ],
-  'a law, e.g. {law: lognormal, sd_percent: 15}',
-);
-
-export type LawInput = z.infer<typeof LAW>;
+import { amountOf, LAW, type LawInput, percentOf } from './law.js';
+import { atMostOneOf, section } from './section.js';
 
 const SPREAD_RULE = 'a number, or a mapping such as {nominal: 100, module_sd_percent: 1}';
 

@@ -4,6 +4,8 @@ import { POPULATION_BMS } from './bms.js';
 import { commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
 import { CORRELATIONS } from './correlation.js';
 import { GRADES } from './grade-name.js';
+import { LOTS } from './lots.js';
+import { MEASURED } from './measured.js';
 import { MODULE_ID, MODULE_ID_RULE, moduleId } from './names.js';
 import { named, section } from './section.js';
 import { cellSpread, moduleSpread, pointsSpread } from './spread.js';
@@ -43,6 +45,8 @@ export const POPULATION = section({
     })
     .optional(),
   bms: POPULATION_BMS.optional(),
+  lots: LOTS.optional(),
+  measured: MEASURED.optional(),
 });
 
 /** A population as written. */

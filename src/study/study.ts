@@ -51,7 +51,30 @@ export type Law =
   | { readonly law: 'truncated-normal'; readonly sd: number; readonly lower: number; readonly upper: number }
   /** nominal x (F - 1) with F lognormal of mean 1; `sd` in the same unit as for the other laws. */
   | { readonly law: 'lognormal'; readonly sd: number }
-  | { readonly law: 'uniform'; readonly halfWidth: number };
+  | { readonly law: 'uniform'; readonly halfWidth: number }
+  /** `halfWidth` is half of the whole range; the peak lies at a fraction of the way from its lower to its upper end. */
+  | { readonly law: 'triangular'; readonly halfWidth: number; readonly peakFraction: number }
+  /** `sd` is that of the law without its cut. */
+  | { readonly law: 'weibull'; readonly shape: number; readonly sd: number }
+  | { readonly law: 'beta'; readonly alpha: number; readonly beta: number; readonly halfWidth: number }
+  /** Every value is one of these, in ascending order, their mean taken off. */
+  | { readonly law: 'resampled'; readonly values: readonly number[] }
+  | MixtureLaw;
+
+/** `factor` times the mixture of the parts, moved so that its mean is 0. */
+export interface MixtureLaw {
+  readonly law: 'mixture';
+  readonly factor: number;
+  readonly parts: readonly MixturePart[];
+}
+
+/** A part of a mixture: the values of its law, moved by `at`. */
+export interface MixturePart {
+  /** Weights of a mixture sum to 1. */
+  readonly weight: number;
+  readonly at: number;
+  readonly law: Exclude<Law, MixtureLaw>;
+}
 
 /** value = nominal x (1 + lot + module + cell) if `relative`, else nominal + lot + module + cell. */
 export interface Spread {
@@ -83,6 +106,10 @@ export interface PopulationStock {
   readonly bms: BmsSettings;
   /** By module: whose draws its cells take, one per cell from the negative end. Left out where all cells draw their own. */
   readonly cellsDrawnAs?: Readonly<Record<string, readonly DrawnCell[]>>;
+  /** Absent: all modules are of one lot. */
+  readonly lots?: Lots;
+  /** Absent: nothing was measured. */
+  readonly measured?: MeasuredModules;
 }
 
 /** Address of the draws of a cell. */
@@ -92,6 +119,24 @@ export interface DrawnCell {
   /** From 1, counted from the negative end. */
   readonly cell: number;
 }
+
+/** Lots of a stock: so many, each module coming from one of them by chance, or the lot of each module by its name. */
+export type Lots =
+  | { readonly kind: 'by-chance'; readonly count: number }
+  | { readonly kind: 'by-name'; readonly lotOf: Readonly<Record<string, string>> };
+
+/**
+ * Measured values of modules. They stand for nominal value, lot and module deviation of their quantities; cells keep
+ * their deviations, moved so that the smallest cell has the measured capacity, and their mean any other measured value.
+ */
+export type MeasuredModules = {
+  readonly quantities: readonly QuantityName[];
+  /** Standard deviation of the measurement, quantity by quantity; 0 = exact. */
+  readonly uncertaintySd: readonly number[];
+} & (
+  | { readonly rows: 'of-each-module'; readonly valuesOf: Readonly<Record<string, readonly number[]>> }
+  | { readonly rows: 'resampled'; readonly values: readonly (readonly number[])[] }
+);
 
 /** Modules written down one by one: nothing is drawn. */
 export interface ExplicitStock {

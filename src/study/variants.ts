@@ -1,5 +1,6 @@
+import { meanOf } from '../mathematics/mean.js';
 import type { QuantityName } from './quantities.js';
-import type { BankSpread, Law, PopulationStock, Spread, Study } from './study.js';
+import type { BankSpread, Law, MeasuredModules, PopulationStock, Spread, Study } from './study.js';
 
 /** Which spreads of a study a variant changes; a key left out stands for all. */
 export interface SpreadChoice {
@@ -44,7 +45,22 @@ function scaledStock(stock: PopulationStock, chosen: SpreadChoice, factor: numbe
       return [name, isChosen ? scaledSpread(spread, chosen, factor) : spread];
     }),
   ) as Record<QuantityName, Spread>;
-  return { ...stock, quantities };
+  const { measured } = stock;
+  return { ...stock, quantities, ...(measured && { measured: scaledMeasured(measured, chosen, factor) }) };
+}
+
+/** Measured values spread between modules: by their uncertainty, and by the row where that is drawn. */
+function scaledMeasured(measured: MeasuredModules, { quantity, level }: SpreadChoice, factor: number): MeasuredModules {
+  if (level !== undefined && level !== 'module') return measured;
+  const isChosen = (place: number): boolean => quantity === undefined || measured.quantities[place] === quantity;
+  const uncertaintySd = measured.uncertaintySd.map((sd, place) => (isChosen(place) ? factor * sd : sd));
+  if (measured.rows === 'of-each-module') return { ...measured, uncertaintySd };
+  const means = measured.quantities.map((_, place) => meanOf(measured.values.map((row) => row[place] ?? Number.NaN)));
+  const scaled = (value: number, place: number): number => {
+    const mean = means[place] ?? Number.NaN;
+    return isChosen(place) ? mean + factor * (value - mean) : value;
+  };
+  return { ...measured, uncertaintySd, values: measured.values.map((row) => row.map(scaled)) };
 }
 
 function scaledSpread(spread: Spread, { level }: SpreadChoice, factor: number): Spread {
@@ -62,7 +78,15 @@ function scaledLaw(law: Law, factor: number, base: number): Law {
     case 'truncated-normal':
       return { ...law, sd: factor * law.sd, lower: factor * law.lower, upper: factor * law.upper };
     case 'uniform':
+    case 'triangular':
+    case 'beta':
       return { ...law, halfWidth: factor * law.halfWidth };
+    case 'weibull':
+      return { ...law, sd: factor * law.sd };
+    case 'resampled':
+      return { ...law, values: law.values.map((value) => factor * value) };
+    case 'mixture':
+      return { ...law, factor: factor * law.factor };
     case 'lognormal': {
       const variance = Math.log1p((law.sd / base) ** 2);
       return { ...law, sd: base * Math.sqrt(Math.expm1(factor * factor * variance)) };

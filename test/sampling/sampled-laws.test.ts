@@ -37,6 +37,25 @@ describe('a law', () => {
     ],
     ['lognormal', { law: 'lognormal', sd: 3 }, (x) => phiBySeries((Math.log(x / 10) + (s * s) / 2) / s)],
     ['uniform', { law: 'uniform', halfWidth: 4 }, (x) => (x - 6) / 8],
+    // Peak at the lower end: F = 1 - (1 - t)^2 with t from 0 to 1 over 6, mean at a third, 10.
+    ['triangular', { law: 'triangular', halfWidth: 3, peakFraction: 0 }, (x) => 1 - (1 - (x - 8) / 6) ** 2],
+    // Exponential with its cut at 6, whose mean then is (1 - 7 e^-6) / (1 - e^-6) = 0.985091.
+    ['weibull', { law: 'weibull', shape: 1, sd: 2 }, (x) => -Math.expm1(-((x - 10) / 2 + 0.985091)) / -Math.expm1(-6)],
+    // Beta 1, 3: F = 1 - (1 - t)^3, mean at a quarter.
+    ['beta', { law: 'beta', alpha: 1, beta: 3, halfWidth: 4 }, (x) => 1 - (1 - (x - 8) / 8) ** 3],
+    // Three quarters within +-1 of 9, a quarter within +-2 of 13: mean 10 as it stands.
+    [
+      'mixture',
+      {
+        law: 'mixture',
+        factor: 1,
+        parts: [
+          { weight: 0.75, at: 0, law: { law: 'uniform', halfWidth: 1 } },
+          { weight: 0.25, at: 4, law: { law: 'uniform', halfWidth: 2 } },
+        ],
+      },
+      (x) => (x < 10.5 ? 0.75 * Math.min(1, (x - 8) / 2) : 0.75) + 0.25 * Math.max(0, (x - 11) / 4),
+    ],
   ])('%s gives samples of its distribution', (_, law, cdf) => {
     const sample = standby(law);
     expect(kolmogorovDistance(sample, cdf)).toBeLessThan(kolmogorovBand(sample.length));
@@ -123,6 +142,28 @@ describe('a correlation', () => {
     const spearman = correlation(ranks(one), ranks(other));
     const distance = Math.abs(Math.atanh(spearman) - Math.atanh((6 / Math.PI) * Math.asin(-0.35)));
     // Standard error of artanh of a rank correlation: 1.03 / sqrt(n - 3) (Fieller, Hartley, Pearson 1957, Biometrika 44).
+    expect(distance).toBeLessThan((BAND * 1.03) / Math.sqrt(one.length - 3));
+  });
+
+  test.each<[Law['law'], Law]>([
+    ['triangular', { law: 'triangular', halfWidth: 0.03, peakFraction: 0.2 }],
+    ['weibull', { law: 'weibull', shape: 1.5, sd: 0.01 }],
+    ['beta', { law: 'beta', alpha: 2, beta: 4, halfWidth: 0.03 }],
+    [
+      'mixture',
+      {
+        law: 'mixture',
+        factor: 1,
+        parts: [
+          { weight: 0.9, at: 0, law: { law: 'normal', sd: 0.01 } },
+          { weight: 0.1, at: -0.1, law: { law: 'normal', sd: 0.02 } },
+        ],
+      },
+    ],
+  ])('between %s laws has it too', (_, law) => {
+    const { one, other } = pairOf(0.6, law);
+    const spearman = correlation(ranks(one), ranks(other));
+    const distance = Math.abs(Math.atanh(spearman) - Math.atanh((6 / Math.PI) * Math.asin(0.3)));
     expect(distance).toBeLessThan((BAND * 1.03) / Math.sqrt(one.length - 3));
   });
 

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { twinStudy, withoutSpread, withScaledSpread } from '../../src/study/variants.js';
-import { populationOf, studyOf, studyWith } from './study-under-test.js';
+import { populationOf, studyOf, studyWith, studyWithStock } from './study-under-test.js';
 
 const study = studyOf(
   studyWith({ duty: 'duty: {phases: [{rest_h: 1}], load_factor: {nominal: 1, bank_sd_percent: 5}}' }),
@@ -34,6 +34,35 @@ describe('a variant', () => {
     expect(one.overVoltageV).toEqual(populationOf(study, 'house').quantities.overVoltageV);
     const half = populationOf(withScaledSpread(study, {}, 0.5), 'house').quantities;
     expect(half.overVoltageV.module).toEqual({ law: 'truncated-normal', sd: 0.006, lower: -0.02, upper: 0.02 });
+  });
+
+  it('scales measured values about their mean, and their uncertainty', () => {
+    const files = { 'lab.csv': 'capacity_Ah,standby_mA\n94,8\n96,9\n98,13\n' };
+    const drawn = studyOf(
+      studyWithStock([
+        'rated_Ah: 100',
+        'measured: {file: lab.csv, rows: resampled, uncertainty: {capacity_Ah: 0.5, standby_mA: 1}}',
+      ]),
+      files,
+    );
+    const { measured } = populationOf(withScaledSpread(drawn, { quantity: 'capacityAh' }, 0.5), 'house');
+    // By hand: 96 +- 1 in place of 96 +- 2; standby stays.
+    expect(measured).toEqual({
+      quantities: ['capacityAh', 'standbyA'],
+      uncertaintySd: [0.25, 0.001],
+      rows: 'resampled',
+      values: [
+        [95, 0.008],
+        [96, 0.009],
+        [97, 0.013],
+      ],
+    });
+    expect(populationOf(withScaledSpread(drawn, { level: 'cell' }, 0), 'house').measured).toEqual(
+      populationOf(drawn, 'house').measured,
+    );
+    const twin = populationOf(twinStudy(drawn), 'house').measured;
+    expect(twin?.rows === 'resampled' && new Set(twin.values.map(([capacity]) => capacity))).toEqual(new Set([96]));
+    expect(twin?.uncertaintySd).toEqual([0, 0]);
   });
 
   it('refuses a negative factor', () => {
