@@ -5,6 +5,7 @@ import { gradeLayer, NOMINAL_OVER_VOLTAGE_V, NOMINAL_UNDER_VOLTAGE_V } from './g
 import { DEFAULT_GRADE } from './grade-name.js';
 import { type Layer, Layers } from './layers.js';
 import type { OcvIndex } from './ocv.js';
+import { resolveModuleRatings } from './ratings.js';
 import type { Reading } from './reading.js';
 import { resolveBms } from './resolve-bms.js';
 import { showValue } from './show-value.js';
@@ -71,6 +72,7 @@ function resolveModule(
     pathResistanceOhm: layers.si('path_resistance_mOhm', reading) + layers.si('joint_resistance_mOhm', reading),
     standbyA: layers.si('standby_mA', reading),
   };
+  const ratings = resolveModuleRatings(layers.inside('ratings'), reading);
   const bms = resolveBms(layers.inside('bms') as Layers<BmsInput>, reading);
   return {
     ...ofModule,
@@ -83,6 +85,7 @@ function resolveModule(
     bleedA: bms.spreads.bleedA.nominal,
     bleedStartV: bms.spreads.bleedStartV.nominal,
     bms: bms.settings,
+    ...(ratings && { ratings }),
   };
 }
 

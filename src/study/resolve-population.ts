@@ -8,6 +8,7 @@ import { type Layer, Layers } from './layers.js';
 import type { OcvIndex } from './ocv.js';
 import type { OriginSource } from './origin.js';
 import { QUANTITIES, type QuantityName } from './quantities.js';
+import { resolveModuleRatings } from './ratings.js';
 import type { Reading } from './reading.js';
 import { resolveBms } from './resolve-bms.js';
 import { type ResolvedSpread, resolveSpread } from './resolve-spread.js';
@@ -60,6 +61,7 @@ export function resolvePopulation(
   const bms = resolveBms(layers.inside('bms'), reading);
   const resolved = { ...ofModule, ...bms.spreads };
   checkSupports(owner, resolved, reading);
+  const ratings = resolveModuleRatings(layers.inside('ratings'), reading);
   return {
     kind: 'population',
     key,
@@ -70,6 +72,7 @@ export function resolvePopulation(
     correlations,
     cell,
     bms: bms.settings,
+    ...(ratings && { ratings }),
   };
 }
 

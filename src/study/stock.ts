@@ -5,6 +5,7 @@ import { commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from '.
 import { CORRELATIONS } from './correlation.js';
 import { GRADES } from './grade-name.js';
 import { moduleId } from './names.js';
+import { MODULE_RATINGS } from './ratings.js';
 import { section } from './section.js';
 import { cellSpread, moduleSpread, pointsSpread } from './spread.js';
 
@@ -30,6 +31,7 @@ export const POPULATION = section({
   joint_resistance_mOhm: moduleSpread(POSSIBLE.seriesMOhm).optional(),
   correlation: CORRELATIONS.optional(),
   bms: POPULATION_BMS.optional(),
+  ratings: MODULE_RATINGS.optional(),
 });
 
 /** A population as written. */

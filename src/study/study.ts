@@ -1,4 +1,7 @@
 import type { QuantityName } from './quantities.js';
+import type { BankRatings, CustomNetwork, ModuleRatings, TakeOff } from './wiring-options.js';
+
+export type { BankRatings, CustomBranch, CustomNetwork, ModuleRatings, TakeOff } from './wiring-options.js';
 
 /**
  * The resolved study: what a study file means once every default, grade and copy is filled in and every unit converted.
@@ -81,6 +84,8 @@ export interface PopulationStock {
   readonly correlations: readonly Correlation[];
   readonly cell: CellModel;
   readonly bms: BmsSettings;
+  /** Absent if none is stated. */
+  readonly ratings?: ModuleRatings;
 }
 
 /** Modules written down one by one: nothing is drawn. */
@@ -174,6 +179,8 @@ export interface ModuleParameters {
   readonly bleedA: number;
   readonly bleedStartV: number;
   readonly bms: BmsSettings;
+  /** Of modules written down; absent if none is stated. */
+  readonly ratings?: ModuleRatings;
 }
 
 /** A duty: parts in sequence, each repeated, the whole again and again up to the horizon. */
@@ -218,7 +225,7 @@ export interface DutySegment {
 export interface Candidate {
   readonly key: string;
   readonly title: string;
-  readonly wiring: 'strings' | 'cross-linked' | 'native';
+  readonly wiring: 'strings' | 'cross-linked' | 'native' | 'custom';
   /** Module ids of each string from its negative end; all strings equally long. */
   readonly strings: readonly (readonly string[])[];
   /** Leads of each string. */
@@ -230,6 +237,12 @@ export interface Candidate {
   readonly commissioning: 'as-received' | 'each-module-full';
   /** Bleed that replaces that of every module of this candidate, key by key; null = as the modules have it. */
   readonly bleed: BleedOverride | null;
+  /** Absent: a star of equal leads. */
+  readonly takeOff?: TakeOff;
+  /** The wiring `custom` only, which has no leads and links beside it. */
+  readonly network?: CustomNetwork;
+  /** Absent if none is stated. */
+  readonly ratings?: BankRatings;
 }
 
 export interface BleedOverride {

@@ -1,4 +1,5 @@
 import { type NominalModule, nominalModules } from './bank-module.js';
+import { countWarnings } from './rating-warnings.js';
 import type { Candidate, Study } from './study.js';
 
 /** Float this close below a release keeps the latch of an over-voltage trip from clearing, V per cell. */
@@ -14,6 +15,7 @@ export function studyWarnings(study: Study): readonly string[] {
     const strings = nominalModules(study, candidate);
     warnOfFloat(candidate, strings, (text) => warn(candidate, text));
     warnOfAbsorption(candidate, strings, (text) => warn(candidate, text));
+    for (const text of countWarnings(study, candidate)) warn(candidate, text);
   }
   const ofCandidates = [...warnings].map(([text, keys]) => `${text} (${keys.join(', ')})`);
   return [...ofCandidates, ...peakWarnings(study), ...bleedInForce(study)];
