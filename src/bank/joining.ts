@@ -5,14 +5,17 @@ import { ocvV } from './ocv-curves.js';
 
 /** What happens when the strings of a bank are put together. */
 export interface Joining {
-  /** Largest difference of open-circuit voltage between strings; with links also between modules of equal position, V. */
+  /**
+   * Largest difference of open-circuit voltage between strings; where strings are tied between their modules, also between
+   * modules of equal position, V.
+   */
   readonly differenceV: number;
   /** Largest current of a module at once, every path closed and nothing at the bus, A. */
   readonly currentA: number;
 }
 
 /** Voltage of every module without any current, standby included: open-circuit and hysteresis voltage of its cells, V. */
-export function openVoltagesV(bank: Bank, state: BankState): Float64Array {
+function openVoltagesV(bank: Bank, state: BankState): Float64Array {
   const moduleV = new Float64Array(bank.modules);
   for (let c = 0; c < bank.cells; c++) {
     moduleV[bank.moduleOfCell[c]] +=
@@ -31,7 +34,8 @@ export function joiningOf(bank: Bank, state: BankState): Joining | null {
     stringV[Math.floor(m / positions)] += volts;
   });
   let differenceV = Math.max(...stringV) - Math.min(...stringV);
-  if (wiring.links.some(({ isLink }) => isLink)) {
+  const tiesPositions = wiring.chains.some(({ modules }) => modules.length < positions);
+  if (tiesPositions) {
     for (let position = 0; position < positions; position++) {
       const atPosition = moduleV.filter((_, m) => m % positions === position);
       differenceV = Math.max(differenceV, Math.max(...atPosition) - Math.min(...atPosition));

@@ -367,7 +367,7 @@ export const MEASURES = [
     'mV',
     'first',
     'voltage difference at joining',
-    'Largest difference of open-circuit voltage between strings when the bank is put together, before any current; with links also between modules of equal position. Absent with one string.',
+    'Largest difference of open-circuit voltage between strings when the bank is put together, before any current; where strings are tied between their modules, also between modules of equal position. Absent with one string.',
   ),
   event(
     'joining_voltage_past_limit',

@@ -92,18 +92,23 @@ export function recordSharing(recorder: SharingRecorder, journey: Journey, stepS
 function recordChains({ peakA, sums, continuousA }: SharingRecorder, { work }: Journey, stepS: number): void {
   const { firstA, lastA, endAs } = work;
   const chains = firstA.length;
-  let above = false;
+  let above = 0;
   for (let i = 0; i < chains; i++) {
     const a = firstA[i];
     const b = lastA[i];
     const larger = Math.max(Math.abs(a), Math.abs(b));
     if (larger > peakA[i]) peakA[i] = larger;
-    const passedAs = Math.abs(endAs[i]);
     sums[SINGLES + i] += ((a * a + a * b + b * b) * stepS) / 3;
-    sums[SINGLES + chains + i] += passedAs;
-    if (passedAs > continuousA[i] * stepS) above = true;
+    sums[SINGLES + chains + i] += Math.abs(endAs[i]);
+    if (larger > continuousA[i])
+      above = Math.max(above, shareAbove(continuousA[i], Math.min(Math.abs(a), Math.abs(b)), larger));
   }
-  if (above) sums[ABOVE_S] += stepS;
+  sums[ABOVE_S] += above * stepS;
+}
+
+/** Share of a step in which a magnitude that runs straight from one value to the other is above a limit it passes. */
+function shareAbove(limit: number, smaller: number, larger: number): number {
+  return smaller >= limit ? 1 : (larger - limit) / (larger - smaller);
 }
 
 /** Across a path that leaks stands the voltage that drives its leak. */

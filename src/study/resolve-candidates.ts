@@ -114,7 +114,7 @@ function customNetwork(path: StudyPath, written: CandidateInput, reading: Readin
   const network = resolveNetwork(path, written.network, written.modules, reading);
   if (network !== undefined) {
     const modules = network.branches.filter(({ kind }) => kind === 'module').length;
-    const value = `${network.nodes} nodes, ${modules} modules, ${network.branches.length - modules} conductors`;
+    const value = `nodes ${network.nodes}, modules ${modules}, conductors ${network.branches.length - modules}`;
     reading.origins.push({ path: renderPath([...path, 'network']), value, unit: '', source: 'study' });
   }
   return network;

@@ -4,9 +4,12 @@ import { firstKeyOf } from './first-key.js';
 import type { Layers } from './layers.js';
 import type { Reading } from './reading.js';
 import type { TakeOff } from './study.js';
+import { renderPath } from './study-path.js';
+import { inUnitOfKey } from './units.js';
 
 /** Between the taps of neighbouring strings on a busbar, mOhm [own choice]. */
 export const DEFAULT_BUS_SEGMENT_MOHM = 0.1;
+const LEAST_SEGMENT_OHM = 1e-7;
 
 /** Keys of a bank or candidate that say where charger and load are connected, and what lies between the strings there. */
 export const takeOffKeys = {
@@ -48,7 +51,10 @@ export function resolveTakeOff(options: Layers<TakeOffInput>, strings: number, r
   if (key === 'bus_segment') {
     const conductor = options.setting('bus_segment', reading);
     ohm = conductorOhm(conductor);
-    if (!(ohm > 0)) reading.fault(options.pick('bus_segment')?.path ?? options.owner, 'a conductor above 0 mOhm');
+    const { path, source } = options.pick('bus_segment') ?? { path: options.owner, source: 'study' };
+    if (!(ohm >= LEAST_SEGMENT_OHM)) reading.faultWith(path, 'must be a conductor of at least 0.0001 mOhm, got less');
+    const value = String(Number(inUnitOfKey('mOhm', ohm).toPrecision(6)));
+    reading.origins.push({ path: renderPath([...options.owner, 'bus_segment_mOhm']), value, unit: 'mOhm', source });
   } else ohm = options.si('bus_segment_mOhm', reading);
   return { kind, segmentOhm: Array.from({ length: strings - 1 }, () => ohm) };
 }
