@@ -8,7 +8,13 @@ export interface ChainedWiring {
   /** Junctions, bus minus (0) and bus plus (1) first. */
   readonly nodes: number;
   readonly chains: readonly Chain[];
-  readonly links: readonly { readonly from: number; readonly to: number; readonly ohm: number }[];
+  readonly links: readonly {
+    readonly from: number;
+    readonly to: number;
+    readonly ohm: number;
+    /** A link ties strings to one another between their modules; other resistors belong to rails and leads. */
+    readonly isLink: boolean;
+  }[];
 }
 
 export interface Chain {
@@ -39,7 +45,7 @@ export function chainWiring(graph: WiringGraph): ChainedWiring {
   const nodeAt = (junction: number): number => nodeOf.get(junction) ?? BUS_MINUS;
 
   const chains: Chain[] = [];
-  const links: { from: number; to: number; ohm: number }[] = [];
+  const links: { from: number; to: number; ohm: number; isLink: boolean }[] = [];
   const walked = new Set<number>();
   for (const start of nodeOf.keys()) {
     for (const first of at[start]) {
@@ -47,6 +53,7 @@ export function chainWiring(graph: WiringGraph): ChainedWiring {
       let node = start;
       let index = first;
       let ohm = 0;
+      let isLink = false;
       const forward: number[] = [];
       const backward: number[] = [];
       for (;;) {
@@ -54,7 +61,10 @@ export function chainWiring(graph: WiringGraph): ChainedWiring {
         const branch = graph.branches[index];
         const onward = branch.from === node;
         if (branch.kind === 'module') (onward ? forward : backward).push(branch.module);
-        else ohm += branch.ohm;
+        else {
+          ohm += branch.ohm;
+          if (branch.kind === 'link') isLink = true;
+        }
         node = onward ? branch.to : branch.from;
         if (isJunction[node]) break;
         const next = at[node].find((other) => other !== index);
@@ -68,7 +78,7 @@ export function chainWiring(graph: WiringGraph): ChainedWiring {
       }
       if (forward.length > 0) chains.push({ from, to, modules: forward, ohm });
       else if (backward.length > 0) chains.push({ from: to, to: from, modules: backward.reverse(), ohm });
-      else links.push({ from, to, ohm });
+      else links.push({ from, to, ohm, isLink });
     }
   }
   chains.sort((a, b) => a.modules[0] - b.modules[0]);

@@ -1,9 +1,11 @@
-import { asciiText, wrapText } from '../output/plain-text.js';
+import { asciiText, SCREEN_COLUMNS, wrapText } from '../output/plain-text.js';
+import type { ProspectiveCurrent } from '../simulation/prospective-current.js';
 import type { Study } from '../study/study.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
 import { renderOrigins } from './origin-table.js';
 import type { Shell } from './shell.js';
+import { breakingWarnings, shortCircuitLines } from './short-circuit.js';
 import { bankCycles, type CheckAids, type Trial } from './trial.js';
 
 /** What `check` is told on the command line. */
@@ -21,13 +23,16 @@ export function checkCommand(options: CheckOptions, shell: Shell, aids: CheckAid
   const loaded = loadStudy(options.study, shell);
   if (loaded === null) return EXIT_STATUS.input;
   const { study } = loaded;
-  const warnings = [...loaded.warnings, ...twinWarnings(study, aids)];
+  const currents = aids.prospectiveCurrents(study);
+  const warnings = [...loaded.warnings, ...twinWarnings(study, aids), ...breakingWarnings(study, currents)];
   if (options.quiet) {
     for (const warning of warnings) shell.err(`warning: ${asciiText(warning)}\n`);
     return EXIT_STATUS.done;
   }
   const trial = aids.trial(study, shell.now);
-  shell.out(options.json ? renderCheckJson(loaded, warnings, trial) : renderCheck(loaded, warnings, trial));
+  shell.out(
+    options.json ? renderCheckJson(loaded, warnings, currents, trial) : renderCheck(loaded, warnings, currents, trial),
+  );
   return EXIT_STATUS.done;
 }
 
@@ -40,11 +45,21 @@ function twinWarnings(study: Study, aids: CheckAids): readonly string[] {
   ];
 }
 
-function renderCheck({ study, origins }: LoadedStudy, warnings: readonly string[], trial: Trial): string {
+function renderCheck(
+  { study, origins }: LoadedStudy,
+  warnings: readonly string[],
+  currents: readonly ProspectiveCurrent[],
+  trial: Trial,
+): string {
   const lines = [
     ...wrapText(asciiText(study.title)),
     '',
     ...renderOrigins(origins),
+    '',
+    'prospective short-circuit current, every path closed, full',
+    ...shortCircuitLines(study, currents).flatMap((line) =>
+      wrapText(line, SCREEN_COLUMNS, { first: '  ', others: '    ' }),
+    ),
     '',
     ...warnings.flatMap((warning) => wrapText(`warning: ${asciiText(warning)}`)),
     ...(warnings.length > 0 ? [''] : []),
@@ -56,9 +71,20 @@ function renderCheck({ study, origins }: LoadedStudy, warnings: readonly string[
   return `${lines.join('\n')}\n`;
 }
 
-function renderCheckJson({ study, origins }: LoadedStudy, warnings: readonly string[], trial: Trial): string {
+function renderCheckJson(
+  { study, origins }: LoadedStudy,
+  warnings: readonly string[],
+  currents: readonly ProspectiveCurrent[],
+  trial: Trial,
+): string {
   const estimate = { bank_cycles: bankCycles(study), minutes_on_one_thread: minutes(study, trial) };
-  return `${JSON.stringify({ study, origins, warnings, estimate }, null, 2)}\n`;
+  const shortCircuit = study.candidates.map(({ key }, index) => ({
+    candidate: key,
+    bank_A: currents[index]?.bankA,
+    string_A: currents[index]?.stringA,
+    string_fuse_A: currents[index]?.fuseA,
+  }));
+  return `${JSON.stringify({ study, origins, warnings, prospective_short_circuit: shortCircuit, estimate }, null, 2)}\n`;
 }
 
 function minutes(study: Study, { bankCyclesPerSecond }: Trial): number {

@@ -1,5 +1,6 @@
 import { outcomeLayout } from '../outcomes/block.js';
 import { outcomeColumns } from '../outcomes/columns.js';
+import { prospectiveCurrent } from '../simulation/prospective-current.js';
 import { prepareCandidate, simulateInstance, simulateTwin } from '../simulation/simulate-instance.js';
 import type { Study } from '../study/study.js';
 import type { CheckAids, Trial } from './trial.js';
@@ -9,7 +10,11 @@ const TRIAL_MS = 2000;
 const TRIAL_CYCLES = 400;
 
 /** What `check` needs of the simulation. */
-export const simulationAids: CheckAids = { trial, candidatesWhoseTwinLosesLoad };
+export const simulationAids: CheckAids = {
+  trial,
+  candidatesWhoseTwinLosesLoad,
+  prospectiveCurrents: (study) => study.candidates.map((candidate) => prospectiveCurrent(study, candidate)),
+};
 
 /** Instance after instance of every candidate in turn until the time is over; the first round always ends. */
 function trial(study: Study, now: () => number): Trial {

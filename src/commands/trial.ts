@@ -1,3 +1,4 @@
+import type { ProspectiveCurrent } from '../simulation/prospective-current.js';
 import type { Study } from '../study/study.js';
 
 /** How fast a study goes, measured on a few of its banks. */
@@ -12,6 +13,8 @@ export interface CheckAids {
   readonly trial: (study: Study, now: () => number) => Trial;
   /** Candidates whose twin, the bank with every value at its mean, loses load. */
   readonly candidatesWhoseTwinLosesLoad: (study: Study) => readonly string[];
+  /** Prospective short-circuit current of every candidate, in the order of the study. */
+  readonly prospectiveCurrents: (study: Study) => readonly ProspectiveCurrent[];
 }
 
 /** @returns cycles of single banks in a whole run */

@@ -3,6 +3,7 @@ import { type CycleLog, MAIN_MARGIN } from './cycle-log.js';
 import { growthPerMonth, meanOf } from './drift.js';
 import { windowCycles } from './measure.js';
 import { CYCLE_MEASURES, type CycleMeasureName, MEASURES, type MeasureName } from './registry.js';
+import { type SharingFacts, type SharingNames, sharingMeasures } from './sharing.js';
 
 /** What a capacity test found. */
 export interface TestedCapacity {
@@ -21,6 +22,7 @@ export interface InstanceFacts {
   readonly start: TestedCapacity;
   readonly end: TestedCapacity;
   readonly driftLimitFraction: number;
+  readonly sharing: SharingFacts;
 }
 
 /** All measures of one instance in the order of the registry, in the registry's units; null where one does not apply. */
@@ -30,6 +32,7 @@ export function instanceMeasures(bank: Bank, facts: InstanceFacts): (number | nu
     ...lossMeasures(facts),
     ...driftMeasures(bank, facts),
     ...capacityMeasures(bank, facts),
+    ...sharingMeasures(facts.sharing),
   };
   return MEASURES.map(({ name }) => values[name]);
 }
@@ -53,7 +56,7 @@ type Part<Names extends MeasureName> = Record<Names, number | null>;
 type CutoffNames = Extract<MeasureName, `early_cutoff${string}` | `charge_missed${string}`>;
 type DriftNames = Extract<MeasureName, `drift${string}` | `cell_drift${string}` | 'charge_spread_at_end_of_charge'>;
 type CapacityNames = Extract<MeasureName, `usable${string}` | `lost_capacity${string}`>;
-type LossNames = Exclude<MeasureName, CutoffNames | DriftNames | CapacityNames>;
+type LossNames = Exclude<MeasureName, CutoffNames | DriftNames | CapacityNames | SharingNames>;
 
 function cutoffMeasures({ log, twin }: InstanceFacts): Part<CutoffNames> {
   const { from } = windowCycles('last-30', log.cycles);

@@ -6,10 +6,12 @@ import { checkpointCycles } from '../measures/checkpoint-cycles.js';
 import type { CycleLog } from '../measures/cycle-log.js';
 import { cycleValues, instanceMeasures, type TestedCapacity } from '../measures/instance-measures.js';
 import type { OutcomeRow } from '../measures/outcome-row.js';
+import type { SharingFacts } from '../measures/sharing.js';
 import { type BankFactors, meanBankFactors, sampleBankFactors } from '../sampling/bank-factors.js';
 import { meanModules } from '../sampling/mean-modules.js';
 import { sampleModules } from '../sampling/sample-modules.js';
-import type { Candidate, ModuleParameters, Study } from '../study/study.js';
+import { ratingsOfModules } from '../study/ratings.js';
+import type { Candidate, ModuleParameters, ModuleRatings, Study } from '../study/study.js';
 import { createJourney, type Journey, type JourneyListeners } from './advance.js';
 import { testCapacity } from './capacity-test.js';
 import { createClimate } from './climate.js';
@@ -17,6 +19,14 @@ import { commissionBank } from './commission.js';
 import { drawnFeatures } from './drawn-features.js';
 import { beginBurstRecord, createRecorder, type Recorder, recordEvent, recordLeap, recordStep } from './recorder.js';
 import { runCourse } from './run-course.js';
+import {
+  beginBurstSharing,
+  createSharingRecorder,
+  recordSharing,
+  recordSharingLeap,
+  type SharingRecorder,
+  sharingFacts,
+} from './sharing-recorder.js';
 
 /** What all instances of a candidate share; made once per candidate and thread. */
 export interface PreparedCandidate {
@@ -36,6 +46,7 @@ export interface SimulatedBank {
   readonly log: CycleLog;
   readonly start: TestedCapacity;
   readonly end: TestedCapacity;
+  readonly sharing: SharingFacts;
 }
 
 /**
@@ -80,11 +91,12 @@ export function startBank(
   prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv' | 'toleranceFactor'>,
   modules: ReadonlyMap<string, ModuleParameters>,
   also: JourneyListeners = {},
-): { readonly journey: Journey; readonly recorder: Recorder } {
+): { readonly journey: Journey; readonly recorder: Recorder; readonly sharing: SharingRecorder } {
   const { study, candidate, ocv, toleranceFactor } = prepared;
   const bank = buildBank(candidate, modules, ocv);
   const state = commissionBank(bank, candidate, modules, ocv, toleranceFactor);
   const recorder = createRecorder(study.cycles);
+  const sharing = createSharingRecorder(bank, state, bmsRatings(study, candidate));
   const listeners: JourneyListeners = {
     onEvent: (event) => {
       recordEvent(recorder, journey, event);
@@ -92,14 +104,27 @@ export function startBank(
     },
     onStep: (_, stepS) => {
       recordStep(recorder, journey, stepS);
+      recordSharing(sharing, journey, stepS);
       also.onStep?.(journey, stepS);
     },
-    onBurst: () => beginBurstRecord(recorder),
-    onLeap: (ratio) => recordLeap(recorder, ratio),
+    onBurst: () => {
+      beginBurstRecord(recorder);
+      beginBurstSharing(sharing);
+    },
+    onLeap: (ratio) => {
+      recordLeap(recorder, ratio);
+      recordSharingLeap(sharing, ratio);
+    },
   };
   const journey = createJourney(bank, state, candidate.charger, candidate.load, listeners, toleranceFactor);
   journey.climate = createClimate(bank);
-  return { journey, recorder };
+  return { journey, recorder, sharing };
+}
+
+/** Ratings of what each BMS of a bank protects: a native pack is rated as the module at its position 1. */
+function bmsRatings(study: Study, candidate: Candidate): readonly (ModuleRatings | null)[] {
+  const ratings = ratingsOfModules(study, candidate);
+  return candidate.wiring === 'native' ? ratings.map((string) => string[0]) : ratings.flat();
 }
 
 function simulateBank(
@@ -107,19 +132,20 @@ function simulateBank(
   modules: ReadonlyMap<string, ModuleParameters>,
   factors: BankFactors,
 ): SimulatedBank {
-  const { candidate, course, toleranceFactor } = prepared;
-  const { journey, recorder } = startBank(prepared, modules);
+  const { study, candidate, course, toleranceFactor } = prepared;
+  const { journey, recorder, sharing } = startBank(prepared, modules);
   // As it is before the course: at 25 degC, where capacity is tested and drawn features are stated.
   const { bank, state } = journey.kernel;
   const start = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
   runCourse(journey, recorder, course, factors);
   const end = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
-  return { bank, factors, log: recorder.log, start, end };
+  const facts = sharingFacts(sharing, bmsRatings(study, candidate), candidate.ratings ?? null);
+  return { bank, factors, log: recorder.log, start, end, sharing: facts };
 }
 
 function outcomeRow(
   prepared: PreparedCandidate,
-  { bank, factors, log, start, end }: SimulatedBank,
+  { bank, factors, log, start, end, sharing }: SimulatedBank,
   twin: { readonly log: CycleLog; readonly capacity: TestedCapacity } | null,
   instance: number,
 ): OutcomeRow {
@@ -130,7 +156,7 @@ function outcomeRow(
       factors.loadFactor,
       factors.chargeFactor,
       ...drawnFeatures(bank),
-      ...instanceMeasures(bank, { log, twin, start, end, driftLimitFraction }),
+      ...instanceMeasures(bank, { log, twin, start, end, driftLimitFraction, sharing }),
       ...prepared.checkpoints.flatMap((cycle) => cycleValues(bank, log, cycle)),
     ],
   };

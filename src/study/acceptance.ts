@@ -24,6 +24,10 @@ const UNIT_SUFFIXES = {
   'per cycle': '_per_cycle',
   cycle: '_cycle',
   cycles: '_cycles',
+  A: '_A',
+  V: '_V',
+  mV: '_mV',
+  h: '_h',
   '': '',
 } as const;
 

@@ -2,11 +2,16 @@ import { z } from 'zod';
 import { amount, choice } from './amount.js';
 import { bleedSection } from './bleed.js';
 import { CHARGER } from './charger.js';
+import { CONDUCTOR } from './conductor.js';
+import { NETWORK } from './custom-wiring.js';
+import { LEAD_CONDUCTORS } from './lead-conductors.js';
 import { STRING_LEADS } from './leads.js';
 import { LOAD } from './load.js';
 import { moduleId, NAME, NAME_RULE } from './names.js';
-import { named, section } from './section.js';
+import { BANK_RATINGS } from './ratings.js';
+import { atMostOneOf, named, section } from './section.js';
 import { SLOT_OFFSET } from './slot-offset.js';
+import { takeOffKeys } from './take-off.js';
 
 /** Longest string and most strings in parallel; with 16 cells per module that is 64 cells in series at most. */
 const MOST_POSITIONS = 4;
@@ -28,15 +33,26 @@ const options = {
     .meta({ description: 'Replaces the bleed of every module, key by key.' })
     .optional(),
   slot_temperature_offset_K: SLOT_OFFSET.optional(),
+  string_lead: LEAD_CONDUCTORS.optional(),
+  link: CONDUCTOR.meta({ description: 'Instead of link_mOhm: the link as a conductor.' }).optional(),
+  ...takeOffKeys,
+  ratings: BANK_RATINGS.optional(),
 };
 
+const ONE_LEAD = atMostOneOf('string_lead_mOhm', 'string_lead');
+const ONE_LINK = atMostOneOf('link_mOhm', 'link');
+const ONE_SEGMENT = atMostOneOf('bus_segment_mOhm', 'bus_segment');
+
 /** The section `bank`: options of every candidate that does not say otherwise. */
-export const BANK = section(options);
+export const BANK = section(options)
+  .refine(...ONE_LEAD)
+  .refine(...ONE_LINK)
+  .refine(...ONE_SEGMENT);
 
 /** One way of wiring the bank. */
 const CANDIDATE = section({
   title: z.string('a text').max(200, 'a text of at most 200 characters').optional(),
-  wiring: choice(['strings', 'cross-linked', 'native']),
+  wiring: choice(['strings', 'cross-linked', 'native', 'custom']),
   modules: z
     .array(z.array(moduleId, STRING_RULE).min(1, STRING_RULE).max(MOST_POSITIONS, STRING_RULE), STRINGS_RULE)
     .min(1, STRINGS_RULE)
@@ -44,8 +60,12 @@ const CANDIDATE = section({
     .meta({
       description: `Modules of each string from its negative end: at most ${MOST_POSITIONS} in series (64 cells), ${MOST_STRINGS} in parallel.`,
     }),
+  network: NETWORK.meta({ description: 'Nodes and branches of the wiring custom.' }).optional(),
   ...options,
-});
+})
+  .refine(...ONE_LEAD)
+  .refine(...ONE_LINK)
+  .refine(...ONE_SEGMENT);
 
 /** The section `candidates`. */
 export const CANDIDATES = named(NAME, NAME_RULE, CANDIDATE);

@@ -3,6 +3,7 @@ import { amount } from './amount.js';
 import { EXPLICIT_BMS } from './bms.js';
 import { cellValues, commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
 import { MODULE_ID, MODULE_ID_RULE } from './names.js';
+import { MODULE_RATINGS } from './ratings.js';
 import { atMostOneOf, named, section } from './section.js';
 
 const oneLeakage = atMostOneOf('leakage_mA', 'leakage_percent_per_month');
@@ -22,6 +23,7 @@ const EXPLICIT_MODULE = section({
   joint_resistance_mOhm: POSSIBLE.seriesMOhm.optional(),
   temperature_offset_K: POSSIBLE.temperatureOffsetK.optional(),
   bms: EXPLICIT_BMS.optional(),
+  ratings: MODULE_RATINGS.optional(),
 }).refine(...oneLeakage);
 
 /** A stock of modules written down; `defaults` holds what they have in common. */

@@ -5,6 +5,7 @@ import { gradeLayer, NOMINAL_OVER_VOLTAGE_V, NOMINAL_UNDER_VOLTAGE_V } from './g
 import { DEFAULT_GRADE } from './grade-name.js';
 import { type Layer, Layers } from './layers.js';
 import type { OcvIndex } from './ocv.js';
+import { resolveModuleRatings } from './ratings.js';
 import type { Reading } from './reading.js';
 import { resolveBms } from './resolve-bms.js';
 import { showValue } from './show-value.js';
@@ -76,6 +77,7 @@ function resolveModule(
     },
     temperatureOffsetK: layers.si('temperature_offset_K', reading),
   };
+  const ratings = resolveModuleRatings(layers.inside('ratings'), reading);
   const bms = resolveBms(layers.inside('bms') as Layers<BmsInput>, reading);
   return {
     ...ofModule,
@@ -88,6 +90,7 @@ function resolveModule(
     bleedA: bms.spreads.bleedA.nominal,
     bleedStartV: bms.spreads.bleedStartV.nominal,
     bms: bms.settings,
+    ...(ratings && { ratings }),
   };
 }
 

@@ -10,6 +10,7 @@ import type { OcvIndex } from './ocv.js';
 import type { OriginSource } from './origin.js';
 import { QUANTITIES, type QuantityName } from './quantities.js';
 import { QUANTITY_KEYS } from './quantity-keys.js';
+import { resolveModuleRatings } from './ratings.js';
 import type { Reading } from './reading.js';
 import { checkThresholds, resolveBms } from './resolve-bms.js';
 import { resolveMeasured } from './resolve-measured.js';
@@ -73,6 +74,7 @@ export function resolvePopulation(
     checkThresholds(layers.inside('bms'), resolved, reading);
     warnOfSplitCorrelations(key, correlations, measured.measured.quantities, reading);
   }
+  const ratings = resolveModuleRatings(layers.inside('ratings'), reading);
   return {
     kind: 'population',
     key,
@@ -85,6 +87,7 @@ export function resolvePopulation(
     bms: bms.settings,
     ...(lots !== undefined && { lots }),
     ...(measured !== undefined && { measured: measured.measured }),
+    ...(ratings && { ratings }),
   };
 }
 

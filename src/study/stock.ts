@@ -7,6 +7,7 @@ import { GRADES } from './grade-name.js';
 import { LOTS } from './lots.js';
 import { MEASURED } from './measured.js';
 import { MODULE_ID, MODULE_ID_RULE, moduleId } from './names.js';
+import { MODULE_RATINGS } from './ratings.js';
 import { named, section } from './section.js';
 import { cellSpread, moduleSpread, pointsSpread } from './spread.js';
 
@@ -47,6 +48,7 @@ export const POPULATION = section({
   bms: POPULATION_BMS.optional(),
   lots: LOTS.optional(),
   measured: MEASURED.optional(),
+  ratings: MODULE_RATINGS.optional(),
 });
 
 /** A population as written. */

@@ -1,4 +1,7 @@
 import type { QuantityName } from './quantities.js';
+import type { BankRatings, CustomNetwork, ModuleRatings, TakeOff } from './wiring-options.js';
+
+export type { BankRatings, CustomBranch, CustomNetwork, ModuleRatings, TakeOff } from './wiring-options.js';
 
 /**
  * The resolved study: what a study file means once every default, grade and copy is filled in and every unit converted.
@@ -110,6 +113,8 @@ export interface PopulationStock {
   readonly lots?: Lots;
   /** Absent: nothing was measured. */
   readonly measured?: MeasuredModules;
+  /** Absent if none is stated. */
+  readonly ratings?: ModuleRatings;
 }
 
 /** Address of the draws of a cell. */
@@ -242,6 +247,8 @@ export interface ModuleParameters {
   readonly activation?: Activation;
   /** By how much the module is warmer than its slot, K; absent = 0. */
   readonly temperatureOffsetK?: number;
+  /** Of modules written down; absent if none is stated. */
+  readonly ratings?: ModuleRatings;
 }
 
 /** A duty: parts in sequence, each repeated, the whole again and again up to the horizon. */
@@ -288,7 +295,7 @@ export interface DutySegment {
 export interface Candidate {
   readonly key: string;
   readonly title: string;
-  readonly wiring: 'strings' | 'cross-linked' | 'native';
+  readonly wiring: 'strings' | 'cross-linked' | 'native' | 'custom';
   /** Module ids of each string from its negative end; all strings equally long. */
   readonly strings: readonly (readonly string[])[];
   /** Leads of each string. */
@@ -302,6 +309,12 @@ export interface Candidate {
   readonly bleed: BleedOverride | null;
   /** By how much each slot is warmer than ambient, string by string, K; absent = 0 everywhere. */
   readonly slotOffsetK?: readonly (readonly number[])[];
+  /** Absent: a star of equal leads. */
+  readonly takeOff?: TakeOff;
+  /** The wiring `custom` only, which has no leads and links beside it. */
+  readonly network?: CustomNetwork;
+  /** Absent if none is stated. */
+  readonly ratings?: BankRatings;
 }
 
 export interface BleedOverride {

@@ -2,6 +2,7 @@ import { nominalModules } from './bank-module.js';
 import { warnOfAbsorption, warnOfFloat } from './charger-warnings.js';
 import { dutyWarnings, warnOfFirstDemand } from './duty-warnings.js';
 import { warnOfPacks } from './pack-warnings.js';
+import { countWarnings } from './rating-warnings.js';
 import type { Study } from './study.js';
 import { unlikeVoltages, warnOfSeriesCount, warnOfUnits } from './wiring-warnings.js';
 
@@ -20,6 +21,7 @@ export function studyWarnings(study: Study): readonly string[] {
     warnOfUnits(strings, warn);
     warnOfFirstDemand(study.duty, candidate, strings, warn);
     warnOfPacks(study, candidate, warn);
+    for (const text of countWarnings(study, candidate)) warn(text);
   }
   const ofCandidates = [...warnings].map(([text, keys]) => `${text} (${keys.join(', ')})`);
   return [...ofCandidates, ...unlikeVoltages(study), ...dutyWarnings(study), ...bleedInForce(study)];

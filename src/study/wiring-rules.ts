@@ -68,7 +68,7 @@ export function namedModules(stocks: unknown): ReadonlySet<string> {
 /** @returns the modules of a candidate, or undefined after recording why they make no bank */
 export function wireModules(
   path: StudyPath,
-  wiring: 'strings' | 'cross-linked' | 'native',
+  wiring: 'strings' | 'cross-linked' | 'native' | 'custom',
   modules: readonly (readonly string[])[],
   known: ReadonlyMap<string, ModuleFacts>,
   named: ReadonlySet<string>,

@@ -9,7 +9,12 @@ const FILES = {
   'studies/demo-week.csv': repositoryText('studies/demo-week.csv'),
 };
 /** 30 000 bank-cycles per second; no twin loses load. */
-const AIDS: CheckAids = { trial: () => ({ bankCyclesPerSecond: 30_000 }), candidatesWhoseTwinLosesLoad: () => [] };
+const AIDS: CheckAids = {
+  trial: () => ({ bankCyclesPerSecond: 30_000 }),
+  candidatesWhoseTwinLosesLoad: () => [],
+  prospectiveCurrents: ({ candidates }) =>
+    candidates.map(() => ({ bankA: 3910.6, stringA: [2162.9, 1747.7], fuseA: 2162.9 })),
+};
 
 function check(options: { json?: boolean; quiet?: boolean } = {}, aids = AIDS): MemoryShell {
   const shell = memoryShell(FILES);
@@ -48,6 +53,33 @@ describe('check', () => {
       /warning: the duty is too much even without spread: the twin loses load \(native\); lighten the load, charge more/,
     );
     expect(check().printed.out).not.toMatch(/even without spread/);
+  });
+
+  it('tells the prospective short-circuit current of every candidate', () => {
+    expect(check().printed.out).toMatch(/^ {2}native: 3911 A at the bus, by string 2163, 1748 A$/m);
+    const document = JSON.parse(check({ json: true }).printed.out);
+    expect(document.prospective_short_circuit[0]).toEqual({
+      candidate: 'strings',
+      bank_A: 3910.6,
+      string_A: [2162.9, 1747.7],
+      string_fuse_A: 2162.9,
+    });
+  });
+
+  it('warns of a string fuse that cannot break it', () => {
+    const warned = (breakingA: number): string => {
+      const text = FILES['studies/demo.yaml'].replace(
+        /^bank:.*$/m,
+        `bank:\n  ratings: {fuse_breaking_A: ${breakingA}}`,
+      );
+      const shell = memoryShell({ ...FILES, 'studies/demo.yaml': text });
+      expect(checkCommand({ study: 'studies/demo.yaml', quiet: true }, shell, AIDS)).toBe(0);
+      return shell.printed.err;
+    };
+    expect(warned(2000)).toMatch(
+      /^warning: a string fuse may have to break 2163 A, but its breaking capacity is 2000 A \(native\)$/m,
+    );
+    expect(warned(6000)).not.toMatch(/breaking/);
   });
 
   it('prints one JSON document with --json', () => {

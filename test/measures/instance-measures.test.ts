@@ -8,6 +8,7 @@ import type { Candidate } from '../../src/study/study.js';
 import { bankOf } from '../reference/bank-of.js';
 import { DEFAULT_TABLE } from '../reference/default-table.js';
 import { plainModule } from '../reference/plain-module.js';
+import { SHARED } from './shared-facts.js';
 
 /** 2S2P of 100 Ah: rated 200 Ah. */
 function bankWired(wiring: Candidate['wiring'] = 'strings') {
@@ -38,6 +39,7 @@ function measures(facts: Partial<InstanceFacts> & Pick<InstanceFacts, 'log'>, wi
     start: capacity(198),
     end: capacity(190),
     driftLimitFraction: 0.05,
+    sharing: SHARED,
     ...facts,
   });
   return (name: MeasureName): number | null => values[MEASURES.findIndex((measure) => measure.name === name)];
