@@ -1,4 +1,6 @@
 import type { Bank } from '../bank/bank.js';
+import { type AccountNames, accountMeasures } from './account-measures.js';
+import type { BankAccount } from './bank-account.js';
 import { type CycleLog, MAIN_MARGIN } from './cycle-log.js';
 import { growthPerMonth, meanOf } from './drift.js';
 import { windowCycles } from './measure.js';
@@ -18,6 +20,7 @@ export interface InstanceFacts {
   readonly log: CycleLog;
   /** The twin's log and capacity; null for the twin itself. */
   readonly twin: { readonly log: CycleLog; readonly capacity: TestedCapacity } | null;
+  readonly account: BankAccount;
   readonly start: TestedCapacity;
   readonly end: TestedCapacity;
   readonly driftLimitFraction: number;
@@ -30,6 +33,7 @@ export function instanceMeasures(bank: Bank, facts: InstanceFacts): (number | nu
     ...lossMeasures(facts),
     ...driftMeasures(bank, facts),
     ...capacityMeasures(bank, facts),
+    ...accountMeasures(facts.account, facts.log.elapsedS),
   };
   return MEASURES.map(({ name }) => values[name]);
 }
@@ -53,7 +57,7 @@ type Part<Names extends MeasureName> = Record<Names, number | null>;
 type CutoffNames = Extract<MeasureName, `early_cutoff${string}` | `charge_missed${string}`>;
 type DriftNames = Extract<MeasureName, `drift${string}` | `cell_drift${string}` | 'charge_spread_at_end_of_charge'>;
 type CapacityNames = Extract<MeasureName, `usable${string}` | `lost_capacity${string}`>;
-type LossNames = Exclude<MeasureName, CutoffNames | DriftNames | CapacityNames>;
+type LossNames = Exclude<MeasureName, CutoffNames | DriftNames | CapacityNames | AccountNames>;
 
 function cutoffMeasures({ log, twin }: InstanceFacts): Part<CutoffNames> {
   const { from } = windowCycles('last-30', log.cycles);

@@ -2,6 +2,7 @@ import type { Bank } from '../bank/bank.js';
 import { buildBank } from '../bank/bank.js';
 import { compileOcvCurves, type OcvCurves } from '../bank/ocv-curves.js';
 import { type DutyCycle, dutyCourse } from '../duty/course.js';
+import type { BankAccount } from '../measures/bank-account.js';
 import { checkpointCycles } from '../measures/checkpoint-cycles.js';
 import type { CycleLog } from '../measures/cycle-log.js';
 import { cycleValues, instanceMeasures, type TestedCapacity } from '../measures/instance-measures.js';
@@ -10,12 +11,22 @@ import { type BankFactors, meanBankFactors, sampleBankFactors } from '../samplin
 import { meanModules } from '../sampling/mean-modules.js';
 import { sampleModules } from '../sampling/sample-modules.js';
 import type { Candidate, ModuleParameters, Study } from '../study/study.js';
+import {
+  type Accountant,
+  accountEvent,
+  accountLeap,
+  accountStep,
+  beginBurstAccount,
+  closeAccount,
+  createAccountant,
+} from './accountant.js';
 import { createJourney, type Journey, type JourneyListeners } from './advance.js';
 import { testCapacity } from './capacity-test.js';
 import { commissionBank } from './commission.js';
 import { drawnFeatures } from './drawn-features.js';
 import { beginBurstRecord, createRecorder, type Recorder, recordEvent, recordLeap, recordStep } from './recorder.js';
 import { runCourse } from './run-course.js';
+import { planVisits, type VisitPlan } from './upkeep.js';
 
 /** What all instances of a candidate share; made once per candidate and thread. */
 export interface PreparedCandidate {
@@ -33,6 +44,7 @@ export interface SimulatedBank {
   readonly bank: Bank;
   readonly factors: BankFactors;
   readonly log: CycleLog;
+  readonly account: BankAccount;
   readonly start: TestedCapacity;
   readonly end: TestedCapacity;
 }
@@ -74,30 +86,44 @@ export function simulateTwin(prepared: PreparedCandidate): OutcomeRow {
   return outcomeRow(prepared, prepared.twin, null, 0);
 }
 
-/** A bank at the beginning of its course, with a recorder that listens to it. */
+/** A bank at the beginning of its course, with those who listen to it and who come to visit it. */
 export function startBank(
   prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv' | 'toleranceFactor'>,
   modules: ReadonlyMap<string, ModuleParameters>,
   also: JourneyListeners = {},
-): { readonly journey: Journey; readonly recorder: Recorder } {
+): {
+  readonly journey: Journey;
+  readonly recorder: Recorder;
+  readonly accountant: Accountant;
+  readonly visits: VisitPlan | null;
+} {
   const { study, candidate, ocv, toleranceFactor } = prepared;
   const bank = buildBank(candidate, modules, ocv);
   const state = commissionBank(bank, candidate, modules, ocv, toleranceFactor);
   const recorder = createRecorder(study.cycles);
+  const accountant = createAccountant(bank, state.charge);
   const listeners: JourneyListeners = {
     onEvent: (event) => {
       recordEvent(recorder, journey, event);
+      accountEvent(accountant, journey, event);
       also.onEvent?.(event);
     },
     onStep: (_, stepS) => {
       recordStep(recorder, journey, stepS);
+      accountStep(accountant, journey, stepS);
       also.onStep?.(journey, stepS);
     },
-    onBurst: () => beginBurstRecord(recorder),
-    onLeap: (ratio) => recordLeap(recorder, ratio),
+    onBurst: () => {
+      beginBurstRecord(recorder);
+      beginBurstAccount(accountant);
+    },
+    onLeap: (ratio) => {
+      recordLeap(recorder, ratio);
+      accountLeap(accountant, ratio);
+    },
   };
   const journey = createJourney(bank, state, candidate.charger, candidate.load, listeners, toleranceFactor);
-  return { journey, recorder };
+  return { journey, recorder, accountant, visits: planVisits(bank, candidate, modules, ocv, toleranceFactor) };
 }
 
 function simulateBank(
@@ -106,17 +132,18 @@ function simulateBank(
   factors: BankFactors,
 ): SimulatedBank {
   const { candidate, course, toleranceFactor } = prepared;
-  const { journey, recorder } = startBank(prepared, modules);
+  const { journey, recorder, accountant, visits } = startBank(prepared, modules);
   const { bank, state } = journey.kernel;
   const start = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
-  runCourse(journey, recorder, course, factors);
+  runCourse(journey, recorder, course, factors, undefined, visits);
+  const account = closeAccount(accountant, journey);
   const end = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
-  return { bank, factors, log: recorder.log, start, end };
+  return { bank, factors, log: recorder.log, account, start, end };
 }
 
 function outcomeRow(
   prepared: PreparedCandidate,
-  { bank, factors, log, start, end }: SimulatedBank,
+  { bank, factors, log, account, start, end }: SimulatedBank,
   twin: { readonly log: CycleLog; readonly capacity: TestedCapacity } | null,
   instance: number,
 ): OutcomeRow {
@@ -127,7 +154,7 @@ function outcomeRow(
       factors.loadFactor,
       factors.chargeFactor,
       ...drawnFeatures(bank),
-      ...instanceMeasures(bank, { log, twin, start, end, driftLimitFraction }),
+      ...instanceMeasures(bank, { log, twin, account, start, end, driftLimitFraction }),
       ...prepared.checkpoints.flatMap((cycle) => cycleValues(bank, log, cycle)),
     ],
   };

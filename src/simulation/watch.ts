@@ -119,6 +119,13 @@ export function turnOver(kernel: Kernel, terminal: Terminal, watch: Watch, at: n
   dueS[at] = kernel.nowS + delayS;
 }
 
+/** Forgets what each condition has held for: all clocks start anew, as after work on the bank. */
+export function stopClocks({ met, dueS, sinceS }: Watch): void {
+  met.fill(0);
+  dueS.fill(Number.POSITIVE_INFINITY);
+  sinceS.fill(Number.POSITIVE_INFINITY);
+}
+
 /** Turns over every condition whose value asks for it. */
 export function updateMet(kernel: Kernel, terminal: Terminal, watch: Watch): void {
   for (let at = 0; at < watch.met.length; at++) {

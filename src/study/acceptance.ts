@@ -24,6 +24,9 @@ const UNIT_SUFFIXES = {
   'per cycle': '_per_cycle',
   cycle: '_cycle',
   cycles: '_cycles',
+  days: '_days',
+  'per year': '_per_year',
+  'min/day': '_min_per_day',
   '': '',
 } as const;
 

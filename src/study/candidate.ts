@@ -6,6 +6,7 @@ import { STRING_LEADS } from './leads.js';
 import { LOAD } from './load.js';
 import { moduleId, NAME, NAME_RULE } from './names.js';
 import { named, section } from './section.js';
+import { UPKEEP } from './upkeep.js';
 
 /** Longest string and most strings in parallel; with 16 cells per module that is 64 cells in series at most. */
 const MOST_POSITIONS = 4;
@@ -26,6 +27,10 @@ const options = {
   bleed: bleedSection((nominal) => nominal)
     .meta({ description: 'Replaces the bleed of every module, key by key.' })
     .optional(),
+  upkeep: UPKEEP.meta({
+    description: 'Visits at which every module is charged alone to full; null = none.',
+    default: null,
+  }).optional(),
 };
 
 /** The section `bank`: options of every candidate that does not say otherwise. */

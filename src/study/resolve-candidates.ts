@@ -5,6 +5,7 @@ import { DEFAULT_LEAD_MOHM, stringLeads } from './leads.js';
 import { defaultLoad, resolveLoad } from './load.js';
 import type { Reading } from './reading.js';
 import type { BleedOverride, Candidate, Stock, StringLeads } from './study.js';
+import { resolveUpkeep } from './upkeep.js';
 import { moduleFacts, namedModules, type WiredModules, wireModules } from './wiring-rules.js';
 
 const DEFAULT_LINK_MOHM = 1;
@@ -55,6 +56,8 @@ function resolveCandidate(
 ): Candidate {
   const { wiring } = written;
   options.setting('wiring', reading);
+  const oneBms = wiring === 'native' || written.modules.every((string) => string.length === 1);
+  const upkeep = resolveUpkeep(options.pick('upkeep'), options.owner, oneBms, reading);
   return {
     key,
     title: written.title ?? key,
@@ -66,6 +69,8 @@ function resolveCandidate(
     load: resolveLoad(options.inside('load'), reading),
     commissioning: options.setting('commissioning', reading),
     bleed: bleedOverride(options, reading),
+    // Left out where there is none: candidates without it keep their simulation keys.
+    ...(upkeep !== null && { upkeep }),
   };
 }
 

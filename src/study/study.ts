@@ -230,7 +230,18 @@ export interface Candidate {
   readonly commissioning: 'as-received' | 'each-module-full';
   /** Bleed that replaces that of every module of this candidate, key by key; null = as the modules have it. */
   readonly bleed: BleedOverride | null;
+  /** Rebalancing visits; absent = none. */
+  readonly upkeep?: Upkeep;
 }
+
+/**
+ * When a visit comes: after so many cycles, after so long, or once drift between modules, a fraction of rated capacity,
+ * is above a limit. Looked at when a cycle has ended.
+ */
+export type Upkeep =
+  | { readonly everyCycles: number }
+  | { readonly everyS: number }
+  | { readonly driftFraction: number };
 
 export interface BleedOverride {
   readonly rule?: 'each' | 'above-lowest' | 'none';

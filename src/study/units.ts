@@ -27,6 +27,7 @@ const KEY_UNITS: readonly KeyUnit[] = [
   { suffix: '_W', unit: 'W', toSi: same },
   { suffix: '_h', unit: 'h', toSi: (hours) => hours * SECONDS_PER_HOUR },
   { suffix: '_s', unit: 's', toSi: same },
+  { suffix: '_days', unit: 'days', toSi: (days) => days * 24 * SECONDS_PER_HOUR },
 ];
 
 /** @returns the unit that a key of the study names, empty if it names none */
