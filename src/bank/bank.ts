@@ -1,5 +1,6 @@
 import type { BleedOverride, Candidate, ModuleParameters } from '../study/study.js';
 import { type ChainedWiring, chainWiring } from './chains.js';
+import { type BankEqualiser, placeEqualisers } from './equaliser.js';
 import type { OcvCurves } from './ocv-curves.js';
 import { type PlacedCell, type PlacedModule, placeModule, rehouse } from './placed-module.js';
 import { wireCandidate } from './wiring-graph.js';
@@ -76,6 +77,8 @@ export interface Bank {
   readonly chainCapacityAs: Float64Array;
   /** Any cell has hysteresis: otherwise its exponentials are left out. */
   readonly hasHysteresis: boolean;
+  /** Null without: then nothing about it is looked at. */
+  readonly equaliser: BankEqualiser | null;
 }
 
 /**
@@ -189,6 +192,17 @@ export function buildBank(
     chainPolarisationOhm,
     chainCapacityAs,
     hasHysteresis: hysteresisV.some((volts) => volts !== 0),
+    equaliser:
+      candidate.equaliser === undefined
+        ? null
+        : placeEqualisers(
+            candidate.equaliser,
+            placed.length,
+            placed[0].length,
+            cellStart[placed[0].length],
+            chainOhm,
+            wiring.chains.map(({ ohm }) => ohm),
+          ),
   };
 }
 

@@ -7,6 +7,8 @@ import type { Candidate } from '../study/study.js';
 export interface WiringGraph {
   readonly nodes: number;
   readonly branches: readonly WiringBranch[];
+  /** Nodes at which something is connected beside the branches, so that what meets there need not carry one current. */
+  readonly taps?: ReadonlySet<number>;
 }
 
 export type WiringBranch =
@@ -50,5 +52,5 @@ export function wireCandidate(candidate: Candidate): WiringGraph {
       });
     }
   }
-  return { nodes, branches };
+  return candidate.equaliser === undefined ? { nodes, branches } : { nodes, branches, taps: new Set(taps.flat()) };
 }

@@ -14,6 +14,7 @@ export type AccountNames = Extract<
   | 'charger_only'
   | `energy_${'in' | 'out' | 'stored'}`
   | `${string}_loss`
+  | `equaliser${string}`
   | 'round_trip'
 >;
 
@@ -33,6 +34,9 @@ export function accountMeasures(account: BankAccount, elapsedS: number): Record<
     energy_stored: account.storedGainWh / 1000,
     wiring_loss: account.wiringWh / 1000,
     bleed_loss: account.bleedWh / 1000,
+    equaliser_charge: account.equaliserAh,
+    equaliser_counter_charge: account.equaliserCounterAh,
+    equaliser_loss: account.equaliserWh / 1000,
     round_trip: roundTripPercent(account),
   };
 }

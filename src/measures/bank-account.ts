@@ -12,6 +12,10 @@ export interface BankAccount {
   /** Heat in leads and links. */
   readonly wiringWh: number;
   readonly bleedWh: number;
+  /** Charge that equalisers took from modules, the part of it from the one of two that missed more, and their losses. */
+  readonly equaliserAh: number;
+  readonly equaliserCounterAh: number;
+  readonly equaliserWh: number;
   /** Time for which the charger fed the load while no module conducted, s. */
   readonly chargerOnlyS: number;
   /** Cells that were ever below `DAMAGED_BELOW_V`. */

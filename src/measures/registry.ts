@@ -359,6 +359,27 @@ export const MEASURES = [
   ),
   loss('wiring_loss', 'kWh', 'horizon', 'loss in wiring', 'Heat in leads and links over the horizon.'),
   loss('bleed_loss', 'kWh', 'horizon', 'loss in bleed', 'Energy that bleeding took from the cells over the horizon.'),
+  loss(
+    'equaliser_charge',
+    'Ah',
+    'horizon',
+    'charge moved by equalisers',
+    'Charge that equalisers took from modules, all devices, over the horizon.',
+  ),
+  loss(
+    'equaliser_counter_charge',
+    'Ah',
+    'horizon',
+    'counter-productive charge of equalisers',
+    'The part of it taken from the module of the two with more missing charge.',
+  ),
+  loss(
+    'equaliser_loss',
+    'kWh',
+    'horizon',
+    'loss in equalisers',
+    'Energy taken less energy delivered by equalisers, standby included, over the horizon.',
+  ),
   gain(
     'round_trip',
     '%',

@@ -1,10 +1,12 @@
 import type { Bank } from '../bank/bank.js';
+import type { BankEqualiser } from '../bank/equaliser.js';
 import type { BankEvent } from '../bank/events.js';
 import { LEAKING } from '../bank/network.js';
 import { storedEnergyGainJ } from '../bank/stored-energy.js';
 import { type WiringLoss, wiringLossOf, wiringLossW } from '../bank/wiring-loss.js';
 import { type BankAccount, DAMAGED_BELOW_V } from '../measures/bank-account.js';
 import type { Journey } from './advance.js';
+import { createEqualiserStep, type EqualiserStep, lookAtEqualisers } from './equaliser-account.js';
 import { cellVoltageV } from './kernel.js';
 
 /** Sums that go on in proportion when endless switching is leapt over. */
@@ -16,7 +18,11 @@ const CHARGER_ONLY_S = 4;
 /** Charge into the bank at its bus since the start, As. */
 const NET_AS = 5;
 const TRIPS = 6;
-const SUMS = 7;
+/** Charge that equalisers took, the part of it from the emptier module, and what they lost. */
+const MOVED_AS = 7;
+const COUNTER_AS = 8;
+const EQUALISER_J = 9;
+const SUMS = 10;
 
 /** Keeps the account of a bank on its way. */
 export interface Accountant {
@@ -43,6 +49,7 @@ export interface Accountant {
   readonly meanA: Float64Array;
   readonly riseA: Float64Array;
   readonly bowA: Float64Array;
+  readonly equaliserStep: EqualiserStep;
 }
 
 export function createAccountant(bank: Bank, charge: Float64Array): Accountant {
@@ -65,6 +72,7 @@ export function createAccountant(bank: Bank, charge: Float64Array): Accountant {
     meanA: new Float64Array(chains),
     riseA: new Float64Array(chains),
     bowA: new Float64Array(chains),
+    equaliserStep: createEqualiserStep(chains),
   };
 }
 
@@ -118,8 +126,9 @@ export function accountStep(accountant: Accountant, journey: Journey, stepS: num
     meanA[i] = mean;
     riseA[i] = 0.5 * (lastA[i] - firstA[i]);
     bowA[i] = 0.5 * (lastA[i] + firstA[i]) - mean;
-    bankA += busShare[i] * mean;
   }
+  if (bank.equaliser !== null) accountEqualisers(accountant, journey, bank.equaliser);
+  for (let i = 0; i < meanA.length; i++) bankA += busShare[i] * meanA[i];
   const busJ =
     stepS *
     (0.5 * (bus.bankV + work.endBankV) * bankA + ((work.endBankV - bus.bankV) * (work.endBankA - bus.bankA)) / 12);
@@ -139,6 +148,24 @@ export function accountStep(accountant: Accountant, journey: Journey, stepS: num
   }
   for (let m = 0; m < bank.modules; m++) {
     if (kernel.lowestV[m] < DAMAGED_BELOW_V) markDamaged(accountant.damaged, journey, m);
+  }
+}
+
+/** Books what equalisers did, and takes it off the currents of the modules: what is left passes the leads. */
+function accountEqualisers(accountant: Accountant, journey: Journey, equaliser: BankEqualiser): void {
+  const { sums, meanA, riseA, bowA, equaliserStep } = accountant;
+  lookAtEqualisers(equaliserStep, equaliser, journey);
+  sums[MOVED_AS] += equaliserStep.movedAs;
+  sums[COUNTER_AS] += equaliserStep.counterAs;
+  sums[EQUALISER_J] += equaliserStep.lostJ;
+  for (let i = 0; i < meanA.length; i++) {
+    const firstA = meanA[i] + bowA[i] - riseA[i];
+    const lastA = meanA[i] + bowA[i] + riseA[i];
+    const endA = equaliserStep.meanA[i] + equaliserStep.riseA[i];
+    const startA = equaliserStep.meanA[i] - equaliserStep.riseA[i];
+    meanA[i] -= equaliserStep.meanA[i];
+    riseA[i] = 0.5 * (lastA - endA - firstA + startA);
+    bowA[i] = 0.5 * (lastA - endA + firstA - startA) - meanA[i];
   }
 }
 
@@ -188,6 +215,9 @@ export function closeAccount(accountant: Accountant, { kernel }: Journey): BankA
     storedGainWh: gainJ / 3600,
     wiringWh: sums[WIRING_J] / 3600,
     bleedWh: sums[BLEED_J] / 3600,
+    equaliserAh: sums[MOVED_AS] / 3600,
+    equaliserCounterAh: sums[COUNTER_AS] / 3600,
+    equaliserWh: sums[EQUALISER_J] / 3600,
     chargerOnlyS: sums[CHARGER_ONLY_S],
     damagedCells: damaged.reduce((count, flag) => count + flag, 0),
     longestUnfilledS: accountant.longestS,

@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { amount, choice } from './amount.js';
 import { bleedSection } from './bleed.js';
 import { CHARGER } from './charger.js';
+import { EQUALISER } from './equaliser.js';
 import { STRING_LEADS } from './leads.js';
 import { LOAD } from './load.js';
 import { moduleId, NAME, NAME_RULE } from './names.js';
@@ -26,6 +27,9 @@ const options = {
   commissioning: choice(['as-received', 'each-module-full'], { default: 'as-received' }).optional(),
   bleed: bleedSection((nominal) => nominal)
     .meta({ description: 'Replaces the bleed of every module, key by key.' })
+    .optional(),
+  equaliser: EQUALISER.nullable()
+    .meta({ description: 'A device between neighbouring modules of every string; null = none.', default: null })
     .optional(),
   upkeep: UPKEEP.meta({
     description: 'Visits at which every module is charged alone to full; null = none.',

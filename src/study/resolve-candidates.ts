@@ -1,10 +1,11 @@
 import type { BankInput, CandidateInput } from './candidate.js';
 import { defaultCharger, resolveCharger } from './charger.js';
+import { defaultEqualiser, resolveEqualiser } from './equaliser.js';
 import { type Layer, Layers } from './layers.js';
 import { DEFAULT_LEAD_MOHM, stringLeads } from './leads.js';
 import { defaultLoad, resolveLoad } from './load.js';
 import type { Reading } from './reading.js';
-import type { BleedOverride, Candidate, Stock, StringLeads } from './study.js';
+import type { BleedOverride, Candidate, EqualiserSettings, Stock, StringLeads } from './study.js';
 import { resolveUpkeep } from './upkeep.js';
 import { moduleFacts, namedModules, type WiredModules, wireModules } from './wiring-rules.js';
 
@@ -58,6 +59,7 @@ function resolveCandidate(
   options.setting('wiring', reading);
   const oneBms = wiring === 'native' || written.modules.every((string) => string.length === 1);
   const upkeep = resolveUpkeep(options.pick('upkeep'), options.owner, oneBms, reading);
+  const equaliser = equaliserOf(options, wired, oneBms, reading);
   return {
     key,
     title: written.title ?? key,
@@ -71,7 +73,28 @@ function resolveCandidate(
     bleed: bleedOverride(options, reading),
     // Left out where there is none: candidates without it keep their simulation keys.
     ...(upkeep !== null && { upkeep }),
+    ...(equaliser !== null && { equaliser }),
   };
+}
+
+/** The equaliser, null for none; one said for the whole bank leaves out candidates with one module to a string. */
+function equaliserOf(
+  options: Options,
+  { cellsInSeries }: WiredModules,
+  oneBms: boolean,
+  reading: Reading,
+): EqualiserSettings | null {
+  const picked = options.pick('equaliser');
+  if (picked === undefined || picked.value === null) return null;
+  if (oneBms) {
+    if (picked.source === 'study') reading.fault(picked.path, 'absent where a string has one BMS: no module beside it');
+    return null;
+  }
+  const values = defaultEqualiser(cellsInSeries);
+  return resolveEqualiser(
+    options.inside('equaliser').over({ source: 'default', path: options.owner, values }),
+    reading,
+  );
 }
 
 function leadsOf(options: Options, strings: number, reading: Reading): readonly StringLeads[] {

@@ -230,8 +230,25 @@ export interface Candidate {
   readonly commissioning: 'as-received' | 'each-module-full';
   /** Bleed that replaces that of every module of this candidate, key by key; null = as the modules have it. */
   readonly bleed: BleedOverride | null;
+  /** Devices between neighbouring modules of every string; absent = none. */
+  readonly equaliser?: EqualiserSettings;
   /** Rebalancing visits; absent = none. */
   readonly upkeep?: Upkeep;
+}
+
+/** One device between two neighbouring modules of a string. */
+export interface EqualiserSettings {
+  /** Greatest current taken from the module of higher voltage. */
+  readonly currentA: number;
+  /** Difference of module voltages from which it works, and at which it reaches its greatest current. */
+  readonly startV: number;
+  readonly fullV: number;
+  /** Charge delivered of charge taken. */
+  readonly efficiency: number;
+  /** Drawn from both modules. */
+  readonly standbyA: number;
+  /** Bank voltage above which it works; null = always. */
+  readonly enableV: number | null;
 }
 
 /**

@@ -9,6 +9,9 @@ const account: BankAccount = {
   storedGainWh: 1000,
   wiringWh: 200,
   bleedWh: 50,
+  equaliserAh: 40,
+  equaliserCounterAh: 10,
+  equaliserWh: 30,
   chargerOnlyS: 7300 * 60,
   damagedCells: 2,
   longestUnfilledS: 12.5 * 86_400,
@@ -33,6 +36,9 @@ describe('measures of upkeep and energy', () => {
       energy_stored: 1,
       wiring_loss: 0.2,
       bleed_loss: 0.05,
+      equaliser_charge: 40,
+      equaliser_counter_charge: 10,
+      equaliser_loss: 0.03,
       round_trip: 95,
     });
   });
