@@ -30,7 +30,7 @@ export interface BankEqualiser {
 
 /** Where a device stands on its law, the sign being that of the difference. */
 export const OFF = 0;
-export const PROPORTIONAL = 1;
+const PROPORTIONAL = 1;
 export const AT_LIMIT = 2;
 
 /** Fall of bank voltage below the enabling one at which devices stop, V per cell in series (own choice). */

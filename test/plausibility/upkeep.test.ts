@@ -49,6 +49,14 @@ describe('a pair with 2 mA of difference that is visited every 30 days', () => {
     }
   });
 
+  it('has lost what its standby took, with what visits put back left out', () => {
+    // By hand: 12 mA x 240 h at 4 cells of 3.29 V (half full) to 3.46 V (nearly full): 37.9 to 39.9 Wh, while the visit
+    // after day 5 puts in a kilowatt-hour.
+    const lostWh = -1000 * only(resting(10, '', [5, 7], 'upkeep: {every_cycles: 5}'))('energy_stored');
+    expect(lostWh).toBeGreaterThan(37.9);
+    expect(lostWh).toBeLessThan(39.9);
+  });
+
   it('is visited on the day its drift passes a limit', () => {
     // By hand: 48 mAh a day pass 1 Ah after 20.8 days, so at the end of days 21, 42 and 63.
     const text = resting(64, '', [5, 7], 'commissioning: each-module-full, upkeep: {at_drift_percent: 1}');
