@@ -47,6 +47,11 @@ export interface BankState {
   readonly chainDropV: Float64Array;
   /** CLOSED, FORWARD or LEAKING (network.ts). */
   readonly conduction: Uint8Array;
+  // Equalisers.
+  /** Region of the law in which each device stands (equaliser.ts). */
+  readonly equaliserRegion: Int8Array;
+  /** The bank voltage has the devices work: one flag for all. */
+  readonly equaliserOn: Uint8Array;
 }
 
 /** A bank as received: cells at their arrival charge, rested, every path closed. */
@@ -76,6 +81,8 @@ export function createBankState(bank: Bank): BankState {
     chainMode: new Uint8Array(chains),
     chainDropV: new Float64Array(chains),
     conduction: new Uint8Array(chains),
+    equaliserRegion: new Int8Array(bank.equaliser?.devices ?? 0),
+    equaliserOn: new Uint8Array(1),
   };
 }
 
@@ -106,5 +113,7 @@ export function copyBankState(bank: Bank, state: BankState): BankState {
   copy.chainMode.set(state.chainMode);
   copy.chainDropV.set(state.chainDropV);
   copy.conduction.set(state.conduction);
+  copy.equaliserRegion.set(state.equaliserRegion);
+  copy.equaliserOn.set(state.equaliserOn);
   return copy;
 }

@@ -1,6 +1,7 @@
 import type { BleedOverride, Candidate, ModuleParameters } from '../study/study.js';
 import { sumChains } from './chain-sums.js';
 import { type ChainedWiring, chainWiring } from './chains.js';
+import { type BankEqualiser, moduleOhm, placeEqualisers } from './equaliser.js';
 import type { OcvCurves } from './ocv-curves.js';
 import { type PlacedCell, type PlacedModule, placeModule, rehouse } from './placed-module.js';
 import { type BankTemperature, bankTemperature } from './temperature.js';
@@ -79,6 +80,8 @@ export interface Bank {
   readonly chainCapacityAs: Float64Array;
   /** Any cell has hysteresis: otherwise its exponentials are left out. */
   readonly hasHysteresis: boolean;
+  /** Null without: then nothing about it is looked at. */
+  readonly equaliser: BankEqualiser | null;
 }
 
 /**
@@ -136,7 +139,7 @@ export function buildBank(
   }
   const hysteresisV = ofCells((cell) => cell.hysteresisV);
   const pathOhm = ofModules((module) => module.pathResistanceOhm);
-  const summands = { wiring, moduleOfCell, chainOfModule, pathOhm, resistanceOhm, polarisationOhm };
+  const sums = sumChains({ wiring, moduleOfCell, chainOfModule, pathOhm, resistanceOhm, polarisationOhm });
   return {
     strings: placed.length,
     positions: placed[0].length,
@@ -182,9 +185,19 @@ export function buildBank(
     recloseA: ofModules(({ bms }) => bms.recloseA ?? Number.POSITIVE_INFINITY),
     placed: list,
     temperature: bankTemperature(candidate, placed),
-    ...sumChains(summands),
+    ...sums,
     chainCapacityAs,
     hasHysteresis: hysteresisV.some((volts) => volts !== 0),
+    equaliser:
+      candidate.equaliser === undefined
+        ? null
+        : placeEqualisers(
+            candidate.equaliser,
+            placed.length,
+            placed[0].length,
+            cellStart[placed[0].length],
+            moduleOhm(wiring, sums.chainOhm),
+          ),
   };
 }
 

@@ -6,7 +6,7 @@ import {
   DEAD_BAND_V,
   effectiveEmfV,
   type NetworkCache,
-  networkMap,
+  presentMap,
   SLACK_V,
   settleConduction,
   wrongSideV,
@@ -203,8 +203,8 @@ function settleNet(
   if (bus.bankV > mostV) settleConduction(bank, state, cache, emfV, mostV, true, bus);
   let fromV = bus.bankV;
   for (let piece = 0; piece <= 2 * state.conduction.length + 2; piece++) {
-    const map = networkMap(bank, state.conduction, cache);
-    let openV = 0;
+    const map = presentMap(bank, state, cache);
+    let openV = map.openOffsetV;
     for (let i = 0; i < map.chains; i++) openV += map.voltagePerEmf[i] * effectiveEmfV(bank, state, i, emfV[i]);
     const rootV = upperRootV(openV, map.bankOhm, netA, netW);
     const next = nextPiece(bank, state, cache, emfV, fromV, bus);

@@ -37,7 +37,9 @@ export function chainWiring(graph: WiringGraph): ChainedWiring {
     at[branch.from].push(index);
     at[branch.to].push(index);
   });
-  const isJunction = at.map((ends, node) => node === BUS_MINUS || node === BUS_PLUS || ends.length > 2);
+  const isJunction = at.map(
+    (ends, node) => node === BUS_MINUS || node === BUS_PLUS || ends.length > 2 || graph.taps?.has(node) === true,
+  );
   const nodeOf = new Map<number, number>();
   isJunction.forEach((junction, node) => {
     if (junction) nodeOf.set(node, nodeOf.size);

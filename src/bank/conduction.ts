@@ -1,10 +1,13 @@
 import type { Bank } from './bank.js';
 import { type BankState, BOTH_WAYS, DISCHARGE_ONLY, NO_WAY } from './bank-state.js';
+import { equalisedMap } from './equalised-map.js';
 import { CLOSED, FORWARD, LEAK_S, LEAKING, type NetworkMap, solveNetwork } from './network.js';
 
 /** Maps of the patterns met lately; a bank runs through few of them again and again. */
 export interface NetworkCache {
   readonly maps: Map<number, NetworkMap>;
+  /** Maps with equalisers, by pattern and regions. */
+  readonly equalised: Map<string, NetworkMap>;
   /** Room for the EMFs by which the chains enter the network. */
   readonly effectiveV: Float64Array;
 }
@@ -21,7 +24,7 @@ export const SLACK_V = 1e-9;
 export const DEAD_BAND_V = 1e-5;
 
 export function createNetworkCache(): NetworkCache {
-  return { maps: new Map(), effectiveV: new Float64Array(MOST_CHAINS) };
+  return { maps: new Map(), equalised: new Map(), effectiveV: new Float64Array(MOST_CHAINS) };
 }
 
 /** The map of the present conduction pattern, solved at most once while it stays in the cache. */
@@ -35,6 +38,20 @@ export function networkMap(bank: Bank, conduction: Uint8Array, cache: NetworkCac
     cache.maps.set(key, map);
   }
   return map;
+}
+
+/** The map of the present pattern and of the present regions of equalisers. */
+export function presentMap(bank: Bank, state: BankState, cache: NetworkCache): NetworkMap {
+  const map = networkMap(bank, state.conduction, cache);
+  if (bank.equaliser === null) return map;
+  const key = `${state.conduction.join('')},${state.equaliserRegion.join(',')}`;
+  let equalised = cache.equalised.get(key);
+  if (equalised === undefined) {
+    if (cache.equalised.size >= MOST_MAPS) cache.equalised.clear();
+    equalised = equalisedMap(bank.equaliser, state, map);
+    cache.equalised.set(key, equalised);
+  }
+  return equalised;
 }
 
 /**
@@ -127,11 +144,11 @@ export function currentsInto(
   atVoltage: boolean,
   point: ConductionPoint,
 ): void {
-  const map = networkMap(bank, state.conduction, cache);
+  const map = presentMap(bank, state, cache);
   const count = map.chains;
   const { effectiveV } = cache;
-  const { currentPerEmf, currentPerBank, voltagePerEmf } = map;
-  let openV = 0;
+  const { currentPerEmf, currentPerBank, voltagePerEmf, offsetA } = map;
+  let openV = map.openOffsetV;
   for (let i = 0; i < count; i++) {
     effectiveV[i] = effectiveEmfV(bank, state, i, emfV[i]);
     openV += voltagePerEmf[i] * effectiveV[i];
@@ -140,7 +157,7 @@ export function currentsInto(
   for (let i = 0; i < count; i++) {
     let sum = currentPerBank[i] * bankA;
     for (let j = 0; j < count; j++) sum += currentPerEmf[i * count + j] * effectiveV[j];
-    point.currentA[i] = sum;
+    point.currentA[i] = offsetA === null ? sum : sum + offsetA[i];
   }
   point.map = map;
   point.bankA = bankA;

@@ -16,7 +16,8 @@ export type BankEventKind =
   | 'load-lost'
   | 'load-back'
   | 'charge-ended'
-  | 'charge-restart';
+  | 'charge-restart'
+  | 'upkeep-visit';
 
 export interface BankEvent {
   readonly kind: BankEventKind;

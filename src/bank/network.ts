@@ -24,6 +24,9 @@ export interface NetworkMap {
   readonly currentPerBank: Float64Array;
   readonly voltagePerEmf: Float64Array;
   readonly bankOhm: number;
+  /** Constants beside the linear terms, of I and of V_bank: what equalisers drive; null and 0 without. */
+  readonly offsetA: Float64Array | null;
+  readonly openOffsetV: number;
 }
 
 /** Conductance of a chain of resistance `ohm` in state `state`, S. A conducting rectifier keeps its leak beside it. */
@@ -82,5 +85,6 @@ export function solveNetwork(wiring: ChainedWiring, chainOhm: Float64Array, stat
       currentPerEmf[i * count + j] = g[i] * (transfer * g[j] - (i === j ? 1 : 0));
     }
   });
-  return { chains: count, currentPerEmf, currentPerBank, voltagePerEmf, bankOhm: voltage(count, BUS_PLUS) };
+  const bankOhm = voltage(count, BUS_PLUS);
+  return { chains: count, currentPerEmf, currentPerBank, voltagePerEmf, bankOhm, offsetA: null, openOffsetV: 0 };
 }

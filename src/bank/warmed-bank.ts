@@ -1,6 +1,7 @@
 import type { Bank } from './bank.js';
 import { sumChains } from './chain-sums.js';
 import { coldCurves } from './cold-curves.js';
+import { moduleOhm } from './equaliser.js';
 import { arrheniusFactor, chargeFloor, REFERENCE_K } from './temperature.js';
 
 /**
@@ -24,13 +25,15 @@ export function warmedBank(bank: Bank, temperatureK: Float64Array): Bank {
     for (let at = c; at < polarisationOhm.length; at += cells) polarisationOhm[at] *= resists;
     leakageA[c] *= arrheniusFactor(temperature.leakageJPerMol[c], kelvin);
   }
+  const sums = sumChains({ ...bank, resistanceOhm, polarisationOhm });
   return {
     ...bank,
     ...warmedCurves(bank, temperatureK),
     resistanceOhm,
     polarisationOhm,
     leakageA,
-    ...sumChains({ ...bank, resistanceOhm, polarisationOhm }),
+    ...sums,
+    equaliser: bank.equaliser && { ...bank.equaliser, moduleOhm: moduleOhm(bank.wiring, sums.chainOhm) },
   };
 }
 

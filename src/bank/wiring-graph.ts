@@ -7,6 +7,8 @@ import type { Candidate } from '../study/study.js';
 export interface WiringGraph {
   readonly nodes: number;
   readonly branches: readonly WiringBranch[];
+  /** Nodes at which something is connected beside the branches, so that what meets there need not carry one current. */
+  readonly taps?: ReadonlySet<number>;
 }
 
 export type WiringBranch =
@@ -64,7 +66,7 @@ export function wireCandidate(candidate: Candidate): WiringGraph {
       branches.push({ kind: 'rail', ohm, from: rail[segment], to: rail[segment + 1] });
     }
   });
-  return { nodes, branches };
+  return candidate.equaliser === undefined ? { nodes, branches } : { nodes, branches, taps: new Set(taps.flat()) };
 }
 
 /** Nodes at which each string meets the two rails; in a star all are the bus. `added` counts those beside the bus. */

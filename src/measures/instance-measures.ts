@@ -1,4 +1,6 @@
 import type { Bank } from '../bank/bank.js';
+import { type AccountNames, accountMeasures } from './account-measures.js';
+import type { BankAccount } from './bank-account.js';
 import { type CycleLog, MAIN_MARGIN } from './cycle-log.js';
 import { growthPerMonth, meanOf } from './drift.js';
 import { windowCycles } from './measure.js';
@@ -19,6 +21,7 @@ export interface InstanceFacts {
   readonly log: CycleLog;
   /** The twin's log and capacity; null for the twin itself. */
   readonly twin: { readonly log: CycleLog; readonly capacity: TestedCapacity } | null;
+  readonly account: BankAccount;
   readonly start: TestedCapacity;
   readonly end: TestedCapacity;
   readonly driftLimitFraction: number;
@@ -33,6 +36,7 @@ export function instanceMeasures(bank: Bank, facts: InstanceFacts): (number | nu
     ...driftMeasures(bank, facts),
     ...capacityMeasures(bank, facts),
     ...sharingMeasures(facts.sharing),
+    ...accountMeasures(facts.account, facts.log.elapsedS),
   };
   return MEASURES.map(({ name }) => values[name]);
 }
@@ -56,7 +60,7 @@ type Part<Names extends MeasureName> = Record<Names, number | null>;
 type CutoffNames = Extract<MeasureName, `early_cutoff${string}` | `charge_missed${string}`>;
 type DriftNames = Extract<MeasureName, `drift${string}` | `cell_drift${string}` | 'charge_spread_at_end_of_charge'>;
 type CapacityNames = Extract<MeasureName, `usable${string}` | `lost_capacity${string}`>;
-type LossNames = Exclude<MeasureName, CutoffNames | DriftNames | CapacityNames | SharingNames>;
+type LossNames = Exclude<MeasureName, CutoffNames | DriftNames | CapacityNames | SharingNames | AccountNames>;
 
 function cutoffMeasures({ log, twin }: InstanceFacts): Part<CutoffNames> {
   const { from } = windowCycles('last-30', log.cycles);

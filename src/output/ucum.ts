@@ -16,6 +16,9 @@ const CODES: Readonly<Record<string, string>> = {
   cycle: '{cycle}',
   cycles: '{cycle}',
   'per cycle': '/{cycle}',
+  'per year': '/(365.d)',
+  days: 'd',
+  'min/day': 'min/d',
 };
 
 /**

@@ -211,7 +211,7 @@ export function solveKept(kernel: Kernel): boolean {
   const chains = map.chains;
   const { currentPerEmf, currentPerBank, voltagePerEmf, bankOhm } = map;
   kernel.evaluations++;
-  let openV = 0;
+  let openV = map.openOffsetV;
   for (let i = 0; i < chains; i++) {
     const effective = emfV[i] + emfShiftV[i];
     effectiveV[i] = effective;
@@ -236,9 +236,15 @@ export function solveKept(kernel: Kernel): boolean {
     for (let j = 0; j < chains; j++) sum += currentPerEmf[row + j] * effectiveV[j];
     currentA[i] = sum;
   }
+  if (map.offsetA !== null) addInto(map.offsetA, currentA);
   point.bankA = bankA;
   point.bankV = bankV;
   return true;
+}
+
+/** Adds one short array to another. */
+function addInto(from: Float64Array, into: Float64Array): void {
+  for (let k = 0; k < from.length; k++) into[k] += from[k];
 }
 
 /** Voltage of cell `c` at the latest evaluation, V. */

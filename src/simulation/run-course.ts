@@ -4,10 +4,12 @@ import type { BankFactors } from '../sampling/bank-factors.js';
 import type { Journey } from './advance.js';
 import { beginCycle, endCycle, type Recorder } from './recorder.js';
 import { runSegment, startCycle } from './run-cycle.js';
+import { type VisitPlan, visitIfDue } from './upkeep.js';
 
 /**
  * Takes a bank through its whole course and records every cycle.
  *
+ * @param visits who comes to rebalance between cycles, null for nobody; after the last cycle nobody comes any more
  * @throws Error if a charge is no longer finite
  */
 export function runCourse(
@@ -16,6 +18,7 @@ export function runCourse(
   course: readonly DutyCycle[],
   factors: BankFactors,
   onCycle: (cycle: number) => void = () => undefined,
+  visits: VisitPlan | null = null,
 ): void {
   for (const cycle of course) {
     beginCycle(recorder);
@@ -30,5 +33,6 @@ export function runCourse(
     if (!journey.kernel.state.charge.every(Number.isFinite)) {
       throw new Error(`charge is not finite after cycle ${recorder.cycle}`);
     }
+    if (visits !== null && recorder.cycle < course.length) visitIfDue(visits, journey, recorder.cycle);
   }
 }

@@ -2,6 +2,7 @@ import { BLEED_NONE } from '../bank/bank.js';
 import { pastBleedSwitch } from '../bank/bleed.js';
 import { settleBus } from '../bank/bus.js';
 import { fixConduction } from '../bank/conduction.js';
+import { settleEqualiser } from '../bank/equaliser.js';
 import type { BankEvent, BankEventKind } from '../bank/events.js';
 import { updateChainModes } from '../bank/paths.js';
 import { updateEmf } from './chain-emf.js';
@@ -34,11 +35,20 @@ export function settle(
   updateTerms(terminal, kernel.terms);
   const tell = (kind: BankEventKind, module: number): void =>
     report({ kind, timeS: kernel.nowS, module, cell: extremeCell(kernel, kind, module) });
+  const wasOn = state.equaliserOn[0];
+  let mayStart = true;
   for (let round = 0; round < MOST_ROUNDS; round++) {
     fixConduction(state);
     updateCellConstants(kernel);
     updateEmf(kernel, 0, work.passedAs, state.filterA);
     settleBus(bank, state, kernel.cache, point.emfV, kernel.terms, bus);
+    if (bank.equaliser !== null) {
+      // Devices start or stop at most once at an instant, as everything else does.
+      if (settleEqualiser(bank.equaliser, state, point.emfV, bus.currentA, bus.bankV, mayStart)) {
+        mayStart &&= state.equaliserOn[0] === wasOn;
+        continue;
+      }
+    }
     updateEmfShifts(kernel);
     updateExtremes(kernel, bus.currentA, state.filterA);
     if (switchBleed(kernel, work.bleedSpent)) continue;

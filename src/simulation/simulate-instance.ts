@@ -2,6 +2,7 @@ import type { Bank } from '../bank/bank.js';
 import { buildBank } from '../bank/bank.js';
 import { compileOcvCurves, type OcvCurves } from '../bank/ocv-curves.js';
 import { type DutyCycle, dutyCourse } from '../duty/course.js';
+import type { BankAccount } from '../measures/bank-account.js';
 import { checkpointCycles } from '../measures/checkpoint-cycles.js';
 import type { CycleLog } from '../measures/cycle-log.js';
 import { cycleValues, instanceMeasures, type TestedCapacity } from '../measures/instance-measures.js';
@@ -12,6 +13,15 @@ import { meanModules } from '../sampling/mean-modules.js';
 import { sampleModules } from '../sampling/sample-modules.js';
 import { ratingsOfModules } from '../study/ratings.js';
 import type { Candidate, ModuleParameters, ModuleRatings, Study } from '../study/study.js';
+import {
+  type Accountant,
+  accountEvent,
+  accountLeap,
+  accountStep,
+  beginBurstAccount,
+  closeAccount,
+  createAccountant,
+} from './accountant.js';
 import { createJourney, type Journey, type JourneyListeners } from './advance.js';
 import { testCapacity } from './capacity-test.js';
 import { createClimate } from './climate.js';
@@ -27,6 +37,7 @@ import {
   type SharingRecorder,
   sharingFacts,
 } from './sharing-recorder.js';
+import { planVisits, type VisitPlan } from './upkeep.js';
 
 /** What all instances of a candidate share; made once per candidate and thread. */
 export interface PreparedCandidate {
@@ -44,6 +55,7 @@ export interface SimulatedBank {
   readonly bank: Bank;
   readonly factors: BankFactors;
   readonly log: CycleLog;
+  readonly account: BankAccount;
   readonly start: TestedCapacity;
   readonly end: TestedCapacity;
   readonly sharing: SharingFacts;
@@ -86,39 +98,50 @@ export function simulateTwin(prepared: PreparedCandidate): OutcomeRow {
   return outcomeRow(prepared, prepared.twin, null, 0);
 }
 
-/** A bank at the beginning of its course, with a recorder that listens to it. */
+/** A bank at the beginning of its course, with those who listen to it and who come to visit it. */
 export function startBank(
   prepared: Pick<PreparedCandidate, 'study' | 'candidate' | 'ocv' | 'toleranceFactor'>,
   modules: ReadonlyMap<string, ModuleParameters>,
   also: JourneyListeners = {},
-): { readonly journey: Journey; readonly recorder: Recorder; readonly sharing: SharingRecorder } {
+): {
+  readonly journey: Journey;
+  readonly recorder: Recorder;
+  readonly sharing: SharingRecorder;
+  readonly accountant: Accountant;
+  readonly visits: VisitPlan | null;
+} {
   const { study, candidate, ocv, toleranceFactor } = prepared;
   const bank = buildBank(candidate, modules, ocv);
   const state = commissionBank(bank, candidate, modules, ocv, toleranceFactor);
   const recorder = createRecorder(study.cycles);
   const sharing = createSharingRecorder(bank, state, bmsRatings(study, candidate));
+  const accountant = createAccountant(bank, state.charge);
   const listeners: JourneyListeners = {
     onEvent: (event) => {
       recordEvent(recorder, journey, event);
+      accountEvent(accountant, journey, event);
       also.onEvent?.(event);
     },
     onStep: (_, stepS) => {
       recordStep(recorder, journey, stepS);
       recordSharing(sharing, journey, stepS);
+      accountStep(accountant, journey, stepS);
       also.onStep?.(journey, stepS);
     },
     onBurst: () => {
       beginBurstRecord(recorder);
       beginBurstSharing(sharing);
+      beginBurstAccount(accountant);
     },
     onLeap: (ratio) => {
       recordLeap(recorder, ratio);
       recordSharingLeap(sharing, ratio);
+      accountLeap(accountant, ratio);
     },
   };
   const journey = createJourney(bank, state, candidate.charger, candidate.load, listeners, toleranceFactor);
   journey.climate = createClimate(bank);
-  return { journey, recorder, sharing };
+  return { journey, recorder, sharing, accountant, visits: planVisits(bank, candidate, modules, ocv, toleranceFactor) };
 }
 
 /** Ratings of what each BMS of a bank protects: a native pack is rated as the module at its position 1. */
@@ -133,19 +156,20 @@ function simulateBank(
   factors: BankFactors,
 ): SimulatedBank {
   const { study, candidate, course, toleranceFactor } = prepared;
-  const { journey, recorder, sharing } = startBank(prepared, modules);
+  const { journey, recorder, sharing, accountant, visits } = startBank(prepared, modules);
   // As it is before the course: at 25 degC, where capacity is tested and drawn features are stated.
   const { bank, state } = journey.kernel;
   const start = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
-  runCourse(journey, recorder, course, factors);
+  runCourse(journey, recorder, course, factors, undefined, visits);
+  const account = closeAccount(accountant, journey);
   const end = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
   const facts = sharingFacts(sharing, bmsRatings(study, candidate), candidate.ratings ?? null);
-  return { bank, factors, log: recorder.log, start, end, sharing: facts };
+  return { bank, factors, log: recorder.log, account, start, end, sharing: facts };
 }
 
 function outcomeRow(
   prepared: PreparedCandidate,
-  { bank, factors, log, start, end, sharing }: SimulatedBank,
+  { bank, factors, log, account, start, end, sharing }: SimulatedBank,
   twin: { readonly log: CycleLog; readonly capacity: TestedCapacity } | null,
   instance: number,
 ): OutcomeRow {
@@ -156,7 +180,7 @@ function outcomeRow(
       factors.loadFactor,
       factors.chargeFactor,
       ...drawnFeatures(bank),
-      ...instanceMeasures(bank, { log, twin, start, end, driftLimitFraction, sharing }),
+      ...instanceMeasures(bank, { log, twin, account, start, end, driftLimitFraction, sharing }),
       ...prepared.checkpoints.flatMap((cycle) => cycleValues(bank, log, cycle)),
     ],
   };

@@ -46,7 +46,7 @@ export function traceInstance(study: Study, window: TraceWindow): Trace {
     nextS: Number.POSITIVE_INFINITY,
     onSample: (sample) => samples.push({ ...sample, cycle: recorder.cycle }),
   };
-  const { journey, recorder } = startBank(
+  const { journey, recorder, visits } = startBank(
     { study, candidate, ocv: compileOcvCurves(study.ocvTables), toleranceFactor: 1 },
     sampleModules(study, window.instance),
     {
@@ -57,8 +57,9 @@ export function traceInstance(study: Study, window: TraceWindow): Trace {
     },
   );
   const { bank } = journey.kernel;
-  runCourse(journey, recorder, dutyCourse(study.duty, window.toCycle), factors, (cycle) => {
+  const onCycle = (cycle: number): void => {
     if (cycle === window.fromCycle) sampler.nextS = journey.kernel.nowS;
-  });
+  };
+  runCourse(journey, recorder, dutyCourse(study.duty, window.toCycle), factors, onCycle, visits);
   return { bank, factors, samples, events };
 }

@@ -1,5 +1,6 @@
 import { BUS_OVERLOADED, overloadEnds } from '../bank/bus.js';
 import { wrongSideV } from '../bank/conduction.js';
+import { differenceV, isAtWork, OFF, pastEnablingV, pastRegionV } from '../bank/equaliser.js';
 import type { BankEventKind } from '../bank/events.js';
 import { updateChainModes } from '../bank/paths.js';
 import {
@@ -28,10 +29,12 @@ import {
 const HYSTERESIS = 1e-5;
 /** Rectifiers and regimes have no clock; settling leaves them at most this far on the wrong side, V or A. */
 const SETTLED = 1e-8;
+/** Value of a condition that is not watched at present. */
+const NEVER = -1;
 
 /**
  * All conditions of a bank in one list: protection of module m at kind * modules + m, then the rectifier of each chain,
- * then the bus. `met` says which hold; `dueS` when a condition that holds will have held for its time.
+ * then the equalisers if there are any (as a whole, and each), then the bus. `met` says which hold; `dueS` when a condition that holds will have held for its time.
  */
 export interface Watch {
   readonly value: Float64Array;
@@ -51,7 +54,8 @@ export interface Watch {
 
 export function createWatch(kernel: Kernel): Watch {
   const firstChain = PROTECTION_KINDS * kernel.bank.modules;
-  const firstTerminal = firstChain + kernel.emfShiftV.length;
+  const { equaliser } = kernel.bank;
+  const firstTerminal = firstChain + kernel.emfShiftV.length + (equaliser === null ? 0 : 1 + equaliser.devices);
   const count = firstTerminal + TERMINAL_KINDS;
   return {
     value: new Float64Array(count),
@@ -81,12 +85,35 @@ export function updateValues(
   for (let i = 0; i < currentA.length; i++) {
     value[firstChain + i] = wrongSideV(bank, state, i, point.emfV[i], currentA[i]);
   }
+  if (bank.equaliser !== null) updateEqualiserValues(kernel, watch, currentA, bankV);
   for (let kind = 0; kind < TERMINAL_KINDS; kind++) {
     value[firstTerminal + kind] = terminalValue(terminal, terms, bus, kind, bankA, bankV);
   }
   if (bus.regime === BUS_OVERLOADED) {
     const ends = overloadEnds(bank, state, kernel.cache, point.emfV, terms, bus);
     value[firstTerminal + REGIME] = ends ? 1 : -1;
+  }
+}
+
+/** Equalisers have no clocks either: how far the bank voltage and each device are past where something changes. */
+function updateEqualiserValues(
+  { bank, state, point }: Kernel,
+  { value, firstChain }: Watch,
+  currentA: Float64Array,
+  bankV: number,
+): void {
+  const { equaliser } = bank;
+  if (equaliser === null) return;
+  const first = firstChain + currentA.length;
+  value[first] = pastEnablingV(equaliser, state, bankV);
+  for (let k = 0; k < equaliser.devices; k++) {
+    const works = state.equaliserOn[0] === 1 && isAtWork(equaliser, state.conduction, k);
+    const region = state.equaliserRegion[k];
+    value[first + 1 + k] = works
+      ? pastRegionV(equaliser, region, differenceV(equaliser, point.emfV, currentA, k))
+      : region === OFF
+        ? NEVER
+        : 0;
   }
 }
 
@@ -117,6 +144,13 @@ export function turnOver(kernel: Kernel, terminal: Terminal, watch: Watch, at: n
       : terminalDelayS(terminal, at - firstTerminal);
   sinceS[at] = kernel.nowS;
   dueS[at] = kernel.nowS + delayS;
+}
+
+/** Forgets what each condition has held for: all clocks start anew, as after work on the bank. */
+export function stopClocks({ met, dueS, sinceS }: Watch): void {
+  met.fill(0);
+  dueS.fill(Number.POSITIVE_INFINITY);
+  sinceS.fill(Number.POSITIVE_INFINITY);
 }
 
 /** Turns over every condition whose value asks for it. */

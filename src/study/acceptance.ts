@@ -28,6 +28,9 @@ const UNIT_SUFFIXES = {
   V: '_V',
   mV: '_mV',
   h: '_h',
+  days: '_days',
+  'per year': '_per_year',
+  'min/day': '_min_per_day',
   '': '',
 } as const;
 

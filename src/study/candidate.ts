@@ -4,6 +4,7 @@ import { bleedSection } from './bleed.js';
 import { CHARGER } from './charger.js';
 import { CONDUCTOR } from './conductor.js';
 import { NETWORK } from './custom-wiring.js';
+import { EQUALISER } from './equaliser.js';
 import { LEAD_CONDUCTORS } from './lead-conductors.js';
 import { STRING_LEADS } from './leads.js';
 import { LOAD } from './load.js';
@@ -12,6 +13,7 @@ import { BANK_RATINGS } from './ratings.js';
 import { atMostOneOf, named, section } from './section.js';
 import { SLOT_OFFSET } from './slot-offset.js';
 import { takeOffKeys } from './take-off.js';
+import { UPKEEP } from './upkeep.js';
 
 /** Longest string and most strings in parallel; with 16 cells per module that is 64 cells in series at most. */
 const MOST_POSITIONS = 4;
@@ -37,6 +39,13 @@ const options = {
   link: CONDUCTOR.meta({ description: 'Instead of link_mOhm: the link as a conductor.' }).optional(),
   ...takeOffKeys,
   ratings: BANK_RATINGS.optional(),
+  equaliser: EQUALISER.nullable()
+    .meta({ description: 'A device between neighbouring modules of every string; null = none.', default: null })
+    .optional(),
+  upkeep: UPKEEP.meta({
+    description: 'Visits at which every module is charged alone to full; null = none.',
+    default: null,
+  }).optional(),
 };
 
 const ONE_LEAD = atMostOneOf('string_lead_mOhm', 'string_lead');

@@ -1,6 +1,7 @@
 import type { BankInput, CandidateInput } from './candidate.js';
 import { defaultCharger, resolveCharger } from './charger.js';
 import { conductorOhm } from './conductor.js';
+import { defaultEqualiser, resolveEqualiser } from './equaliser.js';
 import { firstKeyOf } from './first-key.js';
 import { type Layer, Layers } from './layers.js';
 import { leadsOfConductors } from './lead-conductors.js';
@@ -10,10 +11,11 @@ import { resolveBankRatings } from './ratings.js';
 import type { Reading } from './reading.js';
 import { resolveNetwork } from './resolve-network.js';
 import { slotOffsets } from './slot-offset.js';
-import type { BleedOverride, Candidate, CustomNetwork, Stock, StringLeads } from './study.js';
+import type { BleedOverride, Candidate, CustomNetwork, EqualiserSettings, Stock, StringLeads } from './study.js';
 import { renderPath, type StudyPath } from './study-path.js';
 import { DEFAULT_BUS_SEGMENT_MOHM, resolveTakeOff } from './take-off.js';
 import { inUnitOfKey } from './units.js';
+import { resolveUpkeep } from './upkeep.js';
 import { moduleFacts, namedModules, type WiredModules, wireModules } from './wiring-rules.js';
 
 const DEFAULT_LINK_MOHM = 1;
@@ -70,6 +72,9 @@ function resolveCandidate(
   options.setting('wiring', reading);
   const slotOffsetK = slotOffsetsOf(options, written.modules, reading);
   const isCustom = wiring === 'custom';
+  const oneBms = wiring === 'native' || written.modules.every((string) => string.length === 1);
+  const upkeep = resolveUpkeep(options.pick('upkeep'), options.owner, oneBms, reading);
+  const equaliser = equaliserOf(options, wired, oneBms, isCustom, reading);
   return {
     key,
     title: written.title ?? key,
@@ -85,6 +90,9 @@ function resolveCandidate(
     ...(network !== null && { network }),
     ...takeOffOf(options, isCustom, wired.strings.length, reading),
     ...ratingsOf(options, reading),
+    // Left out where there is none: candidates without it keep their simulation keys.
+    ...(upkeep !== null && { upkeep }),
+    ...(equaliser !== null && { equaliser }),
   };
 }
 
@@ -154,6 +162,31 @@ function linkOf(options: Options, reading: Reading): number {
 
 function milliohms(ohm: number): string {
   return String(Number(inUnitOfKey('mOhm', ohm).toPrecision(6)));
+}
+
+/** The equaliser, null for none; one said for the whole bank leaves out candidates with one module to a string. */
+function equaliserOf(
+  options: Options,
+  { cellsInSeries }: WiredModules,
+  oneBms: boolean,
+  isCustom: boolean,
+  reading: Reading,
+): EqualiserSettings | null {
+  const picked = options.pick('equaliser');
+  if (picked === undefined || picked.value === null) return null;
+  if (isCustom) {
+    reading.fault(picked.path, 'absent with a custom wiring, whose strings need not have the posts of a device');
+    return null;
+  }
+  if (oneBms) {
+    if (picked.source === 'study') reading.fault(picked.path, 'absent where a string has one BMS: no module beside it');
+    return null;
+  }
+  const values = defaultEqualiser(cellsInSeries);
+  return resolveEqualiser(
+    options.inside('equaliser').over({ source: 'default', path: options.owner, values }),
+    reading,
+  );
 }
 
 function leadsOf(options: Options, strings: number, reading: Reading): readonly StringLeads[] {

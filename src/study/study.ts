@@ -315,7 +315,35 @@ export interface Candidate {
   readonly network?: CustomNetwork;
   /** Absent if none is stated. */
   readonly ratings?: BankRatings;
+  /** Devices between neighbouring modules of every string; absent = none. */
+  readonly equaliser?: EqualiserSettings;
+  /** Rebalancing visits; absent = none. */
+  readonly upkeep?: Upkeep;
 }
+
+/** One device between two neighbouring modules of a string. */
+export interface EqualiserSettings {
+  /** Greatest current taken from the module of higher voltage. */
+  readonly currentA: number;
+  /** Difference of module voltages from which it works, and at which it reaches its greatest current. */
+  readonly startV: number;
+  readonly fullV: number;
+  /** Charge delivered of charge taken. */
+  readonly efficiency: number;
+  /** Drawn from both modules. */
+  readonly standbyA: number;
+  /** Bank voltage above which it works; null = always. */
+  readonly enableV: number | null;
+}
+
+/**
+ * When a visit comes: after so many cycles, after so long, or once drift between modules, a fraction of rated capacity,
+ * is above a limit. Looked at when a cycle has ended.
+ */
+export type Upkeep =
+  | { readonly everyCycles: number }
+  | { readonly everyS: number }
+  | { readonly driftFraction: number };
 
 export interface BleedOverride {
   readonly rule?: 'each' | 'above-lowest' | 'none';

@@ -30,6 +30,7 @@ const KEY_UNITS: readonly KeyUnit[] = [
   { suffix: '_K', unit: 'K', toSi: same },
   { suffix: '_degC', unit: 'degC', toSi: (celsius) => celsius + 273.15 },
   { suffix: '_kJ_per_mol', unit: 'kJ/mol', toSi: (kilojoules) => kilojoules * 1000 },
+  { suffix: '_days', unit: 'days', toSi: (days) => days * 24 * SECONDS_PER_HOUR },
 ];
 
 /** @returns the unit that a key of the study names, empty if it names none */

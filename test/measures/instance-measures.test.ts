@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { buildBank } from '../../src/bank/bank.js';
 import { compileOcvCurves } from '../../src/bank/ocv-curves.js';
+import type { BankAccount } from '../../src/measures/bank-account.js';
 import { type Cutoff, type CycleLog, createCycleLog, logCutoff } from '../../src/measures/cycle-log.js';
 import { cycleValues, type InstanceFacts, instanceMeasures } from '../../src/measures/instance-measures.js';
 import { CYCLE_MEASURES, MEASURES, type MeasureName } from '../../src/measures/registry.js';
@@ -25,6 +26,23 @@ const capacity = (usableAh: number) => ({
   idealAh: 200,
 });
 
+const NO_ACCOUNT: BankAccount = {
+  visits: 0,
+  inWh: 0,
+  outWh: 0,
+  storedGainWh: 0,
+  wiringWh: 0,
+  bleedWh: 0,
+  equaliserAh: 0,
+  equaliserCounterAh: 0,
+  equaliserWh: 0,
+  chargerOnlyS: 0,
+  damagedCells: 0,
+  longestUnfilledS: 0,
+  tripsToFull: null,
+  toFullAh: null,
+};
+
 /** A log of one-day cycles. */
 function logOf(cycles: number): CycleLog {
   const log = createCycleLog(cycles);
@@ -36,6 +54,7 @@ function logOf(cycles: number): CycleLog {
 function measures(facts: Partial<InstanceFacts> & Pick<InstanceFacts, 'log'>, wiring?: Candidate['wiring']) {
   const values = instanceMeasures(bankWired(wiring), {
     twin: null,
+    account: NO_ACCOUNT,
     start: capacity(198),
     end: capacity(190),
     driftLimitFraction: 0.05,

@@ -30,6 +30,8 @@ export function runEngine(bank: ReferenceBank, everyS = Number.POSITIVE_INFINITY
     bank.candidate.load,
     {
       onEvent: ({ kind, timeS, module }) => {
+        // Nobody visits a reference bank.
+        if (kind === 'upkeep-visit') return;
         const slot = module < 0 ? null : module;
         events.push({
           timeS,
