@@ -19,7 +19,7 @@ const MOST_STEP_S = 3600;
 const FIRST_STEP_S = 60;
 const JUMP_A = 2;
 /** Charge that a step may pass over a curve with kinks, fraction of capacity. */
-const MOST_CHARGE_OVER_KINKS = 0.002;
+const MOST_CHARGE_OVER_KINKS = 0.001;
 /** Change of a cell's voltage over a step above which it is tried again shorter, V: keeps events well bracketed. */
 const MOST_VOLTAGE_CHANGE_V = 0.1;
 /** Time for which a step may go on after a bleed has switched within it, s. */

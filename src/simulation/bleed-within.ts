@@ -1,4 +1,4 @@
-import { BLEED_ABOVE_LOWEST, BLEED_NONE } from '../bank/bank.js';
+import { BLEED_ABOVE_LOWEST, BLEED_EACH, BLEED_NONE } from '../bank/bank.js';
 import { pastBleedSwitch } from '../bank/bleed.js';
 import { ocvV } from '../bank/ocv-curves.js';
 import { firstCrossing } from '../mathematics/first-crossing.js';
@@ -7,7 +7,7 @@ import { cellVoltageV, type Kernel } from './kernel.js';
 import type { StepWork } from './step.js';
 
 /** Width to which a switching instant is bracketed, share of the step; within it the line through both ends is taken. */
-const SWITCHING_TOLERANCE = 0.02;
+const SWITCHING_TOLERANCE = 0.25;
 
 /** Bleed that switches within a step: which cells, what that changes in their charge, and for how long it is late. */
 export interface BleedPlan {
@@ -44,7 +44,9 @@ export function planBleed(kernel: Kernel, work: StepWork, plan: BleedPlan): void
     if (highestV[m] < bank.bleedStopV[m] && !anyBleeding(state.bleeding, first, end)) continue;
     // Cells that stop come first: what they did not lose lifts them before others are compared with them. Otherwise a
     // cell that bled too long in a long step would have its neighbours bleed in turn.
-    const stopped = planCells(kernel, work, m, true, lowestV[m], plan);
+    const alike = bank.bleedRule[m] === BLEED_EACH && bank.bleedWhileChargingOnly[m] === 0;
+    const stopped = !(alike && lowestV[m] > bank.bleedStopV[m]) && planCells(kernel, work, m, true, lowestV[m], plan);
+    if (highestV[m] < bank.bleedStartV[m]) continue;
     const lowV = stopped ? liftedLowestV(kernel, work, m, plan.correctionAs) : lowestV[m];
     planCells(kernel, work, m, false, lowV, plan);
   }

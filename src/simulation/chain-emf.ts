@@ -24,8 +24,8 @@ export function updateEmf(kernel: Kernel, elapsedS: number, passedAs: Float64Arr
 function addOpenCircuit(kernel: Kernel, elapsedS: number, passedAs: Float64Array): void {
   const { bank, state, point, chargePerAs, chargePerS, chainFixedV } = kernel;
   const { charge } = state;
-  const { chainCellStart } = bank;
-  const { knots, coefficients } = bank.ocv;
+  const { chainCellStart, curveOfCell, ocv } = bank;
+  const { knots, coefficients } = ocv;
   const { cellV, pieceOfCell, emfV } = point;
   for (let i = 0; i < emfV.length; i++) {
     const q = passedAs[i];
@@ -33,10 +33,13 @@ function addOpenCircuit(kernel: Kernel, elapsedS: number, passedAs: Float64Array
     let sum = chainFixedV[i];
     for (let c = chainCellStart[i]; c < end; c++) {
       const z = charge[c] + chargePerAs[c] * q + chargePerS[c] * elapsedS;
-      // ocvV() of bank/ocv-curves.ts, written out. The piece of the last look is nearly always the right one still.
+      // ocvV() of bank/ocv-curves.ts, written out. The piece of the last look is nearly always the right one still, or one
+      // close by; what lies far off is looked up.
       let piece = pieceOfCell[c];
       if (!(z >= knots[piece] && z < knots[piece + 1])) {
-        piece = findPiece(bank.ocv, bank.curveOfCell[c], z);
+        if (z < knots[piece])
+          piece = piece > 0 && z >= knots[piece - 1] ? piece - 1 : findPiece(ocv, curveOfCell[c], z);
+        else while (z >= knots[piece + 1]) piece++;
         pieceOfCell[c] = piece;
       }
       const d = z - knots[piece];

@@ -11,6 +11,7 @@ import {
 } from '../bank/bus.js';
 import { createNetworkCache, effectiveEmfV, type NetworkCache } from '../bank/conduction.js';
 import { solveNetwork } from '../bank/network.js';
+import { findPiece } from '../bank/ocv-curves.js';
 
 /**
  * What the stepper works with: a bank, its state, the terms at its bus, and room for the stages of a step.
@@ -101,7 +102,8 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
     point: {
       cellV: floats(bank.cells),
       cellHysteresis: floats(bank.cells),
-      pieceOfCell: new Int32Array(bank.cells),
+      // In the curve of each cell from the start: later looks walk from piece to piece.
+      pieceOfCell: bank.curveOfCell.map((curve, c) => findPiece(bank.ocv, curve, state.charge[c])),
       emfV: floats(chains),
       effectiveV: floats(chains),
       currentA: floats(chains),

@@ -8,10 +8,10 @@ import type { Kernel } from './kernel.js';
  *
  *   dI = M dE,   dE_i = E'_i dq_i + sum_k R_ki dF_ki,   dq_i/dt = I_i,   dF_ki/dt = (I_i - F_ki) / tau_k
  *
- * What an implicit step of length h has to solve, with g = 1 / (gamma h), is the same bank at rest with each chain's
+ * What an implicit step of length h has to solve, with a = gamma h, is the same bank at rest with each chain's
  * resistance made larger by what its EMF gives way over the step:
  *
- *   (1 - M D) dI = M w,   D_i = E'_i / g + sum_k R_ki / (1 + g tau_k)
+ *   (1 - M D) dI = M w,   D_i = a E'_i + sum_k R_ki a / (a + tau_k)
  */
 export interface Linearised {
   /** M, row by row, S. */
@@ -21,16 +21,31 @@ export interface Linearised {
   /** 1 - M D, factored. */
   readonly factors: Float64Array;
   readonly drivenV: Float64Array;
+  /** a E' of each chain, and a R_k of each filter over 1 + a / tau_k. */
+  readonly gaveOhm: Float64Array;
+  readonly filterGaveOhm: Float64Array;
+  /** Of each time constant: a / (1 + a / tau), and 1 / tau. */
+  readonly filterS: Float64Array;
+  readonly filterPerS: Float64Array;
+  /** a, s. */
+  stageS: number;
   /** Solution of the latest `solveLinearised`. */
   readonly changeA: Float64Array;
 }
 
-export function createLinearised(chains: number): Linearised {
+export function createLinearised({ bank }: Kernel): Linearised {
+  const chains = bank.chainOhm.length;
+  const pairs = bank.timeConstantS.length;
   return {
     currentPerEmf: new Float64Array(chains * chains),
     currentPerS: new Float64Array(chains),
     factors: new Float64Array(chains * chains),
     drivenV: new Float64Array(chains),
+    gaveOhm: new Float64Array(chains),
+    filterGaveOhm: new Float64Array(pairs * chains),
+    filterS: new Float64Array(pairs),
+    filterPerS: Float64Array.from(bank.timeConstantS, (tauS) => 1 / tauS),
+    stageS: 0,
     changeA: new Float64Array(chains),
   };
 }
@@ -60,61 +75,54 @@ export function linearise(kernel: Kernel, linearised: Linearised): void {
   }
 }
 
-/** Prepares `solveLinearised` for a step, `g` = 1 / (gamma h), 1/s. */
-export function factorLinearised(kernel: Kernel, linearised: Linearised, g: number): void {
-  const { bank, emfPerAs } = kernel;
-  const { timeConstantS, chainPolarisationOhm } = bank;
-  const { currentPerEmf, factors, drivenV } = linearised;
-  const chains = drivenV.length;
-  const giveOhm = drivenV;
-  for (let i = 0; i < chains; i++) giveOhm[i] = emfPerAs[i] / g;
-  for (let k = 0; k < timeConstantS.length; k++) {
-    const share = 1 / (1 + g * timeConstantS[k]);
-    for (let i = 0; i < chains; i++) giveOhm[i] += share * chainPolarisationOhm[k * chains + i];
+/** Prepares `solveLinearised` for stages of `stageS` = gamma h. */
+export function factorLinearised({ bank, emfPerAs }: Kernel, linearised: Linearised, stageS: number): void {
+  const { chainPolarisationOhm } = bank;
+  const { currentPerEmf, factors, gaveOhm, filterGaveOhm, filterS, filterPerS } = linearised;
+  const chains = gaveOhm.length;
+  linearised.stageS = stageS;
+  for (let i = 0; i < chains; i++) gaveOhm[i] = stageS * emfPerAs[i];
+  const giveOhm = linearised.drivenV;
+  for (let i = 0; i < chains; i++) giveOhm[i] = gaveOhm[i];
+  for (let k = 0, at = 0; k < filterS.length; k++) {
+    const seconds = stageS / (1 + stageS * filterPerS[k]);
+    filterS[k] = seconds;
+    for (let i = 0; i < chains; i++, at++) {
+      filterGaveOhm[at] = chainPolarisationOhm[at] * seconds;
+      giveOhm[i] += filterGaveOhm[at] * filterPerS[k];
+    }
   }
-  for (let i = 0; i < chains; i++) {
-    for (let j = 0, at = i * chains; j < chains; j++, at++) factors[at] = -currentPerEmf[at] * giveOhm[j];
+  for (let i = 0, at = 0; i < chains; i++) {
+    for (let j = 0; j < chains; j++, at++) factors[at] = -currentPerEmf[at] * giveOhm[j];
     factors[i * chains + i] += 1;
   }
   factorLu(factors, chains);
 }
 
 /**
- * Solves one stage: (g - J) u = r for charge and filtered currents at once.
+ * Solves one stage: (1 / a - J) u = r for charge and filtered currents at once.
  *
- * @param rateA right-hand sides of the charges; overwritten with their changes
- * @param filterRate right-hand sides of the filtered currents, A/s; overwritten with their changes
+ * @param rateA right-hand sides of the charges, A; overwritten with their changes, As
+ * @param filterRate right-hand sides of the filtered currents, A/s; overwritten with their changes, A
  */
-export function solveLinearised(
-  kernel: Kernel,
-  linearised: Linearised,
-  g: number,
-  rateA: Float64Array,
-  filterRate: Float64Array,
-): void {
-  const { bank, emfPerAs } = kernel;
-  const { timeConstantS, chainPolarisationOhm } = bank;
-  const { currentPerEmf, factors, drivenV, changeA } = linearised;
+export function solveLinearised(linearised: Linearised, rateA: Float64Array, filterRate: Float64Array): void {
+  const { currentPerEmf, factors, drivenV, changeA, gaveOhm, filterGaveOhm, filterS, filterPerS, stageS } = linearised;
   const chains = drivenV.length;
-  for (let i = 0; i < chains; i++) drivenV[i] = (emfPerAs[i] * rateA[i]) / g;
-  for (let k = 0; k < timeConstantS.length; k++) {
-    const perRateS = 1 / (g + 1 / timeConstantS[k]);
-    for (let i = 0, at = k * chains; i < chains; i++, at++) {
-      drivenV[i] += chainPolarisationOhm[at] * filterRate[at] * perRateS;
-    }
-  }
   for (let i = 0; i < chains; i++) {
+    let volts = gaveOhm[i] * rateA[i];
+    for (let at = i; at < filterRate.length; at += chains) volts += filterGaveOhm[at] * filterRate[at];
+    drivenV[i] = volts;
+  }
+  for (let i = 0, at = 0; i < chains; i++) {
     let sum = 0;
-    for (let j = 0, at = i * chains; j < chains; j++, at++) sum += currentPerEmf[at] * drivenV[j];
+    for (let j = 0; j < chains; j++, at++) sum += currentPerEmf[at] * drivenV[j];
     changeA[i] = sum;
   }
   solveLu(factors, chains, changeA);
-  for (let i = 0; i < chains; i++) rateA[i] = (rateA[i] + changeA[i]) / g;
-  for (let k = 0; k < timeConstantS.length; k++) {
-    const perS = 1 / timeConstantS[k];
-    const inverse = 1 / (g + perS);
-    for (let i = 0, at = k * chains; i < chains; i++, at++) {
-      filterRate[at] = (filterRate[at] + changeA[i] * perS) * inverse;
-    }
+  for (let i = 0; i < chains; i++) rateA[i] = (rateA[i] + changeA[i]) * stageS;
+  for (let k = 0, at = 0; k < filterS.length; k++) {
+    const seconds = filterS[k];
+    const perS = filterPerS[k];
+    for (let i = 0; i < chains; i++, at++) filterRate[at] = (filterRate[at] + changeA[i] * perS) * seconds;
   }
 }

@@ -36,9 +36,9 @@ export const LEAST_STEP_S = 0.01;
 /** Distance from a branch of the hysteresis at which a cell is taken to be on it. */
 const ON_BRANCH = 1e-6;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */
-const CHARGE_TOLERANCE = 5e-5;
+const CHARGE_TOLERANCE = 1e-4;
 /** The same per second of a step: bounds the error of the mean current of short steps, as in a taper, 1/s. */
-const RATE_TOLERANCE = 1.5e-7;
+const RATE_TOLERANCE = 4e-7;
 /** Embedded error of a filtered current, as a fraction of the charge of the smallest cell per second (0.01 C), 1/s. */
 const FILTER_TOLERANCE = 2.8e-6;
 
@@ -47,7 +47,7 @@ export function createStepWork(kernel: Kernel): StepWork {
   const filters = kernel.state.filterA.length;
   const stage = (): StageChange => ({ chargeAs: new Float64Array(chains), filterA: new Float64Array(filters) });
   return {
-    linearised: createLinearised(chains),
+    linearised: createLinearised(kernel),
     firstA: new Float64Array(chains),
     lastA: new Float64Array(chains),
     stage1: stage(),
@@ -100,29 +100,28 @@ export function tryStep(kernel: Kernel, work: StepWork, stepS: number): number {
   const chains = firstA.length;
   const filters = filterA.length;
   work.stepS = stepS;
-  const g = 1 / (GAMMA * stepS);
   linearise(kernel, linearised);
-  factorLinearised(kernel, linearised, g);
+  factorLinearised(kernel, linearised, GAMMA * stepS);
 
-  stageRates(kernel, linearised, firstA, state.filterA, GAMMA * stepS, q1, f1);
-  solveLinearised(kernel, linearised, g, q1, f1);
+  stageRates(linearised, firstA, state.filterA, GAMMA * stepS, q1, f1);
+  solveLinearised(linearised, q1, f1);
 
   for (let i = 0; i < chains; i++) passedAs[i] = q1[i];
   for (let at = 0; at < filters; at++) filterA[at] = state.filterA[at] + f1[at];
   updateEmf(kernel, GAMMA * stepS, passedAs, filterA);
   if (!solveKept(kernel)) return Number.POSITIVE_INFINITY;
   const from1 = C_21 / stepS;
-  stageRates(kernel, linearised, point.currentA, filterA, TIME_2 * stepS, q2, f2);
+  stageRates(linearised, point.currentA, filterA, TIME_2 * stepS, q2, f2);
   for (let i = 0; i < chains; i++) q2[i] += from1 * q1[i];
   for (let at = 0; at < filters; at++) f2[at] += from1 * f1[at];
-  solveLinearised(kernel, linearised, g, q2, f2);
+  solveLinearised(linearised, q2, f2);
 
   const also1 = C_31 / stepS;
   const from2 = C_32 / stepS;
-  stageRates(kernel, linearised, point.currentA, filterA, TIME_3 * stepS, q3, f3);
+  stageRates(linearised, point.currentA, filterA, TIME_3 * stepS, q3, f3);
   for (let i = 0; i < chains; i++) q3[i] += also1 * q1[i] + from2 * q2[i];
   for (let at = 0; at < filters; at++) f3[at] += also1 * f1[at] + from2 * f2[at];
-  solveLinearised(kernel, linearised, g, q3, f3);
+  solveLinearised(linearised, q3, f3);
 
   let worst = 0;
   const perCharge = 1 / Math.min(CHARGE_TOLERANCE, RATE_TOLERANCE * stepS);
@@ -149,19 +148,17 @@ export function tryStep(kernel: Kernel, work: StepWork, stepS: number): number {
 
 /** Rates f of charges and filtered currents at a stage, with the share `timeS` of what time alone changes. */
 function stageRates(
-  { bank }: Kernel,
-  { currentPerS }: Linearised,
+  { currentPerS, filterPerS }: Linearised,
   currentA: Float64Array,
   filterA: Float64Array,
   timeS: number,
   rateA: Float64Array,
   filterRate: Float64Array,
 ): void {
-  const { timeConstantS } = bank;
   const chains = currentA.length;
   for (let i = 0; i < chains; i++) rateA[i] = currentA[i] + timeS * currentPerS[i];
-  for (let k = 0, at = 0; k < timeConstantS.length; k++) {
-    const perS = 1 / timeConstantS[k];
+  for (let k = 0, at = 0; k < filterPerS.length; k++) {
+    const perS = filterPerS[k];
     for (let i = 0; i < chains; i++, at++) filterRate[at] = (rateA[i] - filterA[at]) * perS;
   }
 }

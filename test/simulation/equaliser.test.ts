@@ -28,10 +28,14 @@ const DEVICE: EqualiserSettings = {
 };
 
 /** What became of a bank. */
-function runOf(bank: ReferenceBank, onStep: (journey: Journey, stepS: number) => void = () => undefined) {
+function runOf(
+  bank: ReferenceBank,
+  onStep: (journey: Journey, stepS: number) => void = () => undefined,
+  toleranceFactor = 1,
+) {
   const study = studyOf(bank);
   const named = new Map(bank.modules.flat().map((module) => [module.id, module]));
-  const parts = { study, candidate: bank.candidate, ocv: compileOcvCurves(bank.ocvTables), toleranceFactor: 1 };
+  const parts = { study, candidate: bank.candidate, ocv: compileOcvCurves(bank.ocvTables), toleranceFactor };
   const { journey, recorder, accountant, visits } = startBank(parts, named, { onStep });
   runCourse(journey, recorder, dutyCourse(study.duty, study.cycles), bank, undefined, visits);
   const { state, bank: built } = journey.kernel;
@@ -195,43 +199,48 @@ describe('a bank with equalisers', () => {
     const regions = new Set<number>();
     fc.assert(
       fc.property(rolls, fc.constantFrom('strings', 'cross-linked'), (rolled, wiring) => {
-        runOf(workedHard(rolled, wiring, 0.9), (journey) => {
-          const { kernel, work } = journey;
-          const { bank, state, point } = kernel;
-          const { equaliser } = bank;
-          if (equaliser === null) throw new RangeError('no equaliser');
-          const { settings } = equaliser;
-          const J = point.currentA;
-          const terminalV = J.map((amps, m) => point.emfV[m] + (bank.pathOhm[m] + 0.002) * amps);
-          // What the devices drive, from the terminal voltages alone.
-          const sourceA = J.map(() => 0);
-          for (let string = 0; string < bank.strings; string++) {
-            for (let p = 0; p + 1 < bank.positions; p++) {
-              const [a, b] = [string * bank.positions + p, string * bank.positions + p + 1];
-              const high = terminalV[b] > terminalV[a] ? b : a;
-              const low = high === a ? b : a;
-              const share = (terminalV[high] - terminalV[low] - settings.startV) / (settings.fullV - settings.startV);
-              const amps = state.equaliserOn[0] * settings.currentA * Math.min(1, Math.max(0, share));
-              sourceA[high] -= amps + settings.standbyA;
-              sourceA[low] += settings.efficiency * amps - settings.standbyA;
-              regions.add(amps === 0 ? 0 : share >= 1 ? 2 : 1);
+        runOf(
+          workedHard(rolled, wiring, 0.9),
+          (journey) => {
+            const { kernel, work } = journey;
+            const { bank, state, point } = kernel;
+            const { equaliser } = bank;
+            if (equaliser === null) throw new RangeError('no equaliser');
+            const { settings } = equaliser;
+            const J = point.currentA;
+            const terminalV = J.map((amps, m) => point.emfV[m] + (bank.pathOhm[m] + 0.002) * amps);
+            // What the devices drive, from the terminal voltages alone.
+            const sourceA = J.map(() => 0);
+            for (let string = 0; string < bank.strings; string++) {
+              for (let p = 0; p + 1 < bank.positions; p++) {
+                const [a, b] = [string * bank.positions + p, string * bank.positions + p + 1];
+                const high = terminalV[b] > terminalV[a] ? b : a;
+                const low = high === a ? b : a;
+                const share = (terminalV[high] - terminalV[low] - settings.startV) / (settings.fullV - settings.startV);
+                const amps = state.equaliserOn[0] * settings.currentA * Math.min(1, Math.max(0, share));
+                sourceA[high] -= amps + settings.standbyA;
+                sourceA[low] += settings.efficiency * amps - settings.standbyA;
+                regions.add(amps === 0 ? 0 : share >= 1 ? 2 : 1);
+              }
             }
-          }
-          const leadA = J.map((amps, m) => amps - sourceA[m]);
-          let bankA = 0;
-          for (let string = 0; string < bank.strings; string++) {
-            const first = string * bank.positions;
-            let volts = 0;
-            for (let m = first; m < first + bank.positions; m++) {
-              volts += terminalV[m] + bank.wiring.chains[m].ohm * leadA[m];
-              // In strings all leads of a string carry one current.
-              if (wiring === 'strings') expect(Math.abs(leadA[m] - leadA[first])).toBeLessThan(1e-4);
+            const leadA = J.map((amps, m) => amps - sourceA[m]);
+            let bankA = 0;
+            for (let string = 0; string < bank.strings; string++) {
+              const first = string * bank.positions;
+              let volts = 0;
+              for (let m = first; m < first + bank.positions; m++) {
+                volts += terminalV[m] + bank.wiring.chains[m].ohm * leadA[m];
+                // In strings all leads of a string carry one current.
+                if (wiring === 'strings') expect(Math.abs(leadA[m] - leadA[first])).toBeLessThan(1e-4);
+              }
+              expect(Math.abs(volts - work.endBankV)).toBeLessThan(1e-6);
+              bankA += leadA[first];
             }
-            expect(Math.abs(volts - work.endBankV)).toBeLessThan(1e-6);
-            bankA += leadA[first];
-          }
-          expect(Math.abs(bankA - work.endBankA)).toBeLessThan(2e-4);
-        });
+            expect(Math.abs(bankA - work.endBankA)).toBeLessThan(2e-4);
+            // A region ends a little late: taken at a tenth of the stepper's tolerances.
+          },
+          0.1,
+        );
       }),
       { seed: 141, numRuns: 40, endOnFailure: true },
     );
