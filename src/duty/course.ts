@@ -6,13 +6,22 @@ export interface DutyCycle {
   readonly segments: readonly DutySegment[];
 }
 
-/** A duty unrolled up to its horizon: cycle c (from 1) is at index c - 1. Repeated cycles are the same object. */
-export function dutyCourse(duty: Duty, cycles: number): readonly DutyCycle[] {
-  const once = duty.parts.flatMap((part) => {
-    const turn = part.cycles.map((segments): DutyCycle => ({ part: part.name, segments }));
-    return Array.from({ length: part.repeat }, () => turn).flat();
-  });
-  return Array.from({ length: cycles }, (_, index) => once[index % once.length]);
+/**
+ * A duty unrolled up to its horizon: cycle c (from 1) is at index c - 1. Repeated cycles are the same object, and nothing
+ * beyond the horizon is unrolled: parts may be repeated for centuries.
+ */
+export function dutyCourse({ parts }: Duty, cycles: number): readonly DutyCycle[] {
+  const turns = parts.map((part) => part.cycles.map((segments): DutyCycle => ({ part: part.name, segments })));
+  const course: DutyCycle[] = [];
+  while (course.length < cycles) {
+    for (const [index, { repeat }] of parts.entries()) {
+      for (let time = 0; time < repeat && course.length < cycles; time++) {
+        for (const cycle of turns[index]) course.push(cycle);
+      }
+    }
+  }
+  course.length = cycles;
+  return course;
 }
 
 /** Index of the last segment of a cycle that has load to serve, -1 if none has. */

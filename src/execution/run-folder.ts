@@ -8,7 +8,7 @@ import { FolderRefused } from './folder-refused.js';
 import { Journal } from './journal.js';
 import { isLockFile, takeLock } from './lock.js';
 import { makeFolder } from './make-folder.js';
-import { errorCode } from './system-error.js';
+import { errorCode, isSystemError } from './system-error.js';
 
 /** Names in a run folder, apart from the results. */
 export const RUN_FILE = {
@@ -36,10 +36,20 @@ export class RunFolder {
    * Takes a folder for a run, a new one if there is none.
    *
    * @param discard names of what an earlier run left that are removed first
-   * @throws FolderRefused if it holds something else than a run, or a run that goes on
+   * @throws FolderRefused if it holds something else than a run, or a run that goes on, or cannot be written
    */
   static async open(path: string, discard: readonly string[]): Promise<RunFolder> {
     await refuseIfForeign(path);
+    try {
+      return await RunFolder.#take(path, discard);
+    } catch (error) {
+      // A folder of somebody else's, a medium that is read-only or full: not a fault of this program.
+      throw isSystemError(error) ? unusable(path, error) : error;
+    }
+  }
+
+  /** A folder that has been looked at, with its lock and its journal. */
+  static async #take(path: string, discard: readonly string[]): Promise<RunFolder> {
     const release = await takeLock(path);
     try {
       for (const name of discard) await rm(join(path, name), { recursive: true, force: true });
@@ -109,6 +119,10 @@ async function namesIn(path: string): Promise<string[]> {
     makeFolder(path);
     return await readdir(path);
   } catch (error) {
-    throw new FolderRefused(`${path} cannot be used: ${error instanceof Error ? error.message : String(error)}`);
+    throw unusable(path, error);
   }
+}
+
+function unusable(path: string, error: unknown): FolderRefused {
+  return new FolderRefused(`${path} cannot be used: ${error instanceof Error ? error.message : String(error)}`);
 }

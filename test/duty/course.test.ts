@@ -58,6 +58,17 @@ describe('dutyCourse', () => {
     expect(dutyCourse(year, 1)).toHaveLength(1);
   });
 
+  it('unrolls no repeats beyond the horizon', () => {
+    // The largest duty that a study may state, of a profile of four years: 1.46e9 cycles, more than a machine could hold.
+    const years = Array.from({ length: 1461 }, () => sunny);
+    const parts = Array.from({ length: 100 }, (_, n): DutyPart => ({ name: `${n}`, repeat: 10_000, cycles: years }));
+    const course = dutyCourse(duty(...parts), 36_500);
+    expect(course).toHaveLength(36_500);
+    expect(course[1461]).toBe(course[0]);
+    expect(course.at(-1)).toEqual({ part: '0', segments: sunny });
+    expect(dutyCourse(duty({ name: 'first', repeat: 1, cycles: years }, ...parts), 1462).at(-1)?.part).toBe('0');
+  });
+
   it('holds every cycle of the study once', () => {
     const course = dutyCourse(year, 100);
     expect(new Set(course).size).toBe(3);

@@ -4,6 +4,7 @@ import { afterAll, describe, expect, it } from 'vitest';
 import { FolderRefused } from '../../src/execution/folder-refused.js';
 import { RunFolder } from '../../src/execution/run-folder.js';
 import { Scratch } from './fake-run.js';
+import { unwritableFolder } from './unwritable-folder.js';
 
 const scratch = new Scratch();
 afterAll(() => scratch.remove());
@@ -33,6 +34,20 @@ describe('the folder of a run', () => {
 
   it('is not a file', async () => {
     await expect(RunFolder.open(join(folderWith('a'), 'a'), [])).rejects.toThrow('cannot be used');
+  });
+
+  it.runIf(process.platform === 'linux')('is not one that cannot be written, which is told and no fault', async () => {
+    const path = unwritableFolder(scratch.next());
+    await expect(RunFolder.open(path, ['outcomes'])).rejects.toThrow(FolderRefused);
+    await expect(RunFolder.open(path, [])).rejects.toThrow(/cannot be used: ENAMETOOLONG/);
+    expect(readdirSync(path)).toEqual([]);
+  });
+
+  it('is not one whose journal cannot be opened, and is free again', async () => {
+    const path = scratch.next();
+    mkdirSync(join(path, 'journal.jsonl'), { recursive: true });
+    await expect(RunFolder.open(path, [])).rejects.toThrow(/cannot be used: EISDIR/);
+    expect(readdirSync(path)).toEqual(['journal.jsonl']);
   });
 
   it('loses what is to be discarded and nothing else', async () => {

@@ -5,6 +5,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { FIRST_STUDY } from '../../src/commands/new.js';
+import { unwritableFolder } from '../execution/unwritable-folder.js';
 import { TREE } from './packed.js';
 
 // Status 1 is reached in test/commands/program.test.ts and run.test.ts, 5 in run.test.ts, 130 and 143 in
@@ -69,6 +70,12 @@ describe('the exit status of the built program', () => {
     const { status, out, err } = await command(...args);
     expect([status, out]).toEqual([2, '']);
     expect(err).toMatch(message);
+  });
+
+  it.runIf(process.platform === 'linux')('is 2 with one message for a folder that cannot be written', async () => {
+    const { status, out, err } = await command('run', 'good.yaml', '--out', unwritableFolder(join(folder, 'full')));
+    expect([status, out]).toEqual([2, '']);
+    expect(err).toMatch(/^\S+ cannot be used: ENAMETOOLONG.*\n$/);
   });
 
   it.runIf(process.platform === 'linux').each([
