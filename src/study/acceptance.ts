@@ -42,12 +42,31 @@ const LIMIT_KEYS: readonly LimitKey[] = Object.values(UNIT_SUFFIXES).flatMap((su
   `at_least${suffix}`,
 ]);
 
-const limit = amount({ atLeast: -1e9, atMost: 1e9 }).optional();
-const limits = Object.fromEntries(LIMIT_KEYS.map((key) => [key, limit])) as Record<LimitKey, typeof limit>;
+const limit = (bound: 'most' | 'least', unit: string) =>
+  amount(
+    { atLeast: -1e9, atMost: 1e9 },
+    {
+      description: `The measure must be at ${bound} this; it has ${unit === '' ? 'no unit' : `the unit ${unit}`}.`,
+    },
+  ).optional();
+const limits = Object.fromEntries(
+  Object.entries(UNIT_SUFFIXES).flatMap(([unit, suffix]) => [
+    [`at_most${suffix}`, limit('most', unit)],
+    [`at_least${suffix}`, limit('least', unit)],
+  ]),
+) as Record<LimitKey, ReturnType<typeof limit>>;
 
 const LINE = section({
-  measure: z.string('the name of a measure'),
-  statistic: z.string('a statistic of the measure').optional(),
+  measure: z
+    .string('the name of a measure')
+    .meta({ description: 'A measure by its name in summary.csv, such as load_lost.' }),
+  statistic: z
+    .string('a statistic of the measure')
+    .meta({
+      description:
+        'As in summary.csv. Default: share_of_banks of an event, of an amount its bad tail (percentile_95, or percentile_5).',
+    })
+    .optional(),
   ...limits,
 }).refine(exactlyOneOf(...LIMIT_KEYS)[0], 'a line with exactly one limit such as at_most_percent or at_least_Ah');
 

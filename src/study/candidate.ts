@@ -30,7 +30,10 @@ const options = {
   ).optional(),
   charger: CHARGER.optional(),
   load: LOAD.optional(),
-  commissioning: choice(['as-received', 'each-module-full'], { default: 'as-received' }).optional(),
+  commissioning: choice(['as-received', 'each-module-full'], {
+    description: 'Put together as the modules arrive, or after each was charged alone to full.',
+    default: 'as-received',
+  }).optional(),
   bleed: bleedSection((nominal) => nominal)
     .meta({ description: 'Replaces the bleed of every module, key by key.' })
     .optional(),
@@ -60,8 +63,15 @@ export const BANK = section(options)
 
 /** One way of wiring the bank. */
 const CANDIDATE = section({
-  title: z.string('a text').max(200, 'a text of at most 200 characters').optional(),
-  wiring: choice(['strings', 'cross-linked', 'native', 'custom']),
+  title: z
+    .string('a text')
+    .max(200, 'a text of at most 200 characters')
+    .meta({ description: 'Text for readers of the study.' })
+    .optional(),
+  wiring: choice(['strings', 'cross-linked', 'native', 'custom'], {
+    description:
+      'Strings that meet at the bus only; strings tied at equal positions; one BMS per string; a network of its own.',
+  }),
   modules: z
     .array(z.array(moduleId, STRING_RULE).min(1, STRING_RULE).max(MOST_POSITIONS, STRING_RULE), STRINGS_RULE)
     .min(1, STRINGS_RULE)

@@ -5,20 +5,26 @@ import { section } from './section.js';
 /** Cells in series that modules have. */
 const CELL_COUNTS = [4, 8, 16] as const;
 
-/** @returns schema of a value that every cell of a module has: one number for all, or one per cell */
+/** @returns schema of a value that every cell of a module has: one number for all, or one per cell; it means the same */
 export function cellValues(range: z.ZodNumber) {
   const list = z.array(range, 'a list with one value per cell').min(1, 'a list with one value per cell');
-  return z.union([range, list], 'a number, or a list with one value per cell');
+  return z.union([range, list], 'a number, or a list with one value per cell').meta(range.meta() ?? {});
 }
 
 /** Resistance of a polarisation pair, mOhm per cell. */
-export const polarisationMOhm = amount({ above: 0, atMost: 10_000 });
+export const polarisationMOhm = amount(
+  { above: 0, atMost: 10_000 },
+  { description: 'Resistance of the pair, per cell.' },
+);
 
 /** @returns schema of polarisation pairs, their resistance as `leaf` makes it */
 export function polarisationPairs<L extends z.ZodType>(leaf: L) {
   return z
     .array(
-      section({ mOhm: leaf, tau_s: amount({ above: 0, atMost: 1e7 }) }),
+      section({
+        mOhm: leaf,
+        tau_s: amount({ above: 0, atMost: 1e7 }, { description: 'Time constant of the pair.' }),
+      }),
       'a list of pairs such as {mOhm: 0.4, tau_s: 60}',
     )
     .max(8, 'a list of at most 8 pairs')
@@ -53,13 +59,29 @@ export const commonCellKeys = {
 
 /** Bounds of what a cell or module can have, shared by populations and modules written down. */
 export const POSSIBLE = {
-  capacityAh: amount({ above: 0, atMost: 100_000 }),
-  cellResistanceMOhm: amount({ above: 0, atMost: 10_000 }),
-  leakagePercentPerMonth: amount({ atLeast: 0, atMost: 100 }),
-  standbyMA: amount({ atLeast: 0, atMost: 100_000 }),
-  efficiency: amount({ above: 0, atMost: 1 }),
-  chargePercent: amount({ atLeast: 0, atMost: 100 }),
-  seriesMOhm: amount({ atLeast: 0, atMost: 10_000 }),
+  capacityAh: amount({ above: 0, atMost: 100_000 }, described('Capacity of a cell at 25 degC. Default: by grade.')),
+  cellResistanceMOhm: amount(
+    { above: 0, atMost: 10_000 },
+    described('Ohmic resistance of a cell at 25 degC. Default: by grade, inverse to rated_Ah.'),
+  ),
+  leakagePercentPerMonth: amount(
+    { atLeast: 0, atMost: 100 },
+    described('Self-discharge of a cell at 25 degC, of its capacity. Default: by grade.'),
+  ),
+  standbyMA: amount(
+    { atLeast: 0, atMost: 100_000 },
+    described('Drawn by the BMS from all cells of its module. Default: by grade.'),
+  ),
+  efficiency: amount({ above: 0, atMost: 1 }, described('Charge stored of charge taken in. Default: by grade.')),
+  chargePercent: amount({ atLeast: 0, atMost: 100 }, described('Charge of a cell when the bank is put together.', 50)),
+  pathMOhm: amount(
+    { atLeast: 0, atMost: 10_000 },
+    described('Switches, shunt and terminals of a module together.', 1.5),
+  ),
+  jointMOhm: amount(
+    { atLeast: 0, atMost: 10_000 },
+    described('Joints between the cells of a module together. Default: 1.3 mOhm per four cells.'),
+  ),
   temperatureOffsetK: amount(
     { atLeast: -50, atMost: 50 },
     described('By how much a module is warmer than its slot.', 0),

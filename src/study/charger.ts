@@ -17,7 +17,10 @@ export const CHARGER = section({
       { atLeast: 0, atMost: 100_000 },
       { description: 'Bank current below which charging ends; 0 = never. Default: a fiftieth of the rated capacity.' },
     ).optional(),
-    tail_hold_s: amount({ atLeast: 0, atMost: 86_400 }, { default: 120 }).optional(),
+    tail_hold_s: amount(
+      { atLeast: 0, atMost: 86_400 },
+      { description: 'How long the current must be below tail_A.', default: 120 },
+    ).optional(),
     or_after_h: hours
       .nullable()
       .meta({ description: 'Longest time at absorption; null = no limit.', default: null })
@@ -27,7 +30,10 @@ export const CHARGER = section({
     .nullable()
     .meta({ description: 'Held afterwards; null = off. Default: 13.6 V per four cells in series.' })
     .optional(),
-  restart: choice(['each-cycle', 'below-voltage'], { default: 'each-cycle' }).optional(),
+  restart: choice(['each-cycle', 'below-voltage'], {
+    description: 'When charging begins anew: at the start of each cycle and below restart_V, or below restart_V only.',
+    default: 'each-cycle',
+  }).optional(),
   restart_V: busVoltage.meta({ description: 'Default: 13.2 V per four cells in series.' }).optional(),
 });
 

@@ -16,9 +16,14 @@ const quantity = z.enum(KEYS, `one of ${KEYS.join(', ')}`);
 export const CORRELATIONS = z
   .array(
     section({
-      level: choice(['lot', 'module', 'cell']),
-      of: z.tuple([quantity, quantity], 'a list of two quantities'),
-      rho: amount({ above: -1, below: 1 }),
+      level: choice(['lot', 'module', 'cell'], { description: 'Level at which the deviations go together.' }),
+      of: z
+        .tuple([quantity, quantity], 'a list of two quantities')
+        .meta({ description: 'Two quantities by their keys in a stock.' }),
+      rho: amount(
+        { above: -1, below: 1 },
+        { description: 'Correlation of their normal scores; below 0, one is low where the other is high.' },
+      ),
     }),
     'a list such as [{level: module, of: [capacity_Ah, cell_resistance_mOhm], rho: -0.3}]',
   )

@@ -5,8 +5,8 @@ import { filePath } from './file-path.js';
 import { exactlyOneOf, section } from './section.js';
 import { bankSpread } from './spread.js';
 
-const hours = amount({ above: 0, atMost: 8784 });
-const power = amount({ above: 0, atMost: 1e6 });
+const hours = (description: string) => amount({ above: 0, atMost: 8784 }, { description });
+const dischargeHours = hours('Length of the phase.');
 const chargePower = amount(
   { above: 0, atMost: 1e6 },
   { description: 'Power the charger can give; without it only its own limit counts.' },
@@ -28,8 +28,8 @@ const PHASE_RULE = 'a phase such as {discharge_W: 1000, for_h: 3}, {rest_h: 1} o
 const PHASE = z.union(
   [
     section({
-      discharge_W: power,
-      for_h: hours,
+      discharge_W: amount({ above: 0, atMost: 1e6 }, { description: 'Load of the phase as a power.' }),
+      for_h: dischargeHours,
       load_peak_W: peakPower.optional(),
       peak_s: peakSeconds.optional(),
       ambient_degC: ambient,
@@ -37,15 +37,23 @@ const PHASE = z.union(
       ({ load_peak_W, peak_s }) => (load_peak_W === undefined) === (peak_s === undefined),
       'a phase with both load_peak_W and peak_s, or neither',
     ),
-    section({ discharge_A: amount({ above: 0, atMost: 100_000 }), for_h: hours, ambient_degC: ambient }),
-    section({ rest_h: hours, ambient_degC: ambient }),
     section({
-      charge: z.literal('to-full', 'to-full'),
-      at_most_h: hours,
+      discharge_A: amount({ above: 0, atMost: 100_000 }, { description: 'Load of the phase as a current.' }),
+      for_h: dischargeHours,
+      ambient_degC: ambient,
+    }),
+    section({ rest_h: hours('Length of a phase without load and charge.'), ambient_degC: ambient }),
+    section({
+      charge: z.literal('to-full', 'to-full').meta({ description: 'A phase that ends when the charger is done.' }),
+      at_most_h: hours('Longest time of that phase.'),
       charge_W: chargePower,
       ambient_degC: ambient,
     }),
-    section({ charge_for_h: hours, charge_W: chargePower, ambient_degC: ambient }),
+    section({
+      charge_for_h: hours('Length of a phase of charging, done or not.'),
+      charge_W: chargePower,
+      ambient_degC: ambient,
+    }),
   ],
   PHASE_RULE,
 );
@@ -55,7 +63,8 @@ export type PhaseInput = z.infer<typeof PHASE>;
 const PHASES = z
   .array(PHASE, 'a list of phases')
   .min(1, 'a list of phases')
-  .max(10_000, 'a list of at most 10000 phases');
+  .max(10_000, 'a list of at most 10000 phases')
+  .meta({ description: 'One cycle as phases in order.' });
 
 /** CSV with the columns time_h, load_W, charge_W and, if wanted, load_peak_W with peak_s, and ambient_degC. */
 const PROFILE = filePath.meta({
@@ -64,7 +73,11 @@ const PROFILE = filePath.meta({
 });
 
 const PART = section({
-  name: z.string('a name').min(1, 'a name').max(80, 'a name of at most 80 characters'),
+  name: z
+    .string('a name')
+    .min(1, 'a name')
+    .max(80, 'a name of at most 80 characters')
+    .meta({ description: 'Name of the part in messages.' }),
   repeat: count(
     { atLeast: 1, atMost: 10_000 },
     { description: 'Times the part is run before the next.', default: 1 },
@@ -80,7 +93,12 @@ const factor = amount({ above: 0, atMost: 100 });
 export const DUTY = section({
   profile: PROFILE.optional(),
   phases: PHASES.optional(),
-  parts: z.array(PART, 'a list of parts').min(1, 'a list of parts').max(100, 'a list of at most 100 parts').optional(),
+  parts: z
+    .array(PART, 'a list of parts')
+    .min(1, 'a list of parts')
+    .max(100, 'a list of at most 100 parts')
+    .meta({ description: 'Profiles or phases one after the other, then again from the first.' })
+    .optional(),
   cycle_h: amount(
     { atLeast: 0.1, atMost: 8784 },
     { description: 'Length of a cycle of a profile.', default: 24 },

@@ -14,13 +14,20 @@ const betaShape = (description: string) => amount({ atLeast: 0.5, atMost: 1000 }
 
 /** Laws that are made of no others. */
 const PLAIN_LAWS = [
-  section({ law: z.literal('fixed') }),
-  section({ law: z.literal('normal'), ...sd }).refine(...sdOrPercent),
+  section({ law: z.literal('fixed') }).meta({ description: 'No deviation.' }),
+  section({ law: z.literal('normal'), ...sd })
+    .refine(...sdOrPercent)
+    .meta({ description: 'Bell curve by its standard deviation, cut at 5 of them.' }),
   section({ law: z.literal('truncated-normal'), ...sd, ...halfWidth })
     .refine(...sdOrPercent)
-    .refine(...halfWidthOrPercent),
-  section({ law: z.literal('lognormal'), ...sd }).refine(...sdOrPercent),
-  section({ law: z.literal('uniform'), ...halfWidth }).refine(...halfWidthOrPercent),
+    .refine(...halfWidthOrPercent)
+    .meta({ description: 'Bell curve cut at the half width; sd is that before the cut.' }),
+  section({ law: z.literal('lognormal'), ...sd })
+    .refine(...sdOrPercent)
+    .meta({ description: 'Its logarithm is normal: a long tail above, never below 0.' }),
+  section({ law: z.literal('uniform'), ...halfWidth })
+    .refine(...halfWidthOrPercent)
+    .meta({ description: 'All values within the half width equally likely.' }),
   section({
     law: z.literal('triangular'),
     ...halfWidth,
@@ -28,7 +35,9 @@ const PLAIN_LAWS = [
       { atLeast: 0, atMost: 100 },
       { description: 'Where the peak lies on the way from the least to the greatest value.', default: 50 },
     ).optional(),
-  }).refine(...halfWidthOrPercent),
+  })
+    .refine(...halfWidthOrPercent)
+    .meta({ description: 'Straight up to a peak and down again; moved so that its mean is 0.' }),
   section({
     law: z.literal('weibull'),
     shape: amount(
@@ -36,13 +45,17 @@ const PLAIN_LAWS = [
       { description: 'Below 3.6 the long tail lies above, beyond it below; 1 is the exponential law.' },
     ),
     ...sd,
-  }).refine(...sdOrPercent),
+  })
+    .refine(...sdOrPercent)
+    .meta({ description: 'By shape and standard deviation; moved so that its mean is 0.' }),
   section({
     law: z.literal('beta'),
     alpha: betaShape('First shape; the mean lies at alpha / (alpha + beta) of the range.'),
     beta: betaShape('Second shape.'),
     ...halfWidth,
-  }).refine(...halfWidthOrPercent),
+  })
+    .refine(...halfWidthOrPercent)
+    .meta({ description: 'Within the half width by two shapes; moved so that its mean is 0.' }),
   section({
     law: z.literal('resampled'),
     file: filePath.meta({ description: 'CSV with one line of column names.' }),
@@ -51,7 +64,7 @@ const PLAIN_LAWS = [
       .min(1, 'the name of a column')
       .max(200, 'the name of a column')
       .meta({ description: 'Measured values in the unit of the quantity, which ends its name; drawn as they stand.' }),
-  }),
+  }).meta({ description: 'Drawn from a column of measured values.' }),
 ] as const;
 
 const PLAIN_LAW_RULE = 'a law, e.g. {law: lognormal, sd_percent: 15}';
@@ -86,7 +99,7 @@ export const LAW = z.discriminatedUnion(
         .min(2, MIXTURE_RULE)
         .max(20, MIXTURE_RULE)
         .meta({ description: 'Each value comes from one of the parts; the whole is moved so that its mean is 0.' }),
-    }),
+    }).meta({ description: 'From one of several laws by weight.' }),
   ],
   PLAIN_LAW_RULE,
 );

@@ -5,15 +5,17 @@ import type { StringLeads } from './study.js';
 import { siFromKey } from './units.js';
 
 const resistance = amount({ atLeast: 0, atMost: 10_000 });
+const part = (where: string) =>
+  amount({ atLeast: 0, atMost: 10_000 }, { description: `Lead ${where}.`, default: 0 }).optional();
 const RULE = 'a number, or a mapping {negative, between, positive}';
 
 const ONE_STRING = z.union(
   [
     resistance,
     section({
-      negative: resistance.optional(),
-      between: resistance.optional(),
-      positive: resistance.optional(),
+      negative: part('from the bus to the first negative post'),
+      between: part('between neighbouring modules, each'),
+      positive: part('from the last positive post to the bus'),
     }),
   ],
   RULE,

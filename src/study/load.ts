@@ -12,7 +12,10 @@ export const LOAD = section({
     .nullable()
     .meta({ description: 'Bus voltage of the disconnect; null = none. Default: 11.6 V per four cells in series.' })
     .optional(),
-  disconnect_delay_s: amount({ atLeast: 0, atMost: 86_400 }, { default: 10 }).optional(),
+  disconnect_delay_s: amount(
+    { atLeast: 0, atMost: 86_400 },
+    { description: 'How long the bus must be below disconnect_V.', default: 10 },
+  ).optional(),
   reconnect_V: busVoltage.meta({ description: 'Default: 13.0 V per four cells in series.' }).optional(),
 });
 

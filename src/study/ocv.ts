@@ -21,10 +21,19 @@ const slope = amount({ above: 0, atMost: 100_000 })
   .optional();
 
 const TABLE = section({
-  interpolation: choice(['monotone', 'linear'], { default: 'monotone' }).optional(),
-  charge_percent: points(amount({ atLeast: -100, atMost: 200 })).optional(),
-  charge_fraction: points(amount({ atLeast: -1, atMost: 2 })).optional(),
-  V: points(amount({ above: 0, atMost: 10 })).optional(),
+  interpolation: choice(['monotone', 'linear'], {
+    description: 'Between the points: a smooth curve that never turns back, or straight lines.',
+    default: 'monotone',
+  }).optional(),
+  charge_percent: points(amount({ atLeast: -100, atMost: 200 }))
+    .meta({ description: 'Charge of the points, ascending.' })
+    .optional(),
+  charge_fraction: points(amount({ atLeast: -1, atMost: 2 }))
+    .meta({ description: 'In place of charge_percent: 1 is full.' })
+    .optional(),
+  V: points(amount({ above: 0, atMost: 10 }))
+    .meta({ description: 'Open-circuit voltage of a cell at each point, ascending.' })
+    .optional(),
   file: filePath.meta({ description: 'CSV with the columns charge_percent or charge_fraction, and V.' }).optional(),
   slope_below_V: slope,
   slope_above_V: slope,

@@ -13,19 +13,23 @@ const oneLot = atMostOneOf('lot', 'lot_sd', 'lot_sd_percent');
 const oneModule = atMostOneOf('module', 'module_sd', 'module_sd_percent');
 const oneCell = atMostOneOf('cell', 'cell_sd', 'cell_sd_percent');
 
+// What a spread means, and its default, is what its nominal value means: it takes over the `meta` of that.
+
 /** @returns schema of a quantity that spreads between lots, modules and cells; a number alone has no spread */
 export function cellSpread(nominal: z.ZodNumber) {
   const mapping = section({ nominal: nominal.optional(), ...lot, ...module, ...cell });
-  return z.union(
-    [
-      nominal,
-      mapping
-        .refine(...oneLot)
-        .refine(...oneModule)
-        .refine(...oneCell),
-    ],
-    SPREAD_RULE,
-  );
+  return z
+    .union(
+      [
+        nominal,
+        mapping
+          .refine(...oneLot)
+          .refine(...oneModule)
+          .refine(...oneCell),
+      ],
+      SPREAD_RULE,
+    )
+    .meta(nominal.meta() ?? {});
 }
 
 /** As `cellSpread` for a percentage: its deviations are in points, so that "percent of" cannot be mistaken. */
@@ -39,22 +43,24 @@ export function pointsSpread(nominal: z.ZodNumber) {
     cell: LAW.optional(),
     cell_sd: amountOf.optional(),
   });
-  return z.union(
-    [
-      nominal,
-      mapping
-        .refine(...atMostOneOf('lot', 'lot_sd'))
-        .refine(...atMostOneOf('module', 'module_sd'))
-        .refine(...atMostOneOf('cell', 'cell_sd')),
-    ],
-    'a number, or a mapping such as {nominal: 50, module_sd: 3}',
-  );
+  return z
+    .union(
+      [
+        nominal,
+        mapping
+          .refine(...atMostOneOf('lot', 'lot_sd'))
+          .refine(...atMostOneOf('module', 'module_sd'))
+          .refine(...atMostOneOf('cell', 'cell_sd')),
+      ],
+      'a number, or a mapping such as {nominal: 50, module_sd: 3}',
+    )
+    .meta(nominal.meta() ?? {});
 }
 
 /** @returns schema of a quantity that a module has as a whole */
 export function moduleSpread(nominal: z.ZodNumber) {
   const mapping = section({ nominal: nominal.optional(), ...lot, ...module });
-  return z.union([nominal, mapping.refine(...oneLot).refine(...oneModule)], SPREAD_RULE);
+  return z.union([nominal, mapping.refine(...oneLot).refine(...oneModule)], SPREAD_RULE).meta(nominal.meta() ?? {});
 }
 
 /** @returns schema of a factor that a bank has as a whole */

@@ -22,7 +22,11 @@ export const POPULATION = section({
     .string('the name of another stock')
     .meta({ description: 'Copies another stock key by key; what is written here wins.' })
     .optional(),
-  modules: z.array(moduleId, MODULES_RULE).min(1, MODULES_RULE).max(1000, 'a list of at most 1000 modules'),
+  modules: z
+    .array(moduleId, MODULES_RULE)
+    .min(1, MODULES_RULE)
+    .max(1000, 'a list of at most 1000 modules')
+    .meta({ description: 'Names of the modules; a mapping in place of the list writes each of them down.' }),
   ...commonCellKeys,
   capacity_Ah: cellSpread(POSSIBLE.capacityAh).optional(),
   cell_resistance_mOhm: cellSpread(POSSIBLE.cellResistanceMOhm).optional(),
@@ -31,10 +35,12 @@ export const POPULATION = section({
   standby_mA: moduleSpread(POSSIBLE.standbyMA).optional(),
   coulombic_efficiency: cellSpread(POSSIBLE.efficiency).optional(),
   arrival_charge_percent: pointsSpread(POSSIBLE.chargePercent).optional(),
-  path_resistance_mOhm: moduleSpread(POSSIBLE.seriesMOhm).optional(),
-  joint_resistance_mOhm: moduleSpread(POSSIBLE.seriesMOhm).optional(),
+  path_resistance_mOhm: moduleSpread(POSSIBLE.pathMOhm).optional(),
+  joint_resistance_mOhm: moduleSpread(POSSIBLE.jointMOhm).optional(),
   temperature_offset_K: moduleSpread(POSSIBLE.temperatureOffsetK).optional(),
-  correlation: CORRELATIONS.optional(),
+  correlation: CORRELATIONS.meta({
+    description: 'Quantities that go together; replaces the list of the grade (capacity against resistance).',
+  }).optional(),
   cells_drawn_as: named(
     MODULE_ID,
     MODULE_ID_RULE,

@@ -26,7 +26,11 @@ const BLOCK_RULE = 'a power of 2 from 1 to 4096';
 /** A study file: the schema from which types, messages and the published JSON Schema are made. */
 export const STUDY_FILE = section({
   motleybank: z.literal(FORMAT, `${FORMAT}`).meta({ description: 'Version of the study format.' }),
-  title: z.string('a text').max(200, 'a text of at most 200 characters').optional(),
+  title: z
+    .string('a text')
+    .max(200, 'a text of at most 200 characters')
+    .meta({ description: 'Heads the output.' })
+    .optional(),
   seed: SEED.meta({ description: 'Whole number or text; 0 is a seed.', default: DEFAULT_TOP.seed }).optional(),
   instances: count(
     { atLeast: 1, atMost: 10_000_000 },

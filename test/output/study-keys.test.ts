@@ -74,4 +74,12 @@ describe('renderStudyKeys', () => {
     const [, keys] = repositoryText('studies/README.md').split(/<!-- keys: (?:begin|end) -->\n/);
     expect(keys).toBe(renderStudyKeys(studyJsonSchema() as KeySchema));
   });
+
+  it('leaves no key of a study and no law without its meaning', () => {
+    const rows = renderStudyKeys(studyJsonSchema() as KeySchema)
+      .split('\n')
+      .filter((line) => line.startsWith('| `'));
+    expect(rows.length).toBeGreaterThan(300);
+    expect(rows.filter((row) => / \|\s+\|$/.test(row))).toEqual([]);
+  });
 });

@@ -11,9 +11,15 @@ const BESIDE = [
   'package.json',
   'studies/demo-week.csv',
   'studies/README.md',
+  'studies/bench-measured.csv',
+  'studies/bench-measured.yaml',
   'studies/clinic-48v.yaml',
   'studies/demo.yaml',
   'studies/published-spreads.yaml',
+  'studies/winter-bright.csv',
+  'studies/winter-dark.csv',
+  'studies/winter-frost.csv',
+  'studies/winter.yaml',
   'studies/workshop-mixed.yaml',
 ];
 
