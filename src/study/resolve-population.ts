@@ -72,7 +72,9 @@ export function resolvePopulation(
   checkSupports(owner, resolved, reading, measured?.measured.quantities);
   if (measured !== undefined) {
     checkThresholds(layers.inside('bms'), resolved, reading);
-    warnOfSplitCorrelations(key, correlations, measured.measured.quantities, reading);
+    // One that a grade brings along is nothing that the author counts on.
+    const written = own.pick('correlation') === undefined ? [] : correlations;
+    warnOfSplitCorrelations(key, written, measured.measured.quantities, reading);
   }
   const ratings = resolveModuleRatings(layers.inside('ratings'), reading);
   return {
