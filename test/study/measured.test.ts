@@ -72,9 +72,13 @@ describe('measured modules', () => {
     expect(at('stock.house.arrival_charge_percent')[0]?.value).toBe('58 to 62, uncertain by sd 1 (lab.csv)');
     expect(at('stock.house.capacity_Ah.module')).toEqual([]);
     expect(at('stock.house.capacity_Ah.cell')).toHaveLength(1);
-    expect(result.warnings).toContain(
-      'stock house: a correlation of capacity_Ah and cell_resistance_mOhm at level module has no effect, since not both are drawn',
-    );
+    // The grade brings a correlation along too; only one that the author wrote is worth a word.
+    const split =
+      'stock house: a correlation of capacity_Ah and cell_resistance_mOhm at level module has no effect, since not both are drawn';
+    expect(result.warnings).not.toContain(split);
+    const own = 'correlation: [{level: module, of: [capacity_Ah, cell_resistance_mOhm], rho: -0.2}]';
+    const written = read(studyWithStock([...MEASURED, own]), FILES);
+    expect(written.kind === 'read' ? written.warnings : []).toContain(split);
   });
 
   it('are what the rules of a bank go by', () => {
