@@ -4,7 +4,8 @@ import { amount, choice } from './amount.js';
 import { section } from './section.js';
 import { moduleSpread } from './spread.js';
 
-const rate = amount({ atLeast: 0, atMost: 100 }, { description: 'Factor on the fade of the law.', default: 1 });
+const RATE = { description: 'Factor on the fade of the law.', default: 1 } as const;
+const rate = amount({ atLeast: 0, atMost: 100 }, RATE);
 
 /** Section `ageing` of a stock, its rate as `leaf` makes it. */
 function ageingSection<L extends z.ZodType>(leaf: (nominal: z.ZodNumber) => L) {
@@ -25,7 +26,7 @@ function ageingSection<L extends z.ZodType>(leaf: (nominal: z.ZodNumber) => L) {
         default: 5,
       },
     ).optional(),
-    rate: leaf(rate).optional(),
+    rate: leaf(rate).meta(RATE).optional(),
   });
 }
 
