@@ -1,3 +1,4 @@
+import type { ModuleAgeing } from '../study/ageing-settings.js';
 import type { BleedOverride, Candidate, ModuleParameters } from '../study/study.js';
 import { sumChains } from './chain-sums.js';
 import { type ChainedWiring, chainWiring } from './chains.js';
@@ -82,6 +83,8 @@ export interface Bank {
   readonly hasHysteresis: boolean;
   /** Null without: then nothing about it is looked at. */
   readonly equaliser: BankEqualiser | null;
+  /** Of each cell, undefined where it does not age; null if none does: then nothing about it is looked at. */
+  readonly ageing: readonly (ModuleAgeing | undefined)[] | null;
 }
 
 /**
@@ -198,6 +201,7 @@ export function buildBank(
             cellStart[placed[0].length],
             moduleOhm(wiring, sums.chainOhm),
           ),
+    ageing: cellList.some(({ ageing }) => ageing !== undefined) ? cellList.map(({ ageing }) => ageing) : null,
   };
 }
 

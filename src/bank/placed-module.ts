@@ -1,3 +1,4 @@
+import type { ModuleAgeing } from '../study/ageing-settings.js';
 import type { Activation, ModuleParameters } from '../study/study.js';
 
 /** What one BMS protects: its cells from the negative end, each with its own values. */
@@ -18,6 +19,7 @@ export interface PlacedCell {
   readonly efficiency: number;
   readonly arrivalCharge: number;
   readonly activation: Activation | undefined;
+  readonly ageing: ModuleAgeing | undefined;
 }
 
 export function placeModule(parameters: ModuleParameters): PlacedModule {
@@ -37,6 +39,7 @@ export function placeModule(parameters: ModuleParameters): PlacedModule {
       efficiency: parameters.efficiency[k],
       arrivalCharge: parameters.arrivalCharge[k],
       activation: parameters.activation,
+      ageing: parameters.ageing,
     })),
   };
 }

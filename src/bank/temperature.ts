@@ -5,7 +5,7 @@ import type { PlacedModule } from './placed-module.js';
 export const REFERENCE_K = 298.15;
 
 /** Molar gas constant, J/(mol K), rounded as the papers round it from which laws of cells are taken. */
-const GAS_J_PER_MOL_K = 8.314;
+export const GAS_J_PER_MOL_K = 8.314;
 
 /** What of a bank follows temperature, and how. Cells and modules are numbered as in `Bank`. */
 export interface BankTemperature {

@@ -1,5 +1,6 @@
 import type { Bank } from '../bank/bank.js';
 import { type AccountNames, accountMeasures } from './account-measures.js';
+import { type AgeingFacts, type AgeingNames, ageingMeasures } from './ageing.js';
 import type { BankAccount } from './bank-account.js';
 import { type CycleLog, MAIN_MARGIN } from './cycle-log.js';
 import { growthPerMonth, meanOf } from './drift.js';
@@ -26,6 +27,8 @@ export interface InstanceFacts {
   readonly end: TestedCapacity;
   readonly driftLimitFraction: number;
   readonly sharing: SharingFacts;
+  /** Null or absent where no cell ages. */
+  readonly ageing?: AgeingFacts | null;
 }
 
 /** All measures of one instance in the order of the registry, in the registry's units; null where one does not apply. */
@@ -37,6 +40,7 @@ export function instanceMeasures(bank: Bank, facts: InstanceFacts): (number | nu
     ...capacityMeasures(bank, facts),
     ...sharingMeasures(facts.sharing),
     ...accountMeasures(facts.account, facts.log.elapsedS),
+    ...ageingMeasures(facts.ageing ?? null),
   };
   return MEASURES.map(({ name }) => values[name]);
 }
@@ -60,7 +64,10 @@ type Part<Names extends MeasureName> = Record<Names, number | null>;
 type CutoffNames = Extract<MeasureName, `early_cutoff${string}` | `charge_missed${string}`>;
 type DriftNames = Extract<MeasureName, `drift${string}` | `cell_drift${string}` | 'charge_spread_at_end_of_charge'>;
 type CapacityNames = Extract<MeasureName, `usable${string}` | `lost_capacity${string}`>;
-type LossNames = Exclude<MeasureName, CutoffNames | DriftNames | CapacityNames | SharingNames | AccountNames>;
+type LossNames = Exclude<
+  MeasureName,
+  CutoffNames | DriftNames | CapacityNames | SharingNames | AccountNames | AgeingNames
+>;
 
 function cutoffMeasures({ log, twin }: InstanceFacts): Part<CutoffNames> {
   const { from } = windowCycles('last-30', log.cycles);

@@ -501,6 +501,21 @@ export const MEASURES = [
     'round trip',
     'Energy out / (energy in - gain of stored energy); absent where nothing came out.',
   ),
+  loss(
+    'capacity_fade',
+    '%',
+    'horizon',
+    'capacity fade',
+    'Share of its capacity at the start that a cell has lost by the end, mean of all cells; absent where none ages.',
+  ),
+  loss('capacity_fade_worst_cell', '%', 'horizon', 'capacity fade, worst cell', 'The same of the cell that lost most.'),
+  loss(
+    'capacity_fade_spread',
+    '%',
+    'horizon',
+    'spread of capacity fade',
+    'Largest less smallest fade of the modules of the bank, each the mean of its cells.',
+  ),
 ] as const;
 
 export type MeasureName = (typeof MEASURES)[number]['name'];

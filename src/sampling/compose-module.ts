@@ -61,5 +61,6 @@ export function composeModule(
     bms: stock.bms,
     ...(cell.activation !== undefined && { activation: cell.activation }),
     temperatureOffsetK: ofModule('temperatureOffsetK'),
+    ...(stock.ageing !== undefined && { ageing: { ...stock.ageing, rate: ofModule('ageingRate') } }),
   };
 }

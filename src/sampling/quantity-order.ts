@@ -27,6 +27,7 @@ export const QUANTITY_ORDER: NamesOf<typeof QUANTITIES> = [
   'bleedA',
   'bleedStartV',
   'temperatureOffsetK',
+  'ageingRate',
 ];
 
 /** One thing per quantity. */

@@ -1,4 +1,5 @@
 import type { Bank } from '../bank/bank.js';
+import type { BankState } from '../bank/bank-state.js';
 import type { BankEqualiser } from '../bank/equaliser.js';
 import type { BankEvent } from '../bank/events.js';
 import { LEAKING } from '../bank/network.js';
@@ -88,6 +89,19 @@ export function accountEvent(accountant: Accountant, journey: Journey, event: Ba
     accountant.visits++;
     endGap(accountant, event.timeS, false);
   }
+}
+
+/**
+ * Capacity has gone at kept charge fractions, and with it the energy that it held.
+ *
+ *   sum over cells of (Q - Q') integral from 0 to z of U(z) dz
+ */
+export function accountFade(accountant: Accountant, { charge }: BankState, before: Bank, after: Bank): void {
+  const capacityAs = before.capacityAs.map((capacity, c) => capacity - after.capacityAs[c]);
+  const empty = new Float64Array(charge.length);
+  if (!accountant.visited) accountant.storedGainJ += storedEnergyGainJ(before, accountant.sinceCharge, charge);
+  accountant.storedGainJ -= storedEnergyGainJ({ ...before, capacityAs }, empty, charge);
+  accountant.sinceCharge.set(charge);
 }
 
 /** The time without a full charge ends, by a charge in the bank if `inBank`, else by a visit or with the course. */

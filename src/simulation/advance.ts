@@ -3,6 +3,7 @@ import type { BankState } from '../bank/bank-state.js';
 import { BUS_OVERLOADED, loadIsServed } from '../bank/bus.js';
 import type { BankEvent } from '../bank/events.js';
 import type { ChargerSettings, LoadSettings } from '../study/study.js';
+import type { Ageing } from './ageing.js';
 import { type BleedPlan, carryOut, createBleedPlan, planBleed } from './bleed-within.js';
 import { updateEmf } from './chain-emf.js';
 import { type Chatter, countTrip, createChatter, leapOverChatter } from './chatter.js';
@@ -41,6 +42,8 @@ export interface Journey {
   readonly chatter: Chatter;
   /** Null: the bank stays at 25 degC, whatever its duty says. */
   climate: Climate | null;
+  /** Null: cells keep capacity and resistance. */
+  ageing: Ageing | null;
   readonly onEvent: (event: BankEvent) => void;
   /** Called with every step before it is committed, while it can still be looked into. */
   readonly onStep: (journey: Journey, stepS: number) => void;
@@ -80,6 +83,7 @@ export function createJourney(
     bleedPlan: createBleedPlan(bank.cells),
     chatter,
     climate: null,
+    ageing: null,
     onEvent: (event) => {
       countTrip(chatter, event);
       listeners.onEvent?.(event);

@@ -12,11 +12,21 @@ const MOST_AMBIENTS = 64;
 
 /** The temperature around a bank, and the bank as it is at those met lately. A module follows ambient at once. */
 export interface Climate {
-  /** The bank at 25 degC. */
-  readonly reference: Bank;
+  /** The bank at 25 degC, as its cells have aged. */
+  reference: Bank;
   readonly known: Map<number, { readonly bank: Bank; readonly cache: NetworkCache }>;
   /** NaN until the first segment has set it. */
   ambientK: number;
+}
+
+/**
+ * Puts another bank, at 25 degC, in the place of one whose cells have aged; ambient, once set, stays as it is. To be
+ * settled afterwards.
+ */
+export function takeAged(journey: Journey, climate: Climate, reference: Bank): void {
+  climate.reference = reference;
+  climate.known.clear();
+  replaceBank(journey, climate, moduleTemperatures(climate));
 }
 
 /** @param reference the bank at 25 degC */
@@ -33,9 +43,13 @@ export function createClimate(reference: Bank): Climate {
 export function takeAmbient(journey: Journey, climate: Climate, ambientK = REFERENCE_K): void {
   if (ambientK === climate.ambientK) return;
   climate.ambientK = ambientK;
-  const temperatureK = climate.reference.temperature.offsetK.map((offsetK) => ambientK + offsetK);
+  const temperatureK = moduleTemperatures(climate);
   replaceBank(journey, climate, temperatureK);
   judgeCharging(journey, temperatureK);
+}
+
+function moduleTemperatures({ reference, ambientK }: Climate): Float64Array {
+  return reference.temperature.offsetK.map((offsetK) => ambientK + offsetK);
 }
 
 function replaceBank({ kernel }: Journey, climate: Climate, temperatureK: Float64Array): void {

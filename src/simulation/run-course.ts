@@ -2,6 +2,7 @@ import type { DutyCycle } from '../duty/course.js';
 import { lastLoadSegment } from '../duty/course.js';
 import type { BankFactors } from '../sampling/bank-factors.js';
 import type { Journey } from './advance.js';
+import { ageAfterCycle } from './ageing.js';
 import { beginCycle, endCycle, type Recorder } from './recorder.js';
 import { runSegment, startCycle } from './run-cycle.js';
 import { type VisitPlan, visitIfDue } from './upkeep.js';
@@ -33,6 +34,7 @@ export function runCourse(
     if (!journey.kernel.state.charge.every(Number.isFinite)) {
       throw new Error(`charge is not finite after cycle ${recorder.cycle}`);
     }
+    if (journey.ageing !== null) ageAfterCycle(journey, journey.ageing);
     if (visits !== null && recorder.cycle < course.length) visitIfDue(visits, journey, recorder.cycle);
   }
 }

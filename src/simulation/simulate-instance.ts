@@ -2,6 +2,7 @@ import type { Bank } from '../bank/bank.js';
 import { buildBank } from '../bank/bank.js';
 import { compileOcvCurves, type OcvCurves } from '../bank/ocv-curves.js';
 import { type DutyCycle, dutyCourse } from '../duty/course.js';
+import type { AgeingFacts } from '../measures/ageing.js';
 import type { BankAccount } from '../measures/bank-account.js';
 import { checkpointCycles } from '../measures/checkpoint-cycles.js';
 import type { CycleLog } from '../measures/cycle-log.js';
@@ -16,6 +17,7 @@ import type { Candidate, ModuleParameters, ModuleRatings, Study } from '../study
 import {
   type Accountant,
   accountEvent,
+  accountFade,
   accountLeap,
   accountStep,
   beginBurstAccount,
@@ -23,6 +25,7 @@ import {
   createAccountant,
 } from './accountant.js';
 import { createJourney, type Journey, type JourneyListeners } from './advance.js';
+import { type Ageing, createAgeing } from './ageing.js';
 import { testCapacity } from './capacity-test.js';
 import { createClimate } from './climate.js';
 import { commissionBank } from './commission.js';
@@ -38,6 +41,7 @@ import {
   sharingFacts,
 } from './sharing-recorder.js';
 import { planVisits, type VisitPlan } from './upkeep.js';
+import { beginBurstUse, recordUse, recordUseLeap } from './use-recorder.js';
 
 /** What all instances of a candidate share; made once per candidate and thread. */
 export interface PreparedCandidate {
@@ -59,6 +63,8 @@ export interface SimulatedBank {
   readonly start: TestedCapacity;
   readonly end: TestedCapacity;
   readonly sharing: SharingFacts;
+  /** Null where no cell ages. */
+  readonly ageing: AgeingFacts | null;
 }
 
 /**
@@ -116,6 +122,8 @@ export function startBank(
   const recorder = createRecorder(study.cycles);
   const sharing = createSharingRecorder(bank, state, bmsRatings(study, candidate));
   const accountant = createAccountant(bank, state.charge);
+  const ageing: Ageing | null =
+    bank.ageing && createAgeing(bank, bank.ageing, (before, after) => accountFade(accountant, state, before, after));
   const listeners: JourneyListeners = {
     onEvent: (event) => {
       recordEvent(recorder, journey, event);
@@ -126,21 +134,25 @@ export function startBank(
       recordStep(recorder, journey, stepS);
       recordSharing(sharing, journey, stepS);
       accountStep(accountant, journey, stepS);
+      if (ageing !== null) recordUse(ageing.use, journey, stepS);
       also.onStep?.(journey, stepS);
     },
     onBurst: () => {
       beginBurstRecord(recorder);
       beginBurstSharing(sharing);
       beginBurstAccount(accountant);
+      if (ageing !== null) beginBurstUse(ageing.use);
     },
     onLeap: (ratio) => {
       recordLeap(recorder, ratio);
       recordSharingLeap(sharing, ratio);
       accountLeap(accountant, ratio);
+      if (ageing !== null) recordUseLeap(ageing.use, ratio);
     },
   };
   const journey = createJourney(bank, state, candidate.charger, candidate.load, listeners, toleranceFactor);
   journey.climate = createClimate(bank);
+  journey.ageing = ageing;
   return { journey, recorder, sharing, accountant, visits: planVisits(bank, candidate, modules, ocv, toleranceFactor) };
 }
 
@@ -162,14 +174,16 @@ function simulateBank(
   const start = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
   runCourse(journey, recorder, course, factors, undefined, visits);
   const account = closeAccount(accountant, journey);
-  const end = testCapacity(bank, state, candidate, journey.kernel.nowS, toleranceFactor);
+  const aged = journey.climate?.reference ?? bank;
+  const end = testCapacity(aged, state, candidate, journey.kernel.nowS, toleranceFactor);
   const facts = sharingFacts(sharing, bmsRatings(study, candidate), candidate.ratings ?? null);
-  return { bank, factors, log: recorder.log, account, start, end, sharing: facts };
+  const fade = journey.ageing && { left: journey.ageing.left, cellStart: bank.cellStart };
+  return { bank, factors, log: recorder.log, account, start, end, sharing: facts, ageing: fade };
 }
 
 function outcomeRow(
   prepared: PreparedCandidate,
-  { bank, factors, log, account, start, end, sharing }: SimulatedBank,
+  { bank, factors, log, account, start, end, sharing, ageing }: SimulatedBank,
   twin: { readonly log: CycleLog; readonly capacity: TestedCapacity } | null,
   instance: number,
 ): OutcomeRow {
@@ -180,7 +194,7 @@ function outcomeRow(
       factors.loadFactor,
       factors.chargeFactor,
       ...drawnFeatures(bank),
-      ...instanceMeasures(bank, { log, twin, account, start, end, driftLimitFraction, sharing }),
+      ...instanceMeasures(bank, { log, twin, account, start, end, driftLimitFraction, sharing, ageing }),
       ...prepared.checkpoints.flatMap((cycle) => cycleValues(bank, log, cycle)),
     ],
   };

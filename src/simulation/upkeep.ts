@@ -1,3 +1,4 @@
+import { agedBank } from '../bank/aged-bank.js';
 import type { Bank } from '../bank/bank.js';
 import { createBankState } from '../bank/bank-state.js';
 import { clearLatches } from '../bank/latches.js';
@@ -58,11 +59,13 @@ function isDue({ upkeep, lastCycle, lastS }: VisitPlan, { kernel }: Journey, cyc
   return (driftNow(bank, state).moduleAh ?? 0) > upkeep.driftFraction * bank.driftRatedAh;
 }
 
-function rebalance(benches: readonly Bench[], { kernel, watch }: Journey): void {
+function rebalance(benches: readonly Bench[], { kernel, watch, ageing }: Journey): void {
   const { bank, state } = kernel;
   clearLatches(bank, state);
-  benches.forEach((bench, m) => {
+  benches.forEach((asWritten, m) => {
     const [first, end] = [bank.cellStart[m], bank.cellStart[m + 1]];
+    const bench =
+      ageing === null ? asWritten : { ...asWritten, bank: agedBank(asWritten.bank, ageing.left.subarray(first, end)) };
     const alone = createBankState(bench.bank);
     alone.charge.set(state.charge.subarray(first, end));
     alone.hysteresis.set(state.hysteresis.subarray(first, end));

@@ -26,6 +26,7 @@ const POSSIBLE: Readonly<Record<QuantityName, Bound>> = {
   bleedA: '0 or more',
   bleedStartV: 'above 0',
   temperatureOffsetK: 'from -50 to 50 K',
+  ageingRate: '0 or more',
 };
 
 /** Sums of decimals reach 1 only up to rounding. */

@@ -1,4 +1,5 @@
 import type { z } from 'zod';
+import { EXPLICIT_AGEING } from './ageing.js';
 import { amount } from './amount.js';
 import { EXPLICIT_BMS } from './bms.js';
 import { cellValues, commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
@@ -31,6 +32,7 @@ const EXPLICIT_MODULE = section({
   temperature_offset_K: POSSIBLE.temperatureOffsetK.optional(),
   bms: EXPLICIT_BMS.optional(),
   ratings: MODULE_RATINGS.optional(),
+  ageing: EXPLICIT_AGEING.optional(),
 }).refine(...oneLeakage);
 
 /** A stock of modules written down; `defaults` holds what they have in common. */

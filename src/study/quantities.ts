@@ -20,6 +20,7 @@ export const QUANTITIES = [
   { name: 'bleedA', levels: ['lot', 'module'] },
   { name: 'bleedStartV', levels: ['lot', 'module'] },
   { name: 'temperatureOffsetK', levels: ['lot', 'module'] },
+  { name: 'ageingRate', levels: ['lot', 'module'] },
 ] as const;
 
 export type QuantityName = (typeof QUANTITIES)[number]['name'];

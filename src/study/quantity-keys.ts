@@ -19,6 +19,7 @@ export const QUANTITY_KEYS = {
   bleedA: 'bms.bleed.current_mA',
   bleedStartV: 'bms.bleed.start_V',
   temperatureOffsetK: 'temperature_offset_K',
+  ageingRate: 'ageing.rate',
 } as const satisfies Record<QuantityName, string>;
 
 const NAMES_BY_KEY: ReadonlyMap<string, QuantityName> = new Map(

@@ -1,3 +1,4 @@
+import type { AgeingInput } from './ageing.js';
 import { type BmsInput, DEFAULT_BMS } from './bms.js';
 import { DEFAULT_CELL, DEFAULT_POLARISATION } from './cell-model.js';
 import type { ExplicitModuleInput, ExplicitStockInput } from './explicit-module.js';
@@ -7,6 +8,7 @@ import { type Layer, Layers } from './layers.js';
 import type { OcvIndex } from './ocv.js';
 import { resolveModuleRatings } from './ratings.js';
 import type { Reading } from './reading.js';
+import { resolveAgeing } from './resolve-ageing.js';
 import { resolveBms } from './resolve-bms.js';
 import { showValue } from './show-value.js';
 import type { ExplicitStock, ModuleParameters } from './study.js';
@@ -79,6 +81,7 @@ function resolveModule(
   };
   const ratings = resolveModuleRatings(layers.inside('ratings'), reading);
   const bms = resolveBms(layers.inside('bms') as Layers<BmsInput>, reading);
+  const ageing = resolveAgeing(written.inside('ageing') as Layers<AgeingInput>, reading);
   return {
     ...ofModule,
     overVoltageV: bms.spreads.overVoltageV.nominal,
@@ -91,6 +94,7 @@ function resolveModule(
     bleedStartV: bms.spreads.bleedStartV.nominal,
     bms: bms.settings,
     ...(ratings && { ratings }),
+    ...(ageing && { ageing: { ...ageing.settings, rate: ageing.rate.nominal } }),
   };
 }
 

@@ -1,3 +1,4 @@
+import type { AgeingInput } from './ageing.js';
 import { DEFAULT_BMS } from './bms.js';
 import { DEFAULT_CELL, DEFAULT_POLARISATION } from './cell-model.js';
 import { checkSupports } from './check-supports.js';
@@ -12,6 +13,7 @@ import { QUANTITIES, type QuantityName } from './quantities.js';
 import { QUANTITY_KEYS } from './quantity-keys.js';
 import { resolveModuleRatings } from './ratings.js';
 import type { Reading } from './reading.js';
+import { resolveAgeing, UNAGEING } from './resolve-ageing.js';
 import { checkThresholds, resolveBms } from './resolve-bms.js';
 import { resolveMeasured } from './resolve-measured.js';
 import { type ResolvedSpread, resolveSpread } from './resolve-spread.js';
@@ -64,7 +66,8 @@ export function resolvePopulation(
   const cell = resolveCell(layers, ofModule.resistanceOhm.nominal, ocv, reading);
   const bms = resolveBms(layers.inside('bms'), reading);
   const lots = resolveLots(own, modules, reading);
-  const asSpread = { ...ofModule, ...bms.spreads };
+  const ageing = resolveAgeing(own.inside('ageing') as Layers<AgeingInput>, reading);
+  const asSpread = { ...ofModule, ...bms.spreads, ageingRate: ageing?.rate ?? UNAGEING };
   const table = own.pick('measured');
   const measured =
     table && resolveMeasured(table, { owner, moduleIds: modules, cellsInSeries, spreads: asSpread }, reading);
@@ -90,6 +93,7 @@ export function resolvePopulation(
     ...(lots !== undefined && { lots }),
     ...(measured !== undefined && { measured: measured.measured }),
     ...(ratings && { ratings }),
+    ...(ageing && { ageing: ageing.settings }),
   };
 }
 

@@ -50,7 +50,7 @@ function stockContent(stock: Stock, used: ReadonlySet<string>, study: Study, isW
     const moduleIds = stock.moduleIds.filter((id) => used.has(id));
     if (moduleIds.length === 0) return undefined;
     const { cellsDrawnAs, ...rest } = stock;
-    const { cell, quantities } = isWarmed ? stock : atReference(stock);
+    const { cell, quantities } = asFarAsItMatters(stock, isWarmed);
     const drawnAs = Object.entries(cellsDrawnAs ?? {}).filter(([id]) => used.has(id));
     return {
       ...rest,
@@ -74,11 +74,21 @@ function stockContent(stock: Stock, used: ReadonlySet<string>, study: Study, isW
   };
 }
 
-/** A population as far as it matters while no module leaves 25 degC. */
-function atReference(stock: PopulationStock): { readonly cell: object & { ocv: number }; readonly quantities: object } {
+/** A population without how it follows temperature if no module leaves 25 degC, and without a rate of ageing if none ages. */
+function asFarAsItMatters(
+  stock: PopulationStock,
+  isWarmed: boolean,
+): { readonly cell: object & { ocv: number }; readonly quantities: object } {
   const { activation: _activation, ...cell } = stock.cell;
-  const { temperatureOffsetK: _offset, ...quantities } = stock.quantities;
-  return { cell, quantities };
+  const { temperatureOffsetK, ageingRate, ...quantities } = stock.quantities;
+  return {
+    cell: isWarmed ? stock.cell : cell,
+    quantities: {
+      ...quantities,
+      ...(isWarmed && { temperatureOffsetK }),
+      ...(stock.ageing !== undefined && { ageingRate }),
+    },
+  };
 }
 
 /** What a stock says of single modules, as far as these are used. */

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { POPULATION_AGEING } from './ageing.js';
 import { choice } from './amount.js';
 import { POPULATION_BMS } from './bms.js';
 import { commonCellKeys, POSSIBLE, polarisationMOhm, polarisationPairs } from './cell-model.js';
@@ -55,6 +56,7 @@ export const POPULATION = section({
   lots: LOTS.optional(),
   measured: MEASURED.optional(),
   ratings: MODULE_RATINGS.optional(),
+  ageing: POPULATION_AGEING.optional(),
 });
 
 /** A population as written. */

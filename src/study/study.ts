@@ -1,3 +1,4 @@
+import type { AgeingSettings, ModuleAgeing } from './ageing-settings.js';
 import type { QuantityName } from './quantities.js';
 import type { BankRatings, CustomNetwork, ModuleRatings, TakeOff } from './wiring-options.js';
 
@@ -115,6 +116,8 @@ export interface PopulationStock {
   readonly measured?: MeasuredModules;
   /** Absent if none is stated. */
   readonly ratings?: ModuleRatings;
+  /** Absent: capacity and resistance stay as they are. */
+  readonly ageing?: AgeingSettings;
 }
 
 /** Address of the draws of a cell. */
@@ -249,6 +252,8 @@ export interface ModuleParameters {
   readonly temperatureOffsetK?: number;
   /** Of modules written down; absent if none is stated. */
   readonly ratings?: ModuleRatings;
+  /** Absent: capacity and resistance stay as they are. */
+  readonly ageing?: ModuleAgeing;
 }
 
 /** A duty: parts in sequence, each repeated, the whole again and again up to the horizon. */

@@ -253,3 +253,22 @@ describe('cycleValues', () => {
     expect(native[CYCLE_MEASURES.findIndex(({ name }) => name === 'drift')]).toBeNull();
   });
 });
+
+describe('measures of ageing', () => {
+  const facts = { log: logOf(30) };
+
+  it('are absent where no cell ages', () => {
+    for (const name of ['capacity_fade', 'capacity_fade_worst_cell', 'capacity_fade_spread'] as const) {
+      expect(measures(facts)(name)).toBeNull();
+    }
+  });
+
+  it('are the mean and the largest loss of the cells, and the spread of the modules', () => {
+    // By hand: 2, 4 and 6, 12 % lost: mean 6 %, modules 3 and 9 %.
+    const ageing = { left: Float64Array.of(0.98, 0.96, 0.94, 0.88), cellStart: Int32Array.of(0, 2, 4) };
+    const of = measures({ ...facts, ageing });
+    expect(of('capacity_fade')).toBeCloseTo(6, 12);
+    expect(of('capacity_fade_worst_cell')).toBeCloseTo(12, 12);
+    expect(of('capacity_fade_spread')).toBeCloseTo(6, 12);
+  });
+});

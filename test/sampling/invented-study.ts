@@ -52,6 +52,13 @@ export function inventedStock(changes: Partial<PopulationStock> = {}): Populatio
       overCurrentDischargeA: relativeSpread(100),
       bleedA: relativeSpread(0.05),
       bleedStartV: relativeSpread(3.45),
+      ageingRate: {
+        nominal: 1,
+        relative: false,
+        lot: { law: 'fixed' },
+        module: { law: 'fixed' },
+        cell: { law: 'fixed' },
+      },
       temperatureOffsetK: { ...relativeSpread(0), relative: false },
     },
     correlations: [{ level: 'module', of: ['capacityAh', 'resistanceOhm'], rho: -0.3 }],
