@@ -1,5 +1,12 @@
 import type { Bank } from '../bank/bank.js';
-import { type BankEqualiser, deviceCurrentA, differenceV, equaliserSourcesInto, isAtWork } from '../bank/equaliser.js';
+import {
+  type BankEqualiser,
+  deviceCurrentA,
+  differenceV,
+  equaliserSourcesInto,
+  isAtWork,
+  OFF,
+} from '../bank/equaliser.js';
 import type { Journey } from './advance.js';
 import { evaluateWithin } from './step.js';
 
@@ -28,6 +35,10 @@ export function lookAtEqualisers(step: EqualiserStep, equaliser: BankEqualiser, 
   const { kernel, work } = journey;
   const { bank, state, point } = kernel;
   const { meanA, riseA } = step;
+  if (state.equaliserRegion.every((region) => region === OFF)) {
+    lookAtRest(step, equaliser, journey);
+    return;
+  }
   const [first, second] = [new Float64Array(meanA.length), new Float64Array(meanA.length)];
   step.movedAs = 0;
   step.counterAs = 0;
@@ -55,6 +66,20 @@ export function lookAtEqualisers(step: EqualiserStep, equaliser: BankEqualiser, 
   for (let i = 0; i < meanA.length; i++) {
     meanA[i] = 0.5 * (first[i] + second[i]);
     riseA[i] = 0.5 * Math.sqrt(3) * (second[i] - first[i]);
+  }
+}
+
+/** All devices are at rest: what they draw by themselves is valued at the end of the step, without looking into it. */
+function lookAtRest(step: EqualiserStep, equaliser: BankEqualiser, { kernel, work }: Journey): void {
+  const { state, point } = kernel;
+  const { meanA, riseA } = step;
+  step.movedAs = 0;
+  step.counterAs = 0;
+  step.lostJ = 0;
+  equaliserSourcesInto(equaliser, state, point.emfV, point.currentA, meanA);
+  riseA.fill(0);
+  for (let i = 0; i < meanA.length; i++) {
+    step.lostJ -= work.stepS * meanA[i] * (point.emfV[i] + equaliser.moduleOhm[i] * point.currentA[i]);
   }
 }
 
