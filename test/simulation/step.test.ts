@@ -84,9 +84,15 @@ describe('the step', () => {
     polarisation: ModuleParameters['polarisation'],
     z: readonly [number, number] = [0.95, 0.8],
     slopeV = 2,
+    leakageA = 0,
   ) {
     const module = (id: string, ohm: number, charge: number): ModuleParameters =>
-      bareModule(id, { pathResistanceOhm: ohm, arrivalCharge: [charge], polarisation });
+      bareModule(id, {
+        pathResistanceOhm: ohm,
+        arrivalCharge: [charge],
+        polarisation,
+        leakageA: [id === 'a' ? leakageA : 0],
+      });
     const bank = bankOf('pair', {
       modules: [[module('a', 0.01, z[0])], [module('b', 0.014, z[1])]],
       cycles: [],
@@ -99,8 +105,8 @@ describe('the step', () => {
   }
 
   /** Charge of the first of the two after an hour in equal steps. */
-  function chargeAfterSteps(steps: number, polarisation: ModuleParameters['polarisation']): number {
-    const { kernel, work } = pairUnderLoad(polarisation);
+  function chargeAfterSteps(steps: number, polarisation: ModuleParameters['polarisation'], leakageA = 0): number {
+    const { kernel, work } = pairUnderLoad(polarisation, [0.95, 0.8], 2, leakageA);
     for (let step = 0; step < steps; step++) {
       tryStep(kernel, work, 3600 / steps);
       commitStep(kernel, work);
@@ -127,6 +133,12 @@ describe('the step', () => {
     const fine = chargeAfterSteps(2048, pairs);
     const errors = [8, 16, 32].map((steps) => Math.abs(chargeAfterSteps(steps, pairs) - fine));
     for (let k = 1; k < errors.length; k++) expect(errors[k - 1] / errors[k]).toBeGreaterThan(5.5);
+  });
+
+  it('keeps its order while a cell loses charge of itself', () => {
+    const fine = chargeAfterSteps(2048, [], 20);
+    const errors = [8, 16, 32].map((steps) => Math.abs(chargeAfterSteps(steps, [], 20) - fine));
+    for (let k = 1; k < errors.length; k++) expect(errors[k - 1] / errors[k]).toBeGreaterThan(6.5);
   });
 
   it('estimates its error: none where the current is constant, an eighth with half the step elsewhere', () => {
