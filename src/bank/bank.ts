@@ -79,6 +79,10 @@ export interface Bank {
   readonly chainPolarisationOhm: Float64Array;
   /** Smallest cell capacity of a chain. */
   readonly chainCapacityAs: Float64Array;
+  /** Sum of the hysteresis voltages of the cells of a chain. */
+  readonly chainHysteresisV: Float64Array;
+  /** Bound on what the current through a cell of a chain lacks to that of the chain: standby and bleed. */
+  readonly chainMostOffsetA: Float64Array;
   /** Any cell has hysteresis: otherwise its exponentials are left out. */
   readonly hasHysteresis: boolean;
   /** Null without: then nothing about it is looked at. */
@@ -141,6 +145,13 @@ export function buildBank(
     chainCapacityAs[i] = Math.min(chainCapacityAs[i], capacityAs[c]);
   }
   const hysteresisV = ofCells((cell) => cell.hysteresisV);
+  const chainHysteresisV = new Float64Array(count);
+  for (let c = 0; c < cells; c++) chainHysteresisV[chainOfModule[moduleOfCell[c]]] += hysteresisV[c];
+  const chainMostOffsetA = new Float64Array(count);
+  list.forEach(({ parameters: { standbyA, bms, bleedA } }, m) => {
+    const i = chainOfModule[m];
+    chainMostOffsetA[i] = Math.max(chainMostOffsetA[i], Math.max(standbyA, bms.asleepA) + bleedA);
+  });
   const pathOhm = ofModules((module) => module.pathResistanceOhm);
   const sums = sumChains({ wiring, moduleOfCell, chainOfModule, pathOhm, resistanceOhm, polarisationOhm });
   return {
@@ -190,6 +201,8 @@ export function buildBank(
     temperature: bankTemperature(candidate, placed),
     ...sums,
     chainCapacityAs,
+    chainHysteresisV,
+    chainMostOffsetA,
     hasHysteresis: hysteresisV.some((volts) => volts !== 0),
     equaliser:
       candidate.equaliser === undefined

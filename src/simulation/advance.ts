@@ -11,11 +11,13 @@ import type { Climate } from './climate.js';
 import { cutAtEvent, turnedConditions } from './cut-at-event.js';
 import { copyInto, createKernel, type Kernel, solveKept, updateCellConstants, updateExtremes } from './kernel.js';
 import { settle } from './settle.js';
-import { commitStep, createStepWork, LEAST_STEP_S, type StepWork, tryStep } from './step.js';
+import { commitStep, createStepWork, LEAST_STEP_S, type StepWork, shortenStep, tryStep } from './step.js';
 import { createTerminal, type Terminal } from './terminal.js';
 import { createWatch, turnOver, updateValues, type Watch } from './watch.js';
 
 const MOST_STEP_S = 3600;
+/** Factor by which a step may be longer than the one before. */
+const MOST_GROWTH = 8;
 /** Step tried first after a jump of current, and what counts as one. */
 const FIRST_STEP_S = 60;
 const JUMP_A = 2;
@@ -186,7 +188,7 @@ function takeStep(journey: Journey, stepS: number): boolean {
     updateExtremes(kernel, work.lastA, work.endFilterA);
     const changeV = voltageChangeV(journey) / (journey.toleranceFactor * MOST_VOLTAGE_CHANGE_V);
     // Third order: the error grows with the cube of the step, a voltage with the step itself.
-    const grow = Math.min(0.9 / Math.cbrt(error), changeV > 0 ? 0.8 / changeV : 5, 5);
+    const grow = Math.min(0.9 / Math.cbrt(error), changeV > 0 ? 0.8 / changeV : MOST_GROWTH, MOST_GROWTH);
     if ((error > 1 || changeV > 1) && tryS > LEAST_STEP_S) {
       tryS = Math.max(LEAST_STEP_S, tryS * Math.max(0.1, Math.min(grow, 0.7)));
       continue;
@@ -198,7 +200,8 @@ function takeStep(journey: Journey, stepS: number): boolean {
     const lateS = journey.toleranceFactor * MOST_BLEED_LATE_S;
     if (bleedPlan.lateS > lateS) {
       tryS = tryS - bleedPlan.lateS + 0.3 * lateS;
-      continue;
+      if (!shortenStep(kernel, work, tryS)) continue;
+      planBleed(kernel, work, bleedPlan);
     }
     break;
   }

@@ -4,7 +4,7 @@ import { ocvV } from '../bank/ocv-curves.js';
 import { firstCrossing } from '../mathematics/first-crossing.js';
 import { hysteresisAfter } from './chain-emf.js';
 import { cellVoltageV, type Kernel } from './kernel.js';
-import type { StepWork } from './step.js';
+import { chainWithin, type StepWork } from './step.js';
 
 /** Width to which a switching instant is bracketed, share of the step; within it the line through both ends is taken. */
 const SWITCHING_TOLERANCE = 0.25;
@@ -133,34 +133,6 @@ function switchingShare(kernel: Kernel, work: StepWork, m: number, c: number, wa
   const whole = { low: 0, lowValue: startPast, high: 1, highValue: endPast };
   const { low, lowValue, high, highValue } = firstCrossing(pastAt, whole, SWITCHING_TOLERANCE);
   return low + ((high - low) * lowValue) / (lowValue - highValue);
-}
-
-/**
- * One chain at a share of the step by the cubic through both ends, without solving the network: its charge and filtered
- * currents in `work.passedAs` and `work.filterA`. @returns its current
- */
-function chainWithin(kernel: Kernel, work: StepWork, i: number, theta: number): number {
-  const { bank, state } = kernel;
-  const { stepS } = work;
-  const first = work.firstA[i];
-  const last = work.lastA[i];
-  const mean = work.endAs[i] / stepS;
-  const elapsedS = theta * stepS;
-  const passedAs =
-    stepS *
-    (theta * theta * (3 - 2 * theta) * mean +
-      theta * (1 - theta) * (1 - theta) * first +
-      theta * theta * (theta - 1) * last);
-  work.passedAs[i] = passedAs;
-  const slope = elapsedS > 0 ? (2 * (passedAs / elapsedS - first)) / elapsedS : 0;
-  const chains = work.firstA.length;
-  for (let k = 0; k < bank.timeConstantS.length; k++) {
-    const tauS = bank.timeConstantS[k];
-    const decay = Math.exp(-elapsedS / tauS);
-    const at = k * chains + i;
-    work.filterA[at] = first + (state.filterA[at] - first) * decay + slope * (elapsedS - tauS * (1 - decay));
-  }
-  return 6 * theta * (1 - theta) * mean + (1 - 4 * theta + 3 * theta * theta) * first + theta * (3 * theta - 2) * last;
 }
 
 /** Voltage of a cell at what `chainWithin` found. */

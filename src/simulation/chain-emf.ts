@@ -1,4 +1,5 @@
 import { findPiece } from '../bank/ocv-curves.js';
+import { staysOnBranch } from './hysteresis-branch.js';
 import type { Kernel } from './kernel.js';
 
 /**
@@ -66,6 +67,12 @@ function addHysteresis(kernel: Kernel, elapsedS: number, passedAs: Float64Array)
     const q = passedAs[i];
     const start = chainCellStart[i];
     const end = chainCellStart[i + 1];
+    if (staysOnBranch(kernel, i, q, elapsedS)) {
+      const branch = kernel.branch[i];
+      for (let c = start; c < end; c++) cellV[c] += branch * hysteresisV[c];
+      emfV[i] += branch * bank.chainHysteresisV[i];
+      continue;
+    }
     const chainPath = Math.abs(hysteresisPerAs[start] * (q - offsetA[start] * elapsedS));
     const chainDecay = Math.exp(-chainPath);
     let apart = 0;

@@ -12,6 +12,7 @@ import {
 import { createNetworkCache, effectiveEmfV, type NetworkCache } from '../bank/conduction.js';
 import { solveNetwork } from '../bank/network.js';
 import { findPiece } from '../bank/ocv-curves.js';
+import { staysOnBranch } from './hysteresis-branch.js';
 
 /**
  * What the stepper works with: a bank, its state, the terms at its bus, and room for the stages of a step.
@@ -42,6 +43,8 @@ export interface Kernel {
   /** Voltage of a cell that stands still within a step: offset current through its resistances. */
   readonly fixedV: Float64Array;
   readonly chainFixedV: Float64Array;
+  /** Branch of the hysteresis that all cells of a chain are on, 1 or -1; 0 if they are not all on one. */
+  readonly branch: Int8Array;
   /** Slopes of each chain's EMF now: by the charge it passes, V/As, and by what its cells lose of themselves, V/s. */
   readonly emfPerAs: Float64Array;
   readonly emfPerS: Float64Array;
@@ -96,6 +99,7 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
     offsetA: floats(bank.cells),
     fixedV: floats(bank.cells),
     chainFixedV: floats(chains),
+    branch: new Int8Array(chains),
     emfPerAs: floats(chains),
     emfPerS: floats(chains),
     emfShiftV: floats(chains),
@@ -119,6 +123,11 @@ export function createKernel(bank: Bank, state: BankState): Kernel {
 /** Copies a short array: for a few elements a loop is ten times as fast as the method `set`. */
 export function copyInto(from: Float64Array, into: Float64Array): void {
   for (let k = 0; k < from.length; k++) into[k] = from[k];
+}
+
+/** Adds one short array to another. */
+export function addTo(from: Float64Array, into: Float64Array): void {
+  for (let k = 0; k < from.length; k++) into[k] += from[k];
 }
 
 /** Sets the constants of all cells from the state and the chain currents now. */
@@ -165,7 +174,8 @@ function updateFixedVoltages({ bank, state, offsetA, fixedV, chainFixedV }: Kern
 }
 
 /** The pieces must be those of the charges now, or next to them. */
-function updateSlopes({ bank, state, bus, point, chargePerAs, chargePerS, offsetA, emfPerAs, emfPerS }: Kernel): void {
+function updateSlopes(kernel: Kernel): void {
+  const { bank, state, bus, point, chargePerAs, chargePerS, offsetA, emfPerAs, emfPerS } = kernel;
   const { chainCellStart, hysteresisV, hysteresisPerAs } = bank;
   const { knots, coefficients } = bank.ocv;
   const { charge, hysteresis } = state;
@@ -181,7 +191,7 @@ function updateSlopes({ bank, state, bus, point, chargePerAs, chargePerS, offset
       perAs += slope * chargePerAs[c];
       perS += slope * chargePerS[c];
     }
-    if (bank.hasHysteresis) {
+    if (bank.hasHysteresis && !staysOnBranch(kernel, i, bus.currentA[i], 1)) {
       const chainA = bus.currentA[i];
       for (let c = chainCellStart[i]; c < end; c++) {
         const toBranch = chainA > offsetA[c] ? 1 - hysteresis[c] : 1 + hysteresis[c];
@@ -238,15 +248,10 @@ export function solveKept(kernel: Kernel): boolean {
     for (let j = 0; j < chains; j++) sum += currentPerEmf[row + j] * effectiveV[j];
     currentA[i] = sum;
   }
-  if (map.offsetA !== null) addInto(map.offsetA, currentA);
+  if (map.offsetA !== null) addTo(map.offsetA, currentA);
   point.bankA = bankA;
   point.bankV = bankV;
   return true;
-}
-
-/** Adds one short array to another. */
-function addInto(from: Float64Array, into: Float64Array): void {
-  for (let k = 0; k < from.length; k++) into[k] += from[k];
 }
 
 /** Voltage of cell `c` at the latest evaluation, V. */

@@ -6,6 +6,7 @@ import { settleEqualiser } from '../bank/equaliser.js';
 import type { BankEvent, BankEventKind } from '../bank/events.js';
 import { updateChainModes } from '../bank/paths.js';
 import { updateEmf } from './chain-emf.js';
+import { updateBranches } from './hysteresis-branch.js';
 import { cellVoltageV, copyInto, type Kernel, updateCellConstants, updateEmfShifts, updateExtremes } from './kernel.js';
 import type { StepWork } from './step.js';
 import { type Terminal, updateTerms } from './terminal.js';
@@ -39,6 +40,7 @@ export function settle(
   let mayStart = true;
   for (let round = 0; round < MOST_ROUNDS; round++) {
     fixConduction(state);
+    updateBranches(kernel);
     updateCellConstants(kernel);
     updateEmf(kernel, 0, work.passedAs, state.filterA);
     settleBus(bank, state, kernel.cache, point.emfV, kernel.terms, bus);

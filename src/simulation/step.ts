@@ -1,4 +1,5 @@
 import { updateEmf } from './chain-emf.js';
+import { commitHysteresis } from './hysteresis-branch.js';
 import { copyInto, type Kernel, solveKept, updateExtremes } from './kernel.js';
 import { createLinearised, factorLinearised, type Linearised, linearise, solveLinearised } from './linearised.js';
 
@@ -33,12 +34,10 @@ interface StageChange {
 
 /** Least progress of a step, also of one that ends at an event, s. */
 export const LEAST_STEP_S = 0.01;
-/** Distance from a branch of the hysteresis at which a cell is taken to be on it. */
-const ON_BRANCH = 1e-6;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */
 const CHARGE_TOLERANCE = 1e-4;
 /** The same per second of a step: bounds the error of the mean current of short steps, as in a taper, 1/s. */
-const RATE_TOLERANCE = 4e-7;
+const RATE_TOLERANCE = 8e-7;
 /** Embedded error of a filtered current, as a fraction of the charge of the smallest cell per second (0.01 C), 1/s. */
 const FILTER_TOLERANCE = 2.8e-6;
 
@@ -164,28 +163,29 @@ function stageRates(
 }
 
 /**
- * Filtered currents after `elapsedS` of chain currents that run linearly from `firstA` with mean `passedAs / elapsedS`:
+ * Filtered current after `elapsedS` of a current that runs as a parabola:
  *
- *   I(t) = I0 + s t   =>   F = I0 + (F0 - I0) d + s (t - tau (1 - d)),   d = exp(-t / tau)
+ *   I(t) = I0 + s t + b t^2   =>   F(t) = P(t) + (F0 - P(0)) exp(-t / tau),   P = I - tau I' + tau^2 I''
+ *
+ * @param slope s, A/s
+ * @param bend b, A/s2
  */
-export function filterLinear(
-  timeConstantS: Float64Array,
+export function filterAfter(
+  tauS: number,
   elapsedS: number,
-  fromA: Float64Array,
-  firstA: Float64Array,
-  passedAs: Float64Array,
-  intoA: Float64Array,
-): void {
-  const chains = firstA.length;
-  for (let k = 0; k < timeConstantS.length; k++) {
-    const tauS = timeConstantS[k];
-    const decay = Math.exp(-elapsedS / tauS);
-    const ramp = elapsedS - tauS * (1 - decay);
-    for (let i = 0; i < chains; i++) {
-      const slope = (2 * (passedAs[i] / elapsedS - firstA[i])) / elapsedS;
-      intoA[k * chains + i] = firstA[i] + (fromA[k * chains + i] - firstA[i]) * decay + slope * ramp;
-    }
-  }
+  fromA: number,
+  firstA: number,
+  slope: number,
+  bend: number,
+): number {
+  const decay = Math.exp(-elapsedS / tauS);
+  const lag = tauS * (1 - decay);
+  return (
+    firstA +
+    (fromA - firstA) * decay +
+    slope * (elapsedS - lag) +
+    bend * (elapsedS * elapsedS - 2 * tauS * (elapsedS - lag))
+  );
 }
 
 /**
@@ -194,23 +194,55 @@ export function filterLinear(
  */
 export function evaluateWithin(kernel: Kernel, work: StepWork, theta: number): boolean {
   const elapsedS = theta * work.stepS;
-  passedWithin(work, theta, work.passedAs);
-  if (theta === 1) copyInto(work.endFilterA, work.filterA);
-  else
-    filterLinear(kernel.bank.timeConstantS, elapsedS, kernel.state.filterA, work.firstA, work.passedAs, work.filterA);
+  if (theta === 1) {
+    copyInto(work.endAs, work.passedAs);
+    copyInto(work.endFilterA, work.filterA);
+  } else {
+    for (let i = 0; i < work.firstA.length; i++) chainWithin(kernel, work, i, theta);
+  }
   updateEmf(kernel, elapsedS, work.passedAs, work.filterA);
   if (!solveKept(kernel)) return false;
   updateExtremes(kernel, kernel.point.currentA, work.filterA);
   return true;
 }
 
-/** Charge passed at a share `theta` of the latest attempt (cubic Hermite), As. */
-function passedWithin(work: StepWork, theta: number, intoAs: Float64Array): void {
-  const { firstA, lastA, endAs, stepS } = work;
-  const rest = theta * theta * (3 - 2 * theta);
-  const first = theta * (1 - theta) * (1 - theta) * stepS;
-  const last = theta * theta * (theta - 1) * stepS;
-  for (let i = 0; i < firstA.length; i++) intoAs[i] = rest * endAs[i] + first * firstA[i] + last * lastA[i];
+/**
+ * Ends the latest attempt at `stepS`, before its end, as it was on its way there.
+ *
+ * @returns false if the bus has no solution there: the attempt is then spoilt
+ */
+export function shortenStep(kernel: Kernel, work: StepWork, stepS: number): boolean {
+  const { point } = kernel;
+  if (!evaluateWithin(kernel, work, stepS / work.stepS)) return false;
+  work.stepS = stepS;
+  copyInto(work.passedAs, work.endAs);
+  copyInto(work.filterA, work.endFilterA);
+  copyInto(point.currentA, work.lastA);
+  work.endBankA = point.bankA;
+  work.endBankV = point.bankV;
+  return true;
+}
+
+/**
+ * One chain at a share `theta` of the latest attempt, by the cubic of charge through both ends and their currents: its
+ * charge and filtered currents in `work.passedAs` and `work.filterA`.
+ *
+ * @returns its current, A, which runs as a parabola
+ */
+export function chainWithin({ bank, state }: Kernel, work: StepWork, i: number, theta: number): number {
+  const { stepS } = work;
+  const firstA = work.firstA[i];
+  const lastA = work.lastA[i];
+  const meanA = work.endAs[i] / stepS;
+  const slope = (6 * meanA - 4 * firstA - 2 * lastA) / stepS;
+  const bend = (3 * firstA + 3 * lastA - 6 * meanA) / (stepS * stepS);
+  const elapsedS = theta * stepS;
+  work.passedAs[i] = elapsedS * (firstA + elapsedS * (slope / 2 + elapsedS * (bend / 3)));
+  const chains = work.firstA.length;
+  for (let k = 0, at = i; k < bank.timeConstantS.length; k++, at += chains) {
+    work.filterA[at] = filterAfter(bank.timeConstantS[k], elapsedS, state.filterA[at], firstA, slope, bend);
+  }
+  return firstA + elapsedS * (slope + elapsedS * bend);
 }
 
 /**
@@ -227,19 +259,14 @@ export function busEnergyJ(kernel: Kernel, work: StepWork): number {
 
 /** Makes the end of the latest attempt, which must be what was evaluated last, the present. */
 export function commitStep(kernel: Kernel, work: StepWork): void {
-  const { bank, state, chainOfCell, chargePerAs, chargePerS, offsetA, bus, point } = kernel;
+  const { bank, state, chainOfCell, chargePerAs, chargePerS, offsetA, bus } = kernel;
   const { stepS, endAs, endFilterA } = work;
   const { cells } = bank;
   const pairs = bank.timeConstantS.length;
   for (let c = 0; c < cells; c++) {
-    const q = endAs[chainOfCell[c]];
-    state.charge[c] += chargePerAs[c] * q + chargePerS[c] * stepS;
-    if (bank.hasHysteresis) {
-      const h = point.cellHysteresis[c];
-      // Close to a branch the exponential no longer matters; on it, it costs nothing.
-      state.hysteresis[c] = Math.abs(h) > 1 - ON_BRANCH ? Math.sign(h) : h;
-    }
+    state.charge[c] += chargePerAs[c] * endAs[chainOfCell[c]] + chargePerS[c] * stepS;
   }
+  if (bank.hasHysteresis) commitHysteresis(kernel, endAs, stepS);
   for (let k = 0; k < pairs; k++) {
     const decay = Math.exp(-stepS / bank.timeConstantS[k]);
     for (let c = k * cells, cell = 0; cell < cells; c++, cell++) {
