@@ -55,7 +55,7 @@ describe('the simulation key', () => {
     if (candidate === undefined) throw new Error('no candidate');
     const text = canonicalJson(simulationContent(study, candidate));
     expect(createHash('sha256').update(text).digest('hex')).toBe(key);
-    expect(JSON.parse(text)).toMatchObject({ engine: 5, seed: '1', stocks: { house: { moduleIds: ['A1', 'A2'] } } });
+    expect(JSON.parse(text)).toMatchObject({ engine: 6, seed: '1', stocks: { house: { moduleIds: ['A1', 'A2'] } } });
   });
 });
 
