@@ -1,4 +1,4 @@
-import type { OcvCurves } from './ocv-curves.js';
+import { curveOf, joinCurves, type OcvCurve, type OcvCurves } from './ocv-curves.js';
 
 /** A curve at a temperature: the number of the curve, and the charge fraction out of reach. */
 export interface ColdCurve {
@@ -18,37 +18,20 @@ export interface ColdCurve {
  * @param cold the curves wanted; their place in the list is their number in the result
  */
 export function coldCurves(curves: OcvCurves, cold: readonly ColdCurve[]): OcvCurves {
-  const knots: number[] = [];
-  const coefficients: number[] = [];
-  const bucket: number[] = [];
-  const firstBucket = new Int32Array(cold.length);
-  const buckets = new Int32Array(cold.length);
-  const lowest = new Float64Array(cold.length);
-  const perUnit = new Float64Array(cold.length);
-  cold.forEach(({ curve, floor }, k) => {
-    const span = 1 - floor;
-    const from = curves.bucket[curves.firstBucket[curve]];
-    const shift = knots.length - from;
-    firstBucket[k] = bucket.length;
-    buckets[k] = curves.buckets[curve];
-    lowest[k] = floor + span * curves.lowest[curve];
-    perUnit[k] = curves.perUnit[curve] / span;
-    for (let cell = 0; cell < buckets[k]; cell++) bucket.push(curves.bucket[curves.firstBucket[curve] + cell] + shift);
-    // The pieces of a curve end with one that begins at infinity.
-    for (let piece = from; ; piece++) {
-      knots.push(floor + span * curves.knots[piece]);
-      for (let power = 0; power < 4; power++) coefficients.push(curves.coefficients[4 * piece + power] / span ** power);
-      if (curves.knots[piece] === Number.POSITIVE_INFINITY) break;
-    }
-  });
+  return joinCurves(
+    cold.map(({ curve, floor }) => drawnTogether(curveOf(curves, curve), floor)),
+    curves.hasKinks,
+  );
+}
+
+function drawnTogether(curve: OcvCurve, floor: number): OcvCurve {
+  const span = 1 - floor;
+  const powers = [1, span, span ** 2, span ** 3];
   return {
-    knots: Float64Array.from(knots),
-    coefficients: Float64Array.from(coefficients),
-    bucket: Int32Array.from(bucket),
-    firstBucket,
-    buckets,
-    lowest,
-    perUnit,
-    hasKinks: curves.hasKinks,
+    knots: curve.knots.map((knot) => floor + span * knot),
+    coefficients: curve.coefficients.map((coefficient, at) => coefficient / powers[at % 4]),
+    bucket: curve.bucket,
+    lowest: floor + span * curve.lowest,
+    perUnit: curve.perUnit / span,
   };
 }

@@ -19,48 +19,91 @@ export interface OcvCurves {
   readonly hasKinks: boolean;
 }
 
+/** One curve by itself: its pieces, the last of which begins at infinity, and its grid over them. */
+export interface OcvCurve {
+  readonly knots: Float64Array;
+  /** Of 1, d, d^2 and d^3 from the knot, piece by piece. */
+  readonly coefficients: Float64Array;
+  readonly bucket: Int32Array;
+  readonly lowest: number;
+  readonly perUnit: number;
+}
+
 const BUCKETS = 1024;
 
 /** Curves of all tables of a study; index = index of the table. */
 export function compileOcvCurves(tables: readonly OcvTable[]): OcvCurves {
-  const knots: number[] = [];
-  const coefficients: number[] = [];
-  const bucket: number[] = [];
-  const firstBucket = new Int32Array(tables.length);
-  const buckets = new Int32Array(tables.length);
-  const lowest = new Float64Array(tables.length);
-  const perUnit = new Float64Array(tables.length);
-  tables.forEach((table, index) => {
-    const build = table.interpolation === 'linear' ? linearCurve : monotoneCurve;
-    const curve = build(table.chargeFraction, table.voltageV, table.slopeBelowV, table.slopeAboveV);
-    const first = knots.length;
-    const low = curve.knots[0];
-    const span = curve.knots[curve.knots.length - 1] - low;
-    firstBucket[index] = bucket.length;
-    buckets[index] = BUCKETS + 2;
-    lowest[index] = low;
-    perUnit[index] = BUCKETS / span;
-    // Bucket 0 is everything below the table, the last one everything above it.
-    bucket.push(first);
-    let piece = 1;
-    for (let cell = 0; cell < BUCKETS; cell++) {
-      const left = low + (cell * span) / BUCKETS;
-      while (piece + 1 < curve.knots.length - 1 && curve.knots[piece + 1] <= left) piece++;
-      bucket.push(first + piece);
-    }
-    bucket.push(first + curve.knots.length - 1);
-    knots.push(...curve.knots, Number.POSITIVE_INFINITY);
-    coefficients.push(...curve.coefficients, 0, 0, 0, 0);
+  return joinCurves(
+    tables.map(compileCurve),
+    tables.some(({ interpolation }) => interpolation === 'linear'),
+  );
+}
+
+/** Lays curves end to end; index = place in the list. */
+export function joinCurves(curves: readonly OcvCurve[], hasKinks: boolean): OcvCurves {
+  const pieces = curves.reduce((sum, curve) => sum + curve.knots.length, 0);
+  const cells = curves.reduce((sum, curve) => sum + curve.bucket.length, 0);
+  const joined = {
+    knots: new Float64Array(pieces),
+    coefficients: new Float64Array(4 * pieces),
+    bucket: new Int32Array(cells),
+    firstBucket: new Int32Array(curves.length),
+    buckets: Int32Array.from(curves, ({ bucket }) => bucket.length),
+    lowest: Float64Array.from(curves, ({ lowest }) => lowest),
+    perUnit: Float64Array.from(curves, ({ perUnit }) => perUnit),
+    hasKinks,
+  };
+  let piece = 0;
+  let cell = 0;
+  curves.forEach((curve, index) => {
+    const first = piece;
+    joined.firstBucket[index] = cell;
+    joined.knots.set(curve.knots, first);
+    joined.coefficients.set(curve.coefficients, 4 * first);
+    joined.bucket.set(
+      curve.bucket.map((own) => first + own),
+      cell,
+    );
+    piece += curve.knots.length;
+    cell += curve.bucket.length;
   });
+  return joined;
+}
+
+/** Curve `index` by itself: what `joinCurves` was given. */
+export function curveOf(curves: OcvCurves, index: number): OcvCurve {
+  const grid = curves.bucket.subarray(curves.firstBucket[index], curves.firstBucket[index] + curves.buckets[index]);
+  const [first] = grid;
+  const end = curves.knots.indexOf(Number.POSITIVE_INFINITY, first) + 1;
   return {
-    knots: Float64Array.from(knots),
-    coefficients: Float64Array.from(coefficients),
+    knots: curves.knots.subarray(first, end),
+    coefficients: curves.coefficients.subarray(4 * first, 4 * end),
+    bucket: grid.map((piece) => piece - first),
+    lowest: curves.lowest[index],
+    perUnit: curves.perUnit[index],
+  };
+}
+
+function compileCurve(table: OcvTable): OcvCurve {
+  const build = table.interpolation === 'linear' ? linearCurve : monotoneCurve;
+  const { knots, coefficients } = build(table.chargeFraction, table.voltageV, table.slopeBelowV, table.slopeAboveV);
+  const [low] = knots;
+  const span = knots[knots.length - 1] - low;
+  // Bucket 0 is everything below the table, the last one everything above it.
+  const bucket = [0];
+  let piece = 1;
+  for (let cell = 0; cell < BUCKETS; cell++) {
+    const left = low + (cell * span) / BUCKETS;
+    while (piece + 1 < knots.length - 1 && knots[piece + 1] <= left) piece++;
+    bucket.push(piece);
+  }
+  bucket.push(knots.length - 1);
+  return {
+    knots: Float64Array.of(...knots, Number.POSITIVE_INFINITY),
+    coefficients: Float64Array.of(...coefficients, 0, 0, 0, 0),
     bucket: Int32Array.from(bucket),
-    firstBucket,
-    buckets,
-    lowest,
-    perUnit,
-    hasKinks: tables.some(({ interpolation }) => interpolation === 'linear'),
+    lowest: low,
+    perUnit: BUCKETS / span,
   };
 }
 

@@ -1,5 +1,6 @@
 import { asciiText, SCREEN_COLUMNS, wrapText } from '../output/plain-text.js';
 import type { ProspectiveCurrent } from '../simulation/prospective-current.js';
+import { bleedInForce } from '../study/bleed-in-force.js';
 import type { Study } from '../study/study.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
@@ -62,7 +63,8 @@ function renderCheck(
     ),
     '',
     ...warnings.flatMap((warning) => wrapText(`warning: ${asciiText(warning)}`)),
-    ...(warnings.length > 0 ? [''] : []),
+    ...wrapText(`note: ${asciiText(bleedInForce(study))}`),
+    '',
     ...wrapText(
       `${bankCycles(study)} bank-cycles (${study.instances} banks x ${study.cycles} cycles x ` +
         `${study.candidates.length} candidates), about ${minutesText(study, trial)} on one thread`,
@@ -84,7 +86,9 @@ function renderCheckJson(
     string_A: currents[index]?.stringA,
     string_fuse_A: currents[index]?.fuseA,
   }));
-  return `${JSON.stringify({ study, origins, warnings, prospective_short_circuit: shortCircuit, estimate }, null, 2)}\n`;
+  const notes = [bleedInForce(study)];
+  const document = { study, origins, warnings, notes, prospective_short_circuit: shortCircuit, estimate };
+  return `${JSON.stringify(document, null, 2)}\n`;
 }
 
 function minutes(study: Study, { bankCyclesPerSecond }: Trial): number {

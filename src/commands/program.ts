@@ -12,6 +12,12 @@ Exit status:
   130, 143  interrupted (Ctrl-C, termination)
 `;
 
+const TRACE_HELP = `
+modules.csv has module_degC where modules leave 25 degC, and equaliser_A where the candidate has an equaliser:
+what the device between a module and the next one takes, from the next if positive.
+
+Example: motleybank trace results/demo --candidate strings --instance 66`;
+
 const CAUTION_HELP = `
 Caution: a study, not an approval. Fuse every string, keep the maker's series and parallel limits,
 follow local code and a licensed practitioner.
@@ -101,7 +107,7 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .addOption(new Option('--to-cycle <cycle>', 'last cycle').argParser(wholeNumber(1, 36_500)))
     .addOption(new Option('--every <seconds>', 'one row every so many seconds').argParser(positiveNumber))
     .option('--out <folder>', 'folder for drawn.csv, modules.csv, bus.csv and events.csv')
-    .addHelpText('after', '\nExample: motleybank trace results/demo --candidate strings --instance 66')
+    .addHelpText('after', TRACE_HELP)
     .action(async (source: string, options: TraceFlags) => {
       const { traceCommand } = await import('./trace.js');
       const { every: everyS, ...rest } = options;

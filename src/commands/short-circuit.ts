@@ -17,8 +17,8 @@ export function breakingWarnings(study: Study, currents: readonly ProspectiveCur
     const fuseA = currents[index]?.fuseA ?? 0;
     const breakingA = ratings?.fuseBreakingA ?? null;
     if (breakingA === null || fuseA <= breakingA) return [];
-    const text = `a string fuse may have to break ${amperes(fuseA)} A, but its breaking capacity is ${amperes(breakingA)} A`;
-    return [`${text} (${key})`];
+    const may = `a string fuse may have to break ${amperes(fuseA)} A`;
+    return [`${may}, but its breaking capacity is ${amperes(breakingA)} A: take one that can break more (${key})`];
   });
 }
 

@@ -5,6 +5,7 @@ import { RUN_FILE } from '../execution/run-folder.js';
 import { errorCode } from '../execution/system-error.js';
 import { renderBusCsv, renderDrawnCsv, renderEventsCsv, renderModulesCsv } from '../output/trace-csv.js';
 import { type Trace, traceInstance } from '../simulation/trace-instance.js';
+import { leavesReference } from '../study/leaves-reference.js';
 import { didYouMean } from '../study/nearest-name.js';
 import type { Study } from '../study/study.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
@@ -44,7 +45,7 @@ export async function traceCommand(options: TraceOptions, shell: Shell): Promise
   const trace = traceInstance(study, { candidate, instance, fromCycle, toCycle, everyS });
   const folder = options.out ?? defaultFolder(options);
   try {
-    await writeTrace(folder, trace);
+    await writeTrace(folder, study, candidate, trace);
   } catch (error) {
     if (errorCode(error) === undefined) throw error;
     shell.err(`${folder} cannot be written: ${error instanceof Error ? error.message : String(error)}\n`);
@@ -92,10 +93,13 @@ function defaultFolder({ source, candidate, instance }: TraceOptions): string {
   return join(base, `${candidate}-${instance}`);
 }
 
-async function writeTrace(folder: string, { bank, factors, samples, events }: Trace): Promise<void> {
+async function writeTrace(folder: string, study: Study, key: string, trace: Trace): Promise<void> {
+  const { bank, factors, samples, events } = trace;
+  const temperature = study.candidates.some((one) => one.key === key && leavesReference(study, one));
+  const shown = { temperature, equaliser: bank.equaliser !== null };
   makeFolder(folder);
-  await writeDurably(join(folder, 'drawn.csv'), await renderDrawnCsv(bank, factors));
-  await writeDurably(join(folder, 'modules.csv'), await renderModulesCsv(samples));
+  await writeDurably(join(folder, 'drawn.csv'), await renderDrawnCsv(bank, factors, shown));
+  await writeDurably(join(folder, 'modules.csv'), await renderModulesCsv(samples, shown));
   await writeDurably(join(folder, 'bus.csv'), await renderBusCsv(samples));
   await writeDurably(join(folder, 'events.csv'), await renderEventsCsv(bank, events));
 }

@@ -96,7 +96,10 @@ function rowOf(path: string, schema: KeySchema, required: boolean): KeyRow {
 
 /** What a value may be, in words. */
 function takes(schema: KeySchema): string {
-  if (isSpread(schema)) return `${takes(alternativesOf(schema)[0] ?? {})}, or a spread`;
+  if (isSpread(schema)) {
+    const [number, ...others] = alternativesOf(schema).filter(({ properties }) => properties === undefined);
+    return [takes(number ?? {}), 'a spread', ...others.map(takes)].join(', or ');
+  }
   const alternatives = alternativesOf(schema);
   if (alternatives.length > 1) return [...new Set(alternatives.map(takes))].join(', or ');
   if (schema.const !== undefined) return `\`${String(schema.const)}\``;

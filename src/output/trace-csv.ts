@@ -12,6 +12,15 @@ export interface TracedModule {
   readonly bleeding: readonly boolean[];
   readonly chargeOpen: boolean;
   readonly dischargeOpen: boolean;
+  readonly temperatureK: number;
+  readonly deviceA: number | null;
+}
+
+/** What of a bank there is to be shown beside what every bank has. */
+export interface TracedOptions {
+  /** Some module may have another temperature than 25 degC. */
+  readonly temperature: boolean;
+  readonly equaliser: boolean;
 }
 
 export interface TracedInstant {
@@ -33,9 +42,13 @@ export interface TracedEvent {
   readonly cell: number;
 }
 
+const CELSIUS_ZERO_K = 273.15;
+
 interface Column<Row> {
   readonly name: string;
   readonly value: (row: Row) => CsvField;
+  /** Left out if false. */
+  readonly shown?: boolean;
 }
 
 /** `bus.csv`: the bank as a whole, one row per instant. */
@@ -50,8 +63,11 @@ export function renderBusCsv(instants: readonly TracedInstant[]): Promise<string
   ]);
 }
 
-/** `modules.csv`: one row per instant and module; charge and voltage of its extreme cells. */
-export function renderModulesCsv(instants: readonly TracedInstant[]): Promise<string> {
+/**
+ * `modules.csv`: one row per instant and module; charge and voltage of its extreme cells. `equaliser_A` is what the device
+ * between this module and the next takes, from the next one if positive; empty at the last position.
+ */
+export function renderModulesCsv(instants: readonly TracedInstant[], options: TracedOptions): Promise<string> {
   const rows = instants.flatMap((instant) => instant.modules.map((module) => ({ instant, module })));
   const path = (open: boolean): string => (open ? 'open' : 'closed');
   return render(rows, [
@@ -68,6 +84,8 @@ export function renderModulesCsv(instants: readonly TracedInstant[]): Promise<st
     { name: 'charge_path', value: ({ module }) => path(module.chargeOpen) },
     { name: 'discharge_path', value: ({ module }) => path(module.dischargeOpen) },
     { name: 'bleeding_cells', value: ({ module }) => module.bleeding.filter(Boolean).length },
+    { name: 'module_degC', shown: options.temperature, value: ({ module }) => degC(module.temperatureK) },
+    { name: 'equaliser_A', shown: options.equaliser, value: ({ module }) => module.deviceA },
   ]);
 }
 
@@ -88,7 +106,11 @@ export function renderEventsCsv(bank: Bank, events: readonly TracedEvent[]): Pro
 export function renderDrawnCsv(
   bank: Bank,
   factors: { readonly loadFactor: number; readonly chargeFactor: number },
+  { temperature }: TracedOptions,
 ): Promise<string> {
+  const { ageing } = bank;
+  const { offsetK, refusalK, releaseK } = bank.temperature;
+  const refuses = temperature && refusalK.some(Number.isFinite);
   const cells = Array.from(bank.moduleOfCell, (m, c) => ({ m, c }));
   const ofCell = (name: string, values: Float64Array, factor = 1): Column<{ m: number; c: number }> => ({
     name,
@@ -118,14 +140,24 @@ export function renderDrawnCsv(
     ofModule('over_current_discharge_A', bank.overCurrentDischargeA),
     ofModule('bleed_start_V', bank.bleedStartV),
     ofModule('bleed_mA', bank.bleedA, 1000),
+    { ...ofModule('warmer_than_ambient_K', offsetK), shown: temperature },
+    { name: 'charge_refusal_below_degC', shown: refuses, value: ({ m }) => degC(refusalK[m]) },
+    { name: 'charge_refusal_release_degC', shown: refuses, value: ({ m }) => degC(releaseK[m]) },
+    { name: 'ageing_rate', shown: ageing !== null, value: ({ c }) => ageing?.[c]?.rate ?? null },
     { name: 'load_factor', value: () => factors.loadFactor },
     { name: 'charge_factor', value: () => factors.chargeFactor },
   ]);
 }
 
+/** Without the last digits, which the subtraction spoils; empty where there is no such temperature. */
+function degC(kelvin: number): CsvField {
+  return Number.isFinite(kelvin) ? Number((kelvin - CELSIUS_ZERO_K).toFixed(9)) : null;
+}
+
 function render<Row>(rows: readonly Row[], columns: readonly Column<Row>[]): Promise<string> {
+  const shown = columns.filter((column) => column.shown !== false);
   return renderCsv(
-    columns.map(({ name }) => name),
-    rows.map((row) => columns.map(({ value }) => value(row))),
+    shown.map(({ name }) => name),
+    rows.map((row) => shown.map(({ value }) => value(row))),
   );
 }

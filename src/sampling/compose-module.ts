@@ -1,5 +1,5 @@
 import type { QuantityName } from '../study/quantities.js';
-import type { ModuleParameters, PopulationStock } from '../study/study.js';
+import type { BmsSettings, ModuleParameters, PopulationStock } from '../study/study.js';
 import type { PerQuantity } from './quantity-order.js';
 import { spreadValue } from './spread-value.js';
 
@@ -58,9 +58,15 @@ export function composeModule(
     overCurrentDischargeA: ofModule('overCurrentDischargeA'),
     bleedA: ofModule('bleedA'),
     bleedStartV: ofModule('bleedStartV'),
-    bms: stock.bms,
+    bms: withRefusal(stock.bms, ofModule),
     ...(cell.activation !== undefined && { activation: cell.activation }),
     temperatureOffsetK: ofModule('temperatureOffsetK'),
     ...(stock.ageing !== undefined && { ageing: { ...stock.ageing, rate: ofModule('ageingRate') } }),
   };
+}
+
+/** The settings of a BMS with the temperatures of refusal of its module, if it refuses at all. */
+function withRefusal(bms: BmsSettings, ofModule: (name: QuantityName) => number): BmsSettings {
+  if (bms.chargeRefusal === undefined) return bms;
+  return { ...bms, chargeRefusal: { belowK: ofModule('refusalBelowK'), releaseK: ofModule('refusalReleaseK') } };
 }

@@ -28,6 +28,8 @@ export const QUANTITY_ORDER: NamesOf<typeof QUANTITIES> = [
   'bleedStartV',
   'temperatureOffsetK',
   'ageingRate',
+  'refusalBelowK',
+  'refusalReleaseK',
 ];
 
 /** One thing per quantity. */

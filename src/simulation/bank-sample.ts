@@ -1,7 +1,9 @@
 import { BOTH_WAYS, DISCHARGE_ONLY } from '../bank/bank-state.js';
 import { loadIsServed } from '../bank/bus.js';
+import { deviceCurrentA, differenceV } from '../bank/equaliser.js';
 import { chainConductanceS, FORWARD, LEAKING } from '../bank/network.js';
 import { chargePathOpen, dischargePathOpen, moduleMode } from '../bank/paths.js';
+import { REFERENCE_K } from '../bank/temperature.js';
 import type { Journey } from './advance.js';
 import { cellVoltageV } from './kernel.js';
 import { evaluateWithin } from './step.js';
@@ -29,6 +31,12 @@ export interface ModuleSample {
   readonly bleeding: readonly boolean[];
   readonly chargeOpen: boolean;
   readonly dischargeOpen: boolean;
+  readonly temperatureK: number;
+  /**
+   * Current that the equaliser between this module and the next takes, A: from the next one if positive, from this one if
+   * negative. Null without one.
+   */
+  readonly deviceA: number | null;
 }
 
 /** Takes samples of a journey at even intervals, from its present on. */
@@ -80,6 +88,8 @@ function sampleNow(journey: Journey, timeS: number, elapsedS: number): BankSampl
       bleeding: cells.map((c) => state.bleeding[c] === 1),
       chargeOpen: chargePathOpen(bank, state, m),
       dischargeOpen: dischargePathOpen(bank, state, m),
+      temperatureK: (journey.climate?.ambientK ?? REFERENCE_K) + bank.temperature.offsetK[m],
+      deviceA: deviceAbove(journey, m),
     });
   }
   const demandW = terminal.demandW + terminal.demandA * point.bankV;
@@ -92,6 +102,14 @@ function sampleNow(journey: Journey, timeS: number, elapsedS: number): BankSampl
     servedW: served ? demandW : 0,
     modules: modules.map((module, m) => ({ ...module, terminalV: stackV[m] + pathVoltageV(journey, stackV, m) })),
   };
+}
+
+function deviceAbove({ kernel }: Journey, m: number): number | null {
+  const { bank, state, point } = kernel;
+  const k = bank.equaliser?.lower.indexOf(m) ?? -1;
+  if (bank.equaliser === null || k < 0) return null;
+  const atV = differenceV(bank.equaliser, point.emfV, point.currentA, k);
+  return deviceCurrentA(bank.equaliser, state.equaliserRegion[k], atV);
 }
 
 /** Voltage across the open path of module `m` beside its resistance: its drop if it conducts, all that is left if not. */

@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import { amount, choice, count } from './amount.js';
 import { bleedSection, cellVoltage } from './bleed.js';
-import { CHARGE_REFUSAL, DEFAULT_CHARGE_REFUSAL } from './charge-refusal.js';
+import { DEFAULT_CHARGE_REFUSAL, EXPLICIT_CHARGE_REFUSAL, POPULATION_CHARGE_REFUSAL } from './charge-refusal.js';
 import { section } from './section.js';
 import { moduleSpread } from './spread.js';
 
@@ -13,7 +13,7 @@ const TRIP_DELAY = 'How long a cell must be past the threshold before the path o
 const RELEASE_HOLD = 'How long the release must last before the path closes.';
 
 /** Schema of a battery management system, its spread values as `leaf` makes them. */
-function bmsSection<L extends z.ZodType>(leaf: (nominal: z.ZodNumber) => L) {
+function bmsSection<L extends z.ZodType, R extends z.ZodType>(leaf: (nominal: z.ZodNumber) => L, chargeRefusal: R) {
   return section({
     over_voltage: section({
       cell_V: leaf(
@@ -74,7 +74,7 @@ function bmsSection<L extends z.ZodType>(leaf: (nominal: z.ZodNumber) => L) {
       .meta({ description: 'Permitted current that removes the forward drop; null = never.', default: 1 })
       .optional(),
     reclose_delay_s: seconds(0.1, 'How long the permitted current must flow before the forward drop goes.').optional(),
-    charge_refusal: CHARGE_REFUSAL.optional(),
+    charge_refusal: chargeRefusal.optional(),
     asleep_mA: amount(
       { atLeast: 0, atMost: 10_000 },
       { description: 'Standby while asleep.', default: 0.1 },
@@ -87,9 +87,9 @@ function bmsSection<L extends z.ZodType>(leaf: (nominal: z.ZodNumber) => L) {
 }
 
 /** BMS of a population: thresholds, limits and bleed may spread between modules. */
-export const POPULATION_BMS = bmsSection(moduleSpread);
+export const POPULATION_BMS = bmsSection(moduleSpread, POPULATION_CHARGE_REFUSAL);
 /** BMS of a module written down: every value a number. */
-export const EXPLICIT_BMS = bmsSection((nominal) => nominal);
+export const EXPLICIT_BMS = bmsSection((nominal) => nominal, EXPLICIT_CHARGE_REFUSAL);
 
 /** What both have in common; a number is a spread of nothing. */
 export type BmsInput = z.infer<typeof POPULATION_BMS>;

@@ -5,7 +5,13 @@ import type { ResolvedSpread } from './resolve-spread.js';
 import type { StudyPath } from './study-path.js';
 import { inUnitOfKey, unitOfKey } from './units.js';
 
-type Bound = 'above 0' | '0 or more' | 'above 0 and at most 1' | 'from 0 to 1' | 'from -50 to 50 K';
+type Bound =
+  | 'above 0'
+  | '0 or more'
+  | 'above 0 and at most 1'
+  | 'from 0 to 1'
+  | 'from -50 to 50 K'
+  | 'from -60 to 20 degC';
 
 /** Values a quantity of a real module can have. */
 const POSSIBLE: Readonly<Record<QuantityName, Bound>> = {
@@ -27,9 +33,21 @@ const POSSIBLE: Readonly<Record<QuantityName, Bound>> = {
   bleedStartV: 'above 0',
   temperatureOffsetK: 'from -50 to 50 K',
   ageingRate: '0 or more',
+  refusalBelowK: 'from -60 to 20 degC',
+  refusalReleaseK: 'from -60 to 20 degC',
 };
 
-/** Sums of decimals reach 1 only up to rounding. */
+/** Least and greatest value, in the units of the resolved study. */
+const ENDS: Readonly<Record<Bound, readonly [number, number]>> = {
+  'above 0': [0, Number.POSITIVE_INFINITY],
+  '0 or more': [0, Number.POSITIVE_INFINITY],
+  'above 0 and at most 1': [0, 1],
+  'from 0 to 1': [0, 1],
+  'from -50 to 50 K': [-50, 50],
+  'from -60 to 20 degC': [213.15, 293.15],
+};
+
+/** Sums of decimals reach an end only up to rounding. */
 const ROUNDING = 1e-12;
 
 /**
@@ -61,8 +79,7 @@ export function impossibleValue(
   upper: number,
 ): { readonly rule: string; readonly shown: string } | undefined {
   const bound = POSSIBLE[name];
-  const least = bound === 'from -50 to 50 K' ? -50 : 0;
-  const most = bound === 'from -50 to 50 K' ? 50 : bound.endsWith('1') ? 1 : Number.POSITIVE_INFINITY;
+  const [least, most] = ENDS[bound];
   const lowFails = bound.startsWith('above') ? !(lower > 0) : !(lower >= least - ROUNDING);
   const highFails = !(upper <= most + ROUNDING);
   if (!lowFails && !highFails) return undefined;

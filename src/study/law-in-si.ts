@@ -3,7 +3,7 @@ import { measuredColumn } from './measured-column.js';
 import type { Reading } from './reading.js';
 import type { Law, MixtureLaw, MixturePart } from './study.js';
 import type { StudyPath } from './study-path.js';
-import { siFromKey } from './units.js';
+import { differenceFromKey } from './units.js';
 
 /** The quantity that a law belongs to. */
 export interface LawOwner {
@@ -42,6 +42,16 @@ export function isInPercent(law: LawInput): boolean {
   const sd = 'sd' in law && law.sd !== undefined;
   const halfWidth = 'half_width' in law && law.half_width !== undefined;
   return !sd && !halfWidth;
+}
+
+/** @returns true if some amount of the law is in percent of the nominal value */
+export function hasPercent(law: LawInput): boolean {
+  if (law.law === 'mixture') {
+    return law.of.some((part) => part.at_percent !== undefined || hasPercent(lawOfPart(part)));
+  }
+  const sd = 'sd_percent' in law && law.sd_percent !== undefined;
+  const halfWidth = 'half_width_percent' in law && law.half_width_percent !== undefined;
+  return sd || halfWidth;
 }
 
 /** @returns the law in the units of the resolved study; a law that cannot be is a fault and comes out fixed */
@@ -120,6 +130,6 @@ function amountInSi(
   percent: number | undefined,
   { key, nominalSi, relative }: LawOwner,
 ): number {
-  if (own !== undefined) return siFromKey(key, own);
+  if (own !== undefined) return differenceFromKey(key, own);
   return ((percent ?? 0) / 100) * (relative ? 1 : Math.abs(nominalSi));
 }

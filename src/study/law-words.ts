@@ -2,7 +2,7 @@ import type { LawInput, MixedInput } from './law.js';
 import { lawOfPart } from './law-in-si.js';
 import { lawMoments } from './law-moments.js';
 import type { Law } from './study.js';
-import { inUnitOfKey, unitOfKey } from './units.js';
+import { differenceInUnitOfKey, unitOfDifference } from './units.js';
 
 /** The quantity that a law belongs to, as far as its words need it. */
 interface WordsOwner {
@@ -24,7 +24,7 @@ const TOLD_FROM = 5e-4;
  * @param resolved the same law in the units of the resolved study
  */
 export function lawWords(law: LawInput, resolved: Law, owner: WordsOwner): string {
-  const words = wordsOf(law, unitOfKey(owner.key));
+  const words = wordsOf(law, unitOfDifference(owner.key));
   const left = lawMoments(resolved, owner.relative ? 1 : owner.nominalSi).sd;
   const isMeasure = law.law === 'mixture' || law.law === 'resampled';
   const isCut = 'sd' in resolved && Math.abs(left / resolved.sd - 1) >= TOLD_FROM;
@@ -34,7 +34,7 @@ export function lawWords(law: LawInput, resolved: Law, owner: WordsOwner): strin
 
 function wordsOf(law: LawInput, unit: string): string {
   const amount = (own: number | undefined, percent: number | undefined): string => {
-    const [value, suffix] = own === undefined ? [percent, '%'] : [own, unit === '%' ? 'points' : unit];
+    const [value, suffix] = own === undefined ? [percent, '%'] : [own, unit];
     return `${value} ${suffix}`.trim();
   };
   const wide = (written: { half_width?: number | undefined; half_width_percent?: number | undefined }): string =>
@@ -74,7 +74,6 @@ function partWords(
 }
 
 function amountWords(value: number, { key, relative }: WordsOwner): string {
-  const unit = unitOfKey(key);
-  const [shown, suffix] = relative ? [value * 100, '%'] : [inUnitOfKey(key, value), unit === '%' ? 'points' : unit];
+  const [shown, suffix] = relative ? [value * 100, '%'] : [differenceInUnitOfKey(key, value), unitOfDifference(key)];
   return `${Number(shown.toPrecision(4))} ${suffix}`.trim();
 }

@@ -21,6 +21,8 @@ export const QUANTITIES = [
   { name: 'bleedStartV', levels: ['lot', 'module'] },
   { name: 'temperatureOffsetK', levels: ['lot', 'module'] },
   { name: 'ageingRate', levels: ['lot', 'module'] },
+  { name: 'refusalBelowK', levels: ['lot', 'module'] },
+  { name: 'refusalReleaseK', levels: ['lot', 'module'] },
 ] as const;
 
 export type QuantityName = (typeof QUANTITIES)[number]['name'];

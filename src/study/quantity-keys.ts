@@ -20,6 +20,8 @@ export const QUANTITY_KEYS = {
   bleedStartV: 'bms.bleed.start_V',
   temperatureOffsetK: 'temperature_offset_K',
   ageingRate: 'ageing.rate',
+  refusalBelowK: 'bms.charge_refusal.below_degC',
+  refusalReleaseK: 'bms.charge_refusal.release_degC',
 } as const satisfies Record<QuantityName, string>;
 
 const NAMES_BY_KEY: ReadonlyMap<string, QuantityName> = new Map(

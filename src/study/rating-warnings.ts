@@ -1,6 +1,8 @@
 import { ratingsOfModules } from './ratings.js';
 import type { Candidate, Study } from './study.js';
 
+const ADVICE = 'take modules made for it, or fewer of larger ones';
+
 /** @returns where the counts of a candidate exceed what its modules are rated for, one sentence each */
 export function countWarnings(study: Study, candidate: Candidate): readonly string[] {
   const ratings = ratingsOfModules(study, candidate).flat();
@@ -13,10 +15,12 @@ export function countWarnings(study: Study, candidate: Candidate): readonly stri
   const inSeries = candidate.strings[0]?.length ?? 0;
   const inParallel = candidate.strings.length;
   if (inSeries > least('mostInSeries')) {
-    warnings.push(`${inSeries} modules in series, but the maker of one allows ${least('mostInSeries')}`);
+    warnings.push(`${inSeries} modules in series, but the maker of one allows ${least('mostInSeries')}: ${ADVICE}`);
   }
   if (inParallel > least('mostInParallel')) {
-    warnings.push(`${inParallel} strings in parallel, but the maker of a module allows ${least('mostInParallel')}`);
+    warnings.push(
+      `${inParallel} strings in parallel, but the maker of one allows ${least('mostInParallel')}: ${ADVICE}`,
+    );
   }
   return warnings;
 }

@@ -2,7 +2,7 @@ import { type AgeingInput, DEFAULT_AGEING } from './ageing.js';
 import type { AgeingSettings } from './ageing-settings.js';
 import type { Layers } from './layers.js';
 import type { Reading } from './reading.js';
-import { type ResolvedSpread, resolveSpread } from './resolve-spread.js';
+import { exactly, type ResolvedSpread, resolveSpread } from './resolve-spread.js';
 
 /** How a stock or module ages, with the spread of its rate. */
 export interface ResolvedAgeing {
@@ -10,16 +10,8 @@ export interface ResolvedAgeing {
   readonly rate: ResolvedSpread;
 }
 
-const FIXED = { law: 'fixed' } as const;
-
 /** Rate of what does not age, so that every stock has all quantities. */
-export const UNAGEING: ResolvedSpread = {
-  nominal: 1,
-  relative: false,
-  laws: { lot: FIXED, module: FIXED, cell: FIXED, bank: FIXED },
-  lower: 1,
-  upper: 1,
-};
+export const UNAGEING: ResolvedSpread = exactly(1);
 
 /**
  * @param written the section `ageing` of a stock or module and of those it is like

@@ -1,15 +1,15 @@
 import { STOP_BELOW_START_V } from './bleed.js';
 import type { BmsInput } from './bms.js';
-import { resolveChargeRefusal } from './charge-refusal.js';
 import type { Layers } from './layers.js';
 import type { QuantityName } from './quantities.js';
 import type { Reading } from './reading.js';
+import { checkRefusal, resolveChargeRefusal } from './resolve-charge-refusal.js';
 import { type ResolvedSpread, resolveSpread } from './resolve-spread.js';
 import type { BleedSettings, BmsSettings, OverCurrentSettings } from './study.js';
 import { renderPath } from './study-path.js';
 
 /** Quantities of a module that stand in the section `bms`. */
-type BmsQuantity = Extract<QuantityName, `over${string}` | `under${string}` | `bleed${string}`>;
+type BmsQuantity = Extract<QuantityName, `over${string}` | `under${string}` | `bleed${string}` | `refusal${string}`>;
 
 /** A resolved BMS: what spreads and what does not. */
 export interface ResolvedBms {
@@ -23,6 +23,7 @@ export function resolveBms(layers: Layers<BmsInput>, reading: Reading): Resolved
   const under = layers.inside('under_voltage');
   const current = layers.inside('over_current');
   const bleed = layers.inside('bleed');
+  const refusal = resolveChargeRefusal(layers.inside('charge_refusal'), reading);
   const spreads = {
     overVoltageV: spreadIn(over, 'cell_V', reading),
     overVoltageReleaseV: spreadIn(over, 'release_V', reading),
@@ -32,8 +33,8 @@ export function resolveBms(layers: Layers<BmsInput>, reading: Reading): Resolved
     overCurrentDischargeA: spreadIn(current, 'discharge_A', reading),
     bleedA: spreadIn(bleed, 'current_mA', reading),
     bleedStartV: spreadIn(bleed, 'start_V', reading),
+    ...refusal.spreads,
   };
-  const chargeRefusal = resolveChargeRefusal(layers.inside('charge_refusal'), reading);
   const settings: BmsSettings = {
     overVoltageDelayS: over.si('delay_s', reading),
     overVoltageReleaseHoldS: over.si('release_hold_s', reading),
@@ -47,7 +48,7 @@ export function resolveBms(layers: Layers<BmsInput>, reading: Reading): Resolved
     bleed: resolveBleed(bleed, spreads.bleedStartV.nominal, reading),
     asleepA: layers.si('asleep_mA', reading),
     asleepAfterS: layers.si('asleep_after_h', reading),
-    ...(chargeRefusal !== undefined && { chargeRefusal }),
+    ...(refusal.settings !== undefined && { chargeRefusal: refusal.settings }),
   };
   checkThresholds(layers, spreads, reading);
   return { settings, spreads };
@@ -103,6 +104,7 @@ export function checkThresholds(
   order('over_voltage', 'release_V', overVoltageReleaseV, overVoltageV, 'below every over-voltage threshold');
   order('under_voltage', 'cell_V', underVoltageV, underVoltageReleaseV, 'below every under-voltage release');
   order('under_voltage', 'cell_V', underVoltageV, overVoltageV, 'below every over-voltage threshold');
+  checkRefusal(layers.inside('charge_refusal'), spreads, reading);
 }
 
 function spreadIn<T extends object>(layers: Layers<T>, key: keyof T & string, reading: Reading): ResolvedSpread {

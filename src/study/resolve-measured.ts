@@ -14,7 +14,7 @@ import { showValue } from './show-value.js';
 import type { Law, MeasuredModules } from './study.js';
 import { renderPath, type StudyPath } from './study-path.js';
 import { readTextTable, type TextTable } from './text-table.js';
-import { siFromKey, unitOfKey } from './units.js';
+import { differenceFromKey, inUnitOfKey, siFromKey, unitOfKey } from './units.js';
 
 type Spreads = Readonly<Record<QuantityName, ResolvedSpread>>;
 
@@ -124,7 +124,7 @@ function uncertaintyOf(
     if (name === undefined || names.includes(name)) continue;
     reading.fault([...path, key], `given for a column of ${file} only`);
   }
-  return names.map((name) => siFromKey(QUANTITY_KEYS[name], uncertainty?.[QUANTITY_KEYS[name]] ?? 0));
+  return names.map((name) => differenceFromKey(QUANTITY_KEYS[name], uncertainty?.[QUANTITY_KEYS[name]] ?? 0));
 }
 
 function columnOf(table: TextTable, name: QuantityName, reading: Reading): readonly number[] | undefined {
@@ -204,7 +204,7 @@ function noteOrigin(
   const key = QUANTITY_KEYS[name];
   const own = renderPath([...owner, ...key.split('.')]);
   const isAside = ({ path }: Origin): boolean => [own, `${own}.lot`, `${own}.module`].includes(path);
-  const values = used.map((row) => (column[row] ?? 0) / siFromKey(key, 1));
+  const values = used.map((row) => inUnitOfKey(key, column[row] ?? 0));
   const round = (value: number): number => Number(value.toPrecision(5));
   const range = `${round(Math.min(...values))} to ${round(Math.max(...values))}`;
   const sd = uncertainty?.[key] ?? 0;

@@ -1,5 +1,5 @@
 import type { LawInput } from './law.js';
-import { isFixed, isInPercent, lawInSi } from './law-in-si.js';
+import { hasPercent, isFixed, isInPercent, lawInSi } from './law-in-si.js';
 import { lawSupport } from './law-support.js';
 import { lawWords } from './law-words.js';
 import type { Layers } from './layers.js';
@@ -24,6 +24,19 @@ interface Part<V> {
   readonly value: V;
   readonly source: OriginSource;
   readonly path: StudyPath;
+}
+
+const NONE: Law = { law: 'fixed' };
+
+/** @returns a spread of nothing, for a quantity that a study does not ask for */
+export function exactly(nominal: number): ResolvedSpread {
+  return {
+    nominal,
+    relative: false,
+    laws: { lot: NONE, module: NONE, cell: NONE, bank: NONE },
+    lower: nominal,
+    upper: nominal,
+  };
 }
 
 const LEVELS: readonly Level[] = ['lot', 'module', 'cell', 'bank'];
@@ -52,7 +65,11 @@ export function resolveSpread<T extends object, K extends keyof T & string>(
   const nominalSi = siFromKey(key, nominal.value);
   const resolved = (level: Level): Law => {
     const part = parts.get(level);
-    if (part === undefined) return { law: 'fixed' };
+    if (part === undefined) return NONE;
+    if (unitOfKey(key) === 'degC' && hasPercent(part.value)) {
+      reading.fault(part.path, 'a law whose amounts are in K: there is no percent of degC');
+      return NONE;
+    }
     return lawInSi(part.value, { key, nominalSi, relative, path: part.path, reading });
   };
   const laws = { lot: resolved('lot'), module: resolved('module'), cell: resolved('cell'), bank: resolved('bank') };

@@ -74,19 +74,26 @@ function stockContent(stock: Stock, used: ReadonlySet<string>, study: Study, isW
   };
 }
 
-/** A population without how it follows temperature if no module leaves 25 degC, and without a rate of ageing if none ages. */
+/**
+ * A population without how it follows temperature if no module leaves 25 degC, without a rate of ageing if none ages, and
+ * without spreads of the temperatures of refusal if there are none: the settings of its BMS tell these.
+ */
 function asFarAsItMatters(
   stock: PopulationStock,
   isWarmed: boolean,
 ): { readonly cell: object & { ocv: number }; readonly quantities: object } {
   const { activation: _activation, ...cell } = stock.cell;
-  const { temperatureOffsetK, ageingRate, ...quantities } = stock.quantities;
+  const { temperatureOffsetK, ageingRate, refusalBelowK, refusalReleaseK, ...quantities } = stock.quantities;
+  const refusalSpreads = [refusalBelowK, refusalReleaseK].some(
+    ({ lot, module }) => lot.law !== 'fixed' || module.law !== 'fixed',
+  );
   return {
     cell: isWarmed ? stock.cell : cell,
     quantities: {
       ...quantities,
       ...(isWarmed && { temperatureOffsetK }),
       ...(stock.ageing !== undefined && { ageingRate }),
+      ...(isWarmed && refusalSpreads && { refusalBelowK, refusalReleaseK }),
     },
   };
 }

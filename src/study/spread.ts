@@ -63,6 +63,23 @@ export function moduleSpread(nominal: z.ZodNumber) {
   return z.union([nominal, mapping.refine(...oneLot).refine(...oneModule)], SPREAD_RULE).meta(nominal.meta() ?? {});
 }
 
+/** As `moduleSpread` for a temperature in degC: its deviations are in K, since its zero means nothing. */
+export function temperatureSpread(nominal: z.ZodNumber) {
+  const mapping = section({
+    nominal: nominal.optional(),
+    lot: LAW.optional(),
+    lot_sd: amountOf.optional(),
+    module: LAW.optional(),
+    module_sd: amountOf.optional(),
+  });
+  return z
+    .union(
+      [nominal, mapping.refine(...atMostOneOf('lot', 'lot_sd')).refine(...atMostOneOf('module', 'module_sd'))],
+      'a number, or a mapping such as {nominal: 0, module_sd: 0.5}',
+    )
+    .meta(nominal.meta() ?? {});
+}
+
 /** @returns schema of a factor that a bank has as a whole */
 export function bankSpread(nominal: z.ZodNumber) {
   const mapping = section({ nominal: nominal.optional(), ...bank });

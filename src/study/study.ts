@@ -173,7 +173,7 @@ export interface Activation {
   readonly leakageJPerMol: number;
 }
 
-/** Settings of a BMS that have no spread. */
+/** Settings of a BMS, all but one without spread. */
 export interface BmsSettings {
   readonly overVoltageDelayS: number;
   readonly overVoltageReleaseHoldS: number;
@@ -191,7 +191,10 @@ export interface BmsSettings {
   /** Standby current after `asleepAfterS` with the discharge path open. */
   readonly asleepA: number;
   readonly asleepAfterS: number;
-  /** The charge path opens below one temperature and closes from a higher one on; absent: never. */
+  /**
+   * The charge path opens below one temperature and closes from a higher one on; absent: never. Of a population its
+   * nominal values, of a module its own.
+   */
   readonly chargeRefusal?: { readonly belowK: number; readonly releaseK: number };
 }
 

@@ -7,6 +7,8 @@ interface KeyUnit {
   readonly suffix: string;
   readonly unit: string;
   readonly toSi: (value: number) => number;
+  /** Of a difference of two values, where it is another. */
+  readonly ofDifference?: { readonly unit: string; readonly toSi: (value: number) => number };
 }
 
 const same = (value: number): number => value;
@@ -17,7 +19,7 @@ const hundredth = (value: number): number => value / 100;
 /** Units by the last words of a key; longer suffixes stand before those they end in. */
 const KEY_UNITS: readonly KeyUnit[] = [
   { suffix: '_percent_per_month', unit: '%/month', toSi: hundredth },
-  { suffix: '_percent', unit: '%', toSi: hundredth },
+  { suffix: '_percent', unit: '%', toSi: hundredth, ofDifference: { unit: 'points', toSi: hundredth } },
   { suffix: '_mOhm', unit: 'mOhm', toSi: thousandth },
   { suffix: '_Ah', unit: 'Ah', toSi: same },
   { suffix: '_mA', unit: 'mA', toSi: thousandth },
@@ -28,7 +30,12 @@ const KEY_UNITS: readonly KeyUnit[] = [
   { suffix: '_h', unit: 'h', toSi: (hours) => hours * SECONDS_PER_HOUR },
   { suffix: '_s', unit: 's', toSi: same },
   { suffix: '_K', unit: 'K', toSi: same },
-  { suffix: '_degC', unit: 'degC', toSi: (celsius) => celsius + 273.15 },
+  {
+    suffix: '_degC',
+    unit: 'degC',
+    toSi: (celsius) => celsius + 273.15,
+    ofDifference: { unit: 'K', toSi: same },
+  },
   { suffix: '_kJ_per_mol', unit: 'kJ/mol', toSi: (kilojoules) => kilojoules * 1000 },
   { suffix: '_days', unit: 'days', toSi: (days) => days * 24 * SECONDS_PER_HOUR },
 ];
@@ -47,6 +54,21 @@ export function siFromKey(key: string, value: number): number {
 export function inUnitOfKey(key: string, si: number): number {
   const zero = siFromKey(key, 0);
   return (si - zero) / (siFromKey(key, 1) - zero);
+}
+
+/** @returns the unit of a difference of two values of a key: points for percent, K for degC */
+export function unitOfDifference(key: string): string {
+  return unitFor(key)?.ofDifference?.unit ?? unitOfKey(key);
+}
+
+/** @returns a difference of two values of a key in the units of the resolved study */
+export function differenceFromKey(key: string, value: number): number {
+  return unitFor(key)?.ofDifference?.toSi(value) ?? siFromKey(key, value);
+}
+
+/** @returns a difference in the unit that a key of the study names; inverse of `differenceFromKey` */
+export function differenceInUnitOfKey(key: string, si: number): number {
+  return si / differenceFromKey(key, 1);
 }
 
 /** @returns hours in seconds */

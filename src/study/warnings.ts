@@ -1,6 +1,7 @@
 import { nominalModules } from './bank-module.js';
 import { warnOfAbsorption, warnOfFloat } from './charger-warnings.js';
 import { dutyWarnings, warnOfFirstDemand } from './duty-warnings.js';
+import { measuredWarnings } from './measured-warnings.js';
 import { warnOfPacks } from './pack-warnings.js';
 import { countWarnings } from './rating-warnings.js';
 import type { Study } from './study.js';
@@ -24,18 +25,5 @@ export function studyWarnings(study: Study): readonly string[] {
     for (const text of countWarnings(study, candidate)) warn(text);
   }
   const ofCandidates = [...warnings].map(([text, keys]) => `${text} (${keys.join(', ')})`);
-  return [...ofCandidates, ...unlikeVoltages(study), ...dutyWarnings(study), ...bleedInForce(study)];
-}
-
-/** Bleeding decides more about drift than any tolerance, so the rule in force is always said. */
-function bleedInForce(study: Study): readonly string[] {
-  const rules = study.stocks.flatMap((stock) => {
-    const settings = stock.kind === 'population' ? [stock.bms.bleed] : stock.modules.map(({ bms }) => bms.bleed);
-    const words = [...new Set(settings.map(({ rule, when }) => (rule === 'none' ? rule : `${rule}, ${when}`)))];
-    return words.map((word) => `bleed rule in force: ${word} (stock ${stock.key})`);
-  });
-  const overrides = study.candidates.flatMap(({ key, bleed }) =>
-    bleed?.rule === undefined ? [] : [`bleed rule in force: ${bleed.rule} (candidate ${key})`],
-  );
-  return [...rules, ...overrides];
+  return [...ofCandidates, ...unlikeVoltages(study), ...dutyWarnings(study), ...measuredWarnings(study)];
 }

@@ -77,7 +77,7 @@ describe('check', () => {
       return shell.printed.err;
     };
     expect(warned(2000)).toMatch(
-      /^warning: a string fuse may have to break 2163 A, but its breaking capacity is 2000 A \(native\)$/m,
+      /^warning: a string fuse may have to break 2163 A, but its breaking capacity is 2000 A: take one that can break more \(native\)$/m,
     );
     expect(warned(6000)).not.toMatch(/breaking/);
   });
@@ -89,10 +89,18 @@ describe('check', () => {
     expect(document.origins).toContainEqual({ path: 'block', value: '32', unit: '', source: 'default' });
   });
 
-  it('keeps warnings and leaves out the table with --quiet', () => {
-    const { out, err } = check({ quiet: true }).printed;
+  it('notes the bleed rule in force, which is nothing to be warned of', () => {
+    const note =
+      'bleed rule in force: each, always (stock newer); above-lowest, always (stock older); each (candidate strings-bleed)';
+    expect(check().printed.out.replaceAll('\n', ' ')).toContain(`note: ${note}`);
+    expect(JSON.parse(check({ json: true }).printed.out).notes).toEqual([note]);
+  });
+
+  it('keeps warnings and leaves out table and note with --quiet', () => {
+    const { out, err } = check({ quiet: true }, { ...AIDS, candidatesWhoseTwinLosesLoad: () => ['native'] }).printed;
     expect(out).toBe('');
-    expect(err).toMatch(/^warning: bleed rule in force: each, always \(stock newer\)$/m);
+    expect(err).toMatch(/^warning: the duty is too much even without spread: the twin loses load \(native\)/m);
+    expect(err).not.toMatch(/bleed/);
   });
 
   it('reports all problems on stderr with status 2', () => {

@@ -60,6 +60,8 @@ export function inventedStock(changes: Partial<PopulationStock> = {}): Populatio
         cell: { law: 'fixed' },
       },
       temperatureOffsetK: { ...relativeSpread(0), relative: false },
+      refusalBelowK: { ...relativeSpread(273.15), relative: false },
+      refusalReleaseK: { ...relativeSpread(278.15), relative: false },
     },
     correlations: [{ level: 'module', of: ['capacityAh', 'resistanceOhm'], rho: -0.3 }],
     cell: {

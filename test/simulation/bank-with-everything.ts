@@ -6,8 +6,8 @@ const RATINGS = { continuousA: 50, peakA: 100, blockingV: 30, mostInSeries: 2, m
 
 /**
  * A random bank of two or three strings of two or three modules, tied or not, with all that can be said of one: unlike
- * temperatures through cold and warm, refusal of charge, equalisers, rails, peaks, ratings and a visit after every cycle.
- * Invented.
+ * temperatures through cold and warm, refusal of charge, ageing within days, equalisers, rails, peaks, ratings and a visit
+ * after every cycle. Invented.
  *
  * @param rolls as of a random bank
  * @param more even numbers from 0 to 1
@@ -36,7 +36,7 @@ export function bankWithEverything(rolls: readonly number[], more: readonly numb
       return [at, { ...at, durationS: between(5, 60), loadW: 3 * at.loadW, endsWhenCharged: false }];
     });
   const { absorptionV } = bank.candidate.charger;
-  return {
+  const withEverything: ReferenceBank = {
     ...bank,
     modules,
     cycles: [...bank.cycles, ...bank.cycles.slice(0, 1)].map(segments),
@@ -58,5 +58,19 @@ export function bankWithEverything(rolls: readonly number[], more: readonly numb
       },
       upkeep: { everyCycles: 1 },
     },
+  };
+  return {
+    ...withEverything,
+    modules: modules.map((string) =>
+      string.map((module) => ({
+        ...module,
+        ageing: {
+          law: between(0, 1) < 0.5 ? 'wang-2011' : 'naumann',
+          initialFadeFraction: between(0, 0.02),
+          resistanceGrowth: between(0, 5),
+          rate: between(5, 50),
+        },
+      })),
+    ),
   };
 }

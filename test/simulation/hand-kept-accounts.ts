@@ -43,8 +43,8 @@ function integralOf(curve: (x: number) => number, from: number, to: number): num
 
 /**
  * Charge and energy of one bank with rails and equalisers over its course, kept from its modules as they are written down,
- * laws of temperature, devices and conductors written out here, and the currents that the engine finds; beside the
- * engine's own account.
+ * laws of temperature, fade, devices and conductors written out here, and the currents and the capacity left that the
+ * engine finds; beside the engine's own account.
  */
 export function accountsOf(bank: ReferenceBank) {
   const { candidate } = bank;
@@ -64,18 +64,25 @@ export function accountsOf(bank: ReferenceBank) {
     cellsJ: 0,
     pathsJ: 0,
     wiringJ: 0,
-
     devicesJ: 0,
     slackJ: 0,
     strayAs: 0,
     throughputAs: 0,
   };
-  const charge = { gainedAs: floats(), currentAs: floats(), passedAs: floats(), slackAs: floats() };
+  const charge = {
+    gainedAs: floats(),
+    currentAs: floats(),
+    passedAs: floats(),
+    slackAs: floats(),
+    visitedAs: floats(),
+    fadedAs: floats(),
+  };
   const curve = ocvCurve(bank.ocvTables[0]);
   const seen = new Set<string>();
   let leapt = false;
   let visited = false;
   let ambientK = Number.NaN;
+  const left = floats().fill(1);
   let from: Float64Array | null = null;
   const kelvinOf = (m: number): number => ambientK + slots[m] + (modules[m].temperatureOffsetK ?? 0);
 
@@ -86,9 +93,20 @@ export function accountsOf(bank: ReferenceBank) {
     cellOf.forEach(({ m, ampereHours }, c) => {
       const floor = floorAt(kelvinOf(m));
       const reach = (z: number): number => (z - floor) / (1 - floor);
-      charge.gainedAs[c] += 3600 * ampereHours * (now[c] - before[c]);
-      sums.storedJ += 3600 * ampereHours * (1 - floor) * integralOf(curve, reach(before[c]), reach(now[c]));
+      const capacityAs = 3600 * ampereHours * left[c];
+      charge.gainedAs[c] += capacityAs * (now[c] - before[c]);
+      sums.storedJ += capacityAs * (1 - floor) * integralOf(curve, reach(before[c]), reach(now[c]));
     });
+  };
+
+  /** Cells have aged since the latest step: at their charge fractions, what they lost of their capacity has gone. */
+  const takeFade = ({ kernel, ageing }: Journey): void => {
+    if (ageing === null) throw new RangeError('nothing ages');
+    takeStock(kernel.state.charge);
+    cellOf.forEach(({ ampereHours }, c) => {
+      charge.fadedAs[c] += 3600 * ampereHours * (left[c] - ageing.left[c]) * kernel.state.charge[c];
+    });
+    left.set(ageing.left);
   };
 
   const onStep = (moving: Journey, stepS: number): void => {
@@ -97,6 +115,10 @@ export function accountsOf(bank: ReferenceBank) {
     const around = moving.climate?.ambientK ?? WARM_K;
     if (visited || around !== ambientK) {
       if (!visited) takeStock(state.charge);
+      else
+        cellOf.forEach(({ ampereHours }, c) => {
+          charge.visitedAs[c] += 3600 * ampereHours * left[c] * (state.charge[c] - (from?.[c] ?? Number.NaN));
+        });
       from = Float64Array.from(state.charge);
       visited = false;
       ambientK = around;
@@ -104,8 +126,9 @@ export function accountsOf(bank: ReferenceBank) {
     leapt ||= moving.chatter.module >= 0;
     const speed = (joulesPerMol: number, m: number): number =>
       Math.exp((-joulesPerMol / GAS) * (1 / kelvinOf(m) - 1 / WARM_K));
-    const cells = cellOf.map(({ m, module, k }) => {
-      const resists = speed(-(module.activation?.resistanceJPerMol ?? 0), m);
+    const cells = cellOf.map(({ m, module, k }, c) => {
+      const grown = 1 + (module.ageing?.resistanceGrowth ?? 0) * (1 - left[c]);
+      const resists = grown * speed(-(module.activation?.resistanceJPerMol ?? 0), m);
       return {
         m,
         efficiency: module.efficiency[k],
@@ -195,15 +218,25 @@ export function accountsOf(bank: ReferenceBank) {
     onEvent: ({ kind }) => {
       seen.add(kind);
       if (kind !== 'upkeep-visit') return;
-      takeStock(journey.kernel.state.charge);
+      takeFade(journey);
+      from = Float64Array.from(journey.kernel.state.charge);
       visited = true;
     },
   });
+  const heldAs = ({ bank: now, state }: Journey['kernel']): Float64Array =>
+    state.charge.map((z, c) => z * now.capacityAs[c]);
+  const startAs = heldAs(journey.kernel);
   runCourse(journey, recorder, dutyCourse(study.duty, study.cycles), bank, undefined, visits);
-  takeStock(journey.kernel.state.charge);
+  takeFade(journey);
   return {
     sums,
-    charge,
+    charge: {
+      ...charge,
+      startAs,
+      endAs: heldAs(journey.kernel),
+      saidToHaveFadedAs: journey.ageing?.fadedAs ?? floats(),
+    },
+    left,
     capacityAs: cellOf.map(({ ampereHours }) => 3600 * ampereHours),
     seen,
     leapt,

@@ -10,7 +10,7 @@ describe('the balances of banks with every option at once', () => {
     const everything = new Set<string>();
     fc.assert(
       fc.property(dice, dice, (rolls, more) => {
-        const { sums, charge, capacityAs, seen, leapt, account } = accountsOf(bankWithEverything(rolls, more));
+        const { sums, charge, left, capacityAs, seen, leapt, account } = accountsOf(bankWithEverything(rolls, more));
         if (leapt) return;
         counted++;
         for (const one of seen) everything.add(one);
@@ -20,6 +20,10 @@ describe('the balances of banks with every option at once', () => {
           expect(Math.abs(charge.gainedAs[c] - charge.passedAs[c])).toBeLessThan(slackAs + 1e-9 * capacity);
           // Currents inside a step are interpolated: see the balances of random banks.
           expect(Math.abs(charge.gainedAs[c] - charge.currentAs[c])).toBeLessThan(slackAs + 2e-4 * capacity);
+          // From the start of the course to its end, with what went with capacity.
+          const booked = charge.passedAs[c] + charge.visitedAs[c] - charge.fadedAs[c];
+          expect(Math.abs(charge.endAs[c] - charge.startAs[c] - booked)).toBeLessThan(slackAs + 1e-9 * capacity);
+          expect(Math.abs(charge.saidToHaveFadedAs[c] - charge.fadedAs[c])).toBeLessThan(1e-9 * capacity);
         });
         const lostJ = sums.cellsJ + sums.pathsJ + sums.wiringJ + sums.devicesJ;
         const missingJ = Math.abs(sums.busJ - sums.storedJ - lostJ) - sums.slackJ;
@@ -33,6 +37,9 @@ describe('the balances of banks with every option at once', () => {
         // Two points of Gauss's rule in a step against three.
         expect(Math.abs(3600 * account.equaliserWh - sums.devicesJ)).toBeLessThan(1e-3 * sums.devicesJ + 5);
         expect(account.visits).toBe(2);
+        // All age, some by a tenth.
+        expect(Math.max(...left)).toBeLessThan(1);
+        expect(Math.min(...left)).toBeLessThan(0.99);
       }),
       { seed: 151, numRuns: 25, endOnFailure: true },
     );

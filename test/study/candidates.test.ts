@@ -116,10 +116,6 @@ describe('warnings', () => {
     return result.kind === 'read' ? result.warnings : ['refused'];
   };
 
-  it('always say which bleed rule is in force', () => {
-    expect(warningsOf(studyWith({}))).toContain('bleed rule in force: above-lowest, always (stock house)');
-  });
-
   it('tell of a release at or below float plus 20 mV', () => {
     // 27.2 V over 8 cells is 3.400 V; a release of 3.42 V lies at 20 mV above it, one of 3.43 V beyond.
     const at = (release: number) =>

@@ -126,6 +126,18 @@ describe('the simulation key', () => {
   });
 });
 
+describe('the simulation key of modules whose temperature was measured', () => {
+  it('changes with activation energies', () => {
+    const keyWith = (more: string) =>
+      keyOf(
+        studyOf(studyWithStock([RATED, 'measured: {file: m.csv}', more]), {
+          'm.csv': 'module,temperature_offset_K\nA1,1\nA2,2\nA3,3\nA4,4\n',
+        }),
+      );
+    expect(keyWith('resistance_activation_kJ_per_mol: 30')).not.toBe(keyWith('resistance_activation_kJ_per_mol: 20'));
+  });
+});
+
 describe('the temperature of modules', () => {
   it('spreads by module with a draw of its own: nothing else that is drawn moves', () => {
     const spread = studyWithStock([RATED, 'temperature_offset_K: {module_sd: 2}']);

@@ -148,3 +148,36 @@ describe('the note on long strings', () => {
     expect(at(8)).not.toMatch(/cells in series/);
   });
 });
+
+describe('the warning of a measured column without effect', () => {
+  const at = (keys: readonly string[], column: string) =>
+    warningsOf(studyWithStock(['rated_Ah: 100', ...keys, 'measured: {file: m.csv}']), {
+      'm.csv': `module,${column}\nA1,1\nA2,1.1\nA3,1.2\nA4,0.9\n`,
+    });
+
+  it.each([
+    ['ageing.rate', 'ageing: {law: naumann}', 'its cells do not age; give the stock a law of ageing'],
+    [
+      'bms.charge_refusal.below_degC',
+      'bms: {charge_refusal: {below_degC: 0}}',
+      'its BMS never refuses charge; set bms.charge_refusal.below_degC',
+    ],
+  ])('comes with %s, and not once the stock has %s', (column, remedy, words) => {
+    expect(at([], column)).toContain(
+      `stock house: the measured column ${column} has no effect, since ${words}, or leave the column out`,
+    );
+    expect(at([remedy], column)).not.toMatch(/no effect/);
+  });
+
+  it('comes with bleed where nothing bleeds, in no candidate either', () => {
+    const none = ['bms: {bleed: {rule: none}}'];
+    expect(at(none, 'bms.bleed.current_mA')).toMatch(/since its cells do not bleed; set bms\.bleed\.rule/);
+    expect(at([], 'bms.bleed.current_mA')).not.toMatch(/no effect/);
+    const text = studyWithStock(['rated_Ah: 100', ...none, 'measured: {file: m.csv}']);
+    const bled = text.replace(MODULES, `${MODULES}, bleed: {rule: each}`);
+    expect(bled).not.toBe(text);
+    expect(warningsOf(bled, { 'm.csv': 'module,bms.bleed.current_mA\nA1,1\nA2,1\nA3,1\nA4,1\n' })).not.toMatch(
+      /no effect/,
+    );
+  });
+});
