@@ -101,11 +101,13 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .addOption(new Option('--to-cycle <cycle>', 'last cycle').argParser(wholeNumber(1, 36_500)))
     .addOption(new Option('--every <seconds>', 'one row every so many seconds').argParser(positiveNumber))
     .option('--out <folder>', 'folder for drawn.csv, modules.csv, bus.csv and events.csv')
+    .option('--netlist <file>', 'write the window as a SPICE deck too, from where the bank stands at its start')
+    .option('--like-for-like', 'leave out of the trace, from the start of the window on, what the deck leaves out')
     .addHelpText('after', '\nExample: motleybank trace results/demo --candidate strings --instance 66')
     .action(async (source: string, options: TraceFlags) => {
       const { traceCommand } = await import('./trace.js');
       const { every: everyS, ...rest } = options;
-      status = await traceCommand({ source, everyS, ...rest }, shellFor());
+      status = await traceCommand({ source, everyS, version, ...rest }, shellFor());
     });
 
   program
@@ -149,6 +151,8 @@ interface TraceFlags {
   readonly toCycle?: number;
   readonly every?: number;
   readonly out?: string;
+  readonly netlist?: string;
+  readonly likeForLike?: boolean;
 }
 
 function wholeNumber(least: number, most: number): (text: string) => number {

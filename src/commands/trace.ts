@@ -3,9 +3,12 @@ import { writeDurably } from '../execution/durable-file.js';
 import { makeFolder } from '../execution/make-folder.js';
 import { RUN_FILE } from '../execution/run-folder.js';
 import { errorCode } from '../execution/system-error.js';
+import { renderSpiceDeck } from '../output/spice-deck.js';
 import { renderBusCsv, renderDrawnCsv, renderEventsCsv, renderModulesCsv } from '../output/trace-csv.js';
-import { type Trace, traceInstance } from '../simulation/trace-instance.js';
+import { type Trace, type TraceWindow, traceInstance } from '../simulation/trace-instance.js';
+import { ENGINE } from '../study/engine.js';
 import { didYouMean } from '../study/nearest-name.js';
+import { simulationKey } from '../study/simulation-key.js';
 import type { Study } from '../study/study.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import { loadStudy } from './load-study.js';
@@ -22,6 +25,12 @@ export interface TraceOptions {
   readonly toCycle?: number | undefined;
   readonly everyS?: number | undefined;
   readonly out?: string | undefined;
+  /** File for the window as a circuit. */
+  readonly netlist?: string | undefined;
+  /** Leaves out of the trace what the circuit leaves out. */
+  readonly likeForLike?: boolean | undefined;
+  /** Of the program, for the head of the circuit. */
+  readonly version: string;
 }
 
 const DEFAULT_EVERY_S = 60;
@@ -40,11 +49,13 @@ export async function traceCommand(options: TraceOptions, shell: Shell): Promise
     shell.err(`${problem}\n`);
     return EXIT_STATUS.input;
   }
-  const { candidate, instance } = options;
-  const trace = traceInstance(study, { candidate, instance, fromCycle, toCycle, everyS });
+  const { candidate, instance, likeForLike } = options;
+  const window: TraceWindow = { candidate, instance, fromCycle, toCycle, everyS, likeForLike };
+  const trace = traceInstance(study, window);
   const folder = options.out ?? defaultFolder(options);
   try {
     await writeTrace(folder, trace);
+    if (options.netlist !== undefined) await writeDurably(options.netlist, deckOf(study, options, window, trace));
   } catch (error) {
     if (errorCode(error) === undefined) throw error;
     shell.err(`${folder} cannot be written: ${error instanceof Error ? error.message : String(error)}\n`);
@@ -98,6 +109,22 @@ async function writeTrace(folder: string, { bank, factors, samples, events }: Tr
   await writeDurably(join(folder, 'modules.csv'), await renderModulesCsv(samples));
   await writeDurably(join(folder, 'bus.csv'), await renderBusCsv(samples));
   await writeDurably(join(folder, 'events.csv'), await renderEventsCsv(bank, events));
+}
+
+function deckOf(study: Study, options: TraceOptions, window: TraceWindow, { circuit }: Trace): string {
+  const candidate = study.candidates.find(({ key }) => key === window.candidate);
+  if (candidate === undefined) throw new RangeError(`study must have a candidate ${window.candidate}`);
+  return renderSpiceDeck(circuit, {
+    ...window,
+    source: options.source,
+    title: study.title,
+    seed: study.seed,
+    likeForLike: options.likeForLike === true,
+    version: options.version,
+    engine: ENGINE,
+    node: process.versions.node,
+    simulationKey: simulationKey(study, candidate),
+  });
 }
 
 /** How often each kind of event came, in a few lines. */

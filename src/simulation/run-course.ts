@@ -8,7 +8,7 @@ import { runSegment, startCycle } from './run-cycle.js';
 import { type VisitPlan, visitIfDue } from './upkeep.js';
 
 /**
- * Takes a bank through its whole course and records every cycle.
+ * Takes a bank through a course, or through a part of one, and records every cycle.
  *
  * @param visits who comes to rebalance between cycles, null for nobody; after the last cycle nobody comes any more
  * @throws Error if a charge is no longer finite
@@ -21,13 +21,13 @@ export function runCourse(
   onCycle: (cycle: number) => void = () => undefined,
   visits: VisitPlan | null = null,
 ): void {
-  for (const cycle of course) {
+  for (const [index, cycle] of course.entries()) {
     beginCycle(recorder);
     onCycle(recorder.cycle);
     startCycle(journey);
     const lastLoad = lastLoadSegment(cycle);
-    cycle.segments.forEach((segment, index) => {
-      recorder.loadAhead = index <= lastLoad;
+    cycle.segments.forEach((segment, place) => {
+      recorder.loadAhead = place <= lastLoad;
       runSegment(journey, segment, factors);
     });
     endCycle(recorder, journey);
@@ -35,6 +35,6 @@ export function runCourse(
       throw new Error(`charge is not finite after cycle ${recorder.cycle}`);
     }
     if (journey.ageing !== null) ageAfterCycle(journey, journey.ageing);
-    if (visits !== null && recorder.cycle < course.length) visitIfDue(visits, journey, recorder.cycle);
+    if (visits !== null && index + 1 < course.length) visitIfDue(visits, journey, recorder.cycle);
   }
 }

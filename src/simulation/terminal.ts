@@ -26,8 +26,8 @@ const NEVER = -1;
 
 /** Charger and load of a bank: settings, and where their own control stands. */
 export interface Terminal {
-  readonly charger: ChargerSettings;
-  readonly load: LoadSettings;
+  charger: ChargerSettings;
+  load: LoadSettings;
   /** Demand and charging power of the present segment, factors of the bank included. */
   demandW: number;
   demandA: number;

@@ -30,7 +30,14 @@ async function trace(
 ): Promise<{ status: number; out: string; err: string; folder: string }> {
   const shell = memoryShell(FILES);
   const folder = mkdtempSync(join(tmpdir(), 'motleybank-trace-'));
-  const options: TraceOptions = { source: 'pair.yaml', candidate: 'pair', instance: 2, out: folder, ...more };
+  const options: TraceOptions = {
+    source: 'pair.yaml',
+    candidate: 'pair',
+    instance: 2,
+    out: folder,
+    version: '1.2.3',
+    ...more,
+  };
   const status = await traceCommand(options, shell);
   return { status, out: shell.printed.out, err: shell.printed.err, folder };
 }

@@ -18,7 +18,7 @@ async function traceOutsideBank(name: string): Promise<ReadTrace> {
   const folder = await mkdtemp(join(tmpdir(), 'motleybank-oracle-'));
   const shell = memoryShell({ 'outside.yaml': oracleStudyText(parameters) });
   const status = await traceCommand(
-    { source: 'outside.yaml', candidate: 'bank', instance: 1, everyS: 60, out: folder },
+    { source: 'outside.yaml', candidate: 'bank', instance: 1, everyS: 60, out: folder, version: '' },
     shell,
   );
   expect(shell.printed.err).toContain('written to');
