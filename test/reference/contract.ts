@@ -132,6 +132,26 @@ export function compareWaveforms(
   return { ...worst, comparedSamples, faults };
 }
 
+/** A waveform without its first samples. */
+export function laterSamples(waveform: Waveform, first: number): Waveform {
+  const { timeS, busV, modules } = waveform;
+  return {
+    timeS: timeS.slice(first),
+    busV: busV.slice(first),
+    modules: modules.map((module) => ({
+      ...module,
+      currentA: module.currentA.slice(first),
+      terminalV: module.terminalV.slice(first),
+      lowestCharge: module.lowestCharge.slice(first),
+      highestCharge: module.highestCharge.slice(first),
+      lowestCellV: module.lowestCellV.slice(first),
+      highestCellV: module.highestCellV.slice(first),
+      chargeOpen: module.chargeOpen.slice(first),
+      dischargeOpen: module.dischargeOpen.slice(first),
+    })),
+  };
+}
+
 /** A string is blocked when it can carry no current out and none flows in. */
 function everyStringBlocked(waveform: Waveform, i: number): boolean {
   const strings = new Set(waveform.modules.map((module) => module.string));

@@ -15,7 +15,7 @@ type Answer =
   | { readonly columns: readonly { readonly name: string; readonly values: Float64Array }[]; readonly cpuS: number };
 
 const CHILD = fileURLToPath(new URL('simulate-deck.mjs', import.meta.url));
-const DEFAULT_LIMIT_S = 300;
+const DEFAULT_LIMIT_S = 3600;
 
 /**
  * Runs a deck with a transient analysis in a process of its own.
