@@ -19,6 +19,10 @@ describe('the errors that npm run mutants puts in', () => {
     for (const test of tests) expect(repositoryText(test), test).toContain('describe(');
   });
 
+  it('are counted in the pages of the model', () => {
+    expect(repositoryText('src/bank/README.md')).toContain(`puts ${mutants.length} sign, factor and order errors`);
+  });
+
   it('have names of their own', () => {
     expect(new Set(mutants.map(({ name }) => name)).size).toBe(mutants.length);
   });

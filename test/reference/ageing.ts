@@ -3,7 +3,7 @@ import type { Cell, Packs } from './packs.js';
 import { STATED_K } from './present-packs.js';
 
 /** Sums of one cell over a cycle, kept as states: throughput As, charged As and s, charge fraction s. */
-export const USE_OF_CELL = 4;
+const USE_OF_CELL = 4;
 /** Current that counts as charging, fraction of the capacity when new per hour. */
 const CHARGING_PER_H = 0.01;
 const GAS_J_PER_MOL_K = 8.314;

@@ -18,7 +18,7 @@ export type SimulateAlone = (bank: ReferenceBank, startHysteresis: readonly numb
  * Modules of one string alone on a bench at 25 degC, to the end of charge or for two days: C/5 of the smallest rated
  * capacity, their share of the absorption voltage, a tail of C/50, half a milliohm of lead at either end.
  */
-export function chargeAlone(
+function chargeAlone(
   bank: ReferenceBank,
   modules: readonly ModuleParameters[],
   absorptionV: number,
