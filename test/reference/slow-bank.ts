@@ -55,6 +55,7 @@ export function simulateSlowBank(bank: ReferenceBank, options: SlowOptions): Slo
   };
   const evaluation = new Evaluation(bank, base, packSwitches, bankSwitches, options.nodeLeakS ?? 1e-6);
   const ageing = new SlowAgeing(base, base.stateLength + DERIVED_TAIL);
+  const ages = ageing.states > 0;
   const simulateAlone: SimulateAlone = (alone, startHysteresis) =>
     simulateSlowBank(alone, { ...options, sampleTimesS: [], startHysteresis });
   const visits = new SlowVisits(bank, simulateAlone);
@@ -101,7 +102,7 @@ export function simulateSlowBank(bank: ReferenceBank, options: SlowOptions): Slo
     if (settle(watches, since, timeS, () => evaluation.evaluate(states, segment), segmentOver)) switchedS = timeS;
   };
   const rates = (x: Float64Array, out: Float64Array) =>
-    derivativesInto(evaluation, segment, x, out, ageing.states > 0 ? ageing : null);
+    derivativesInto(evaluation, segment, x, out, ages ? ageing : null);
   const stepper = rungeKuttaStep(states.length, rates);
   const trial = new Float64Array(states.length);
 
@@ -156,7 +157,7 @@ export function simulateSlowBank(bank: ReferenceBank, options: SlowOptions): Slo
   /** Ages the cells by the cycle that has ended, then lets somebody come if it is time. */
   const endCycle = (): void => {
     const ambientK = segment.ambientK ?? STATED_K;
-    if (ageing.states > 0) {
+    if (ages) {
       ageing.afterCycle(states);
       takeLayout(ambientK);
     }
@@ -187,7 +188,7 @@ export function simulateSlowBank(bank: ReferenceBank, options: SlowOptions): Slo
       timeS = after === endS - timeS ? endS : timeS + after;
     } else timeS = endS;
     states.set(trial);
-    ageing.afterStep(states, timeS - startS, segment.ambientK ?? STATED_K);
+    if (ages) ageing.afterStep(states, timeS - startS, segment.ambientK ?? STATED_K);
   };
 
   for (const segments of bank.cycles) {
