@@ -11,7 +11,31 @@ const ABSORBING = 0.995;
 
 /** The rules of charger and load as watches; `segment` gives the present one. */
 export function bankWatches(evaluation: Evaluation, segment: () => DutySegment, report: BankReport): Watch[] {
-  return [...chargerWatches(evaluation, segment, report), ...loadWatches(evaluation, segment, report)];
+  return [
+    ...chargerWatches(evaluation, segment, report),
+    ...loadWatches(evaluation, segment, report),
+    ...equaliserWatches(evaluation),
+  ];
+}
+
+/** Equalisers stop this far below the voltage from which they work, V per cell in series. */
+const STOP_BELOW_V = 0.025;
+
+function equaliserWatches({ bank, bankSwitches }: Evaluation): Watch[] {
+  const enableV = bank.candidate.equaliser?.enableV ?? null;
+  if (enableV === null) return [];
+  const cells = bank.modules[0].reduce((sum, module) => sum + module.capacityAh.length, 0);
+  const set = (equalising: boolean) => (): void => {
+    bankSwitches.equalising = equalising;
+  };
+  return [
+    { delayS: 0, holds: ({ busV }) => !bankSwitches.equalising && busV >= enableV, fire: set(true) },
+    {
+      delayS: 0,
+      holds: ({ busV }) => bankSwitches.equalising && busV <= enableV - STOP_BELOW_V * cells,
+      fire: set(false),
+    },
+  ];
 }
 
 function chargerWatches(evaluation: Evaluation, segment: () => DutySegment, report: BankReport): Watch[] {
@@ -52,6 +76,11 @@ function loadWatches(evaluation: Evaluation, segment: () => DutySegment, report:
     return demand.powerW + demand.currentA > 0;
   };
   const lost = (view: View): boolean => demanded() && view.status !== 'served';
+  /** A load that has been disconnected is not back until it is connected again. */
+  const back = (view: View): boolean => {
+    const { loadW, loadA } = segment();
+    return loadW + loadA === 0 || (switches.loadConnected && view.status === 'served');
+  };
   const watches: Watch[] = [
     {
       delayS: 0,
@@ -69,7 +98,7 @@ function loadWatches(evaluation: Evaluation, segment: () => DutySegment, report:
     },
     {
       delayS: 0,
-      holds: (view) => lost(view) !== switches.loadLost,
+      holds: (view) => (switches.loadLost ? back(view) : lost(view)),
       fire: (timeS) => {
         switches.loadLost = !switches.loadLost;
         report(timeS, switches.loadLost ? 'load-lost' : 'load-back');
@@ -88,7 +117,8 @@ function loadWatches(evaluation: Evaluation, segment: () => DutySegment, report:
       },
       {
         delayS: disconnectDelayS,
-        holds: (view) => !switches.loadConnected && view.busV >= reconnectV,
+        // A bus that nothing feeds floats at any voltage.
+        holds: (view) => !switches.loadConnected && view.fed && view.busV >= reconnectV,
         fire: (timeS) => {
           switches.loadConnected = true;
           report(timeS, 'load-reconnect');

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { referenceBanks } from './banks.js';
 import { chargeDifference, compareEvents } from './contract.js';
+import { optionBanks } from './option-banks.js';
 import { simulateSlowBank, TRUSTED_STEPS } from './slow-bank.js';
 import type { EventKind } from './slow-event.js';
 
@@ -8,6 +9,7 @@ import type { EventKind } from './slow-event.js';
 const COARSER = { stepS: 60, fineStepS: 10 };
 
 const runs = new Map(referenceBanks().map((bank) => [bank.name, simulateSlowBank(bank, TRUSTED_STEPS)]));
+const optionRuns = new Map(optionBanks().map((bank) => [bank.name, simulateSlowBank(bank, TRUSTED_STEPS)]));
 const kindsOf = (name: string): Set<EventKind> => new Set(runs.get(name)?.events.map((event) => event.kind));
 
 describe('the reference banks', () => {
@@ -72,4 +74,24 @@ describe('the reference banks', () => {
       expect(events.faults).toEqual([]);
     },
   );
+});
+
+describe('the banks with options', () => {
+  const happens = (name: string): readonly EventKind[] => optionRuns.get(name)?.events.map(({ kind }) => kind) ?? [];
+  const count = (name: string, kind: EventKind): number => happens(name).filter((each) => each === kind).length;
+
+  it('have names and modules of their own', () => {
+    expect(optionRuns.size).toBe(optionBanks().length);
+    for (const { modules, candidate } of optionBanks()) {
+      expect(new Set(candidate.strings.flat()).size).toBe(modules.flat().length);
+    }
+  });
+
+  it('do what they are there for', () => {
+    // Every BMS is refused and allowed twice; commissioned, both cycles begin alike and end locked.
+    expect([count('winter', 'cold-charge-refusal'), count('winter', 'cold-charge-release')]).toEqual([8, 8]);
+    expect(count('visited', 'over-current-lock')).toBe(8);
+    expect(count('peaks', 'load-disconnect')).toBe(3);
+    for (const name of ['equalised', 'rails-diagonal', 'custom']) expect(happens(name)).toContain('over-voltage-trip');
+  });
 });

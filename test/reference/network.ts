@@ -1,8 +1,10 @@
 /** What a branch lets through: both ways, one way only, or nothing but the leak. */
 export type Conduction = 'both' | 'charge-only' | 'discharge-only' | 'none';
 
-/** A module with the leads in series with it, as the network sees it at one instant. */
+/** A module with the leads in series with it, as the network sees it at one instant; it runs from minus to plus. */
 export interface Branch {
+  readonly from: number;
+  readonly to: number;
   /** EMF including a forward drop, V. */
   emfV: number;
   resistanceOhm: number;
@@ -11,12 +13,20 @@ export interface Branch {
 }
 
 export interface NetworkShape {
-  readonly strings: number;
+  /** Bus minus is node 0, bus plus node 1. */
+  readonly nodes: number;
+  /** Modules in series between them. */
   readonly positions: number;
-  /** Between neighbouring strings at equal positions below the top; null = not tied. */
-  readonly linkOhm: number | null;
+  /** Resistors that tie nodes: links, rails. */
+  readonly ties: readonly Tie[];
   /** From every node and from the bus to bus minus. */
   readonly nodeLeakS: number;
+}
+
+export interface Tie {
+  readonly from: number;
+  readonly to: number;
+  readonly ohm: number;
 }
 
 /** Currents as affine functions of the bus voltage while the same branches conduct: I = at0 + slope V. */
@@ -36,63 +46,55 @@ const SLACK = 1e-9;
 /**
  * Solves the network for one pattern of conducting branches by nodal analysis.
  *
- * Nodes are the positive posts below the top of every string; bus minus is 0 V and the bus is given. Branch k, string
- * by string from the negative end, carries I_k = g_k (V_above - V_below - E_k), positive into its positive post;
- * a branch that does not conduct leaks 1 uS instead. Every node and the bus leak `nodeLeakS` to bus minus.
+ * Bus minus is 0 V and the bus is given. Branch k carries I_k = g_k (V_to - V_from - E_k), positive into its positive
+ * post; a branch that does not conduct leaks 1 uS instead. Every node and the bus leak `nodeLeakS` to bus minus.
  */
 function pieceOf(shape: NetworkShape, branches: readonly Branch[], conducting: readonly boolean[]): Piece {
-  const { strings, positions, linkOhm, nodeLeakS } = shape;
-  const perString = positions - 1;
-  const size = strings * perString;
+  const { nodes, ties, nodeLeakS } = shape;
+  const size = nodes - 2;
   // Row: matrix, then the right-hand side at bus voltage 0, then its slope with the bus voltage.
   const rows = Array.from({ length: size }, () => new Array<number>(size + 2).fill(0));
   const conductanceS = branches.map((b, k) => 1 / (b.leadOhm + (conducting[k] ? b.resistanceOhm : 1 / LEAK_S)));
 
-  branches.forEach((branch, k) => {
-    const g = conductanceS[k];
-    const position = k % positions;
-    const above = Math.floor(k / positions) * perString + position;
-    if (position < perString) {
-      rows[above][above] += g + nodeLeakS;
-      rows[above][size] += g * branch.emfV;
-      if (position > 0) rows[above][above - 1] -= g;
-    }
-    if (position > 0) {
-      const below = above - 1;
-      rows[below][below] += g;
-      rows[below][size] -= g * branch.emfV;
-      if (position < perString) rows[below][above] -= g;
-      else rows[below][size + 1] += g;
-    }
+  /** The current that leaves `node` towards `other` is g (V_node - V_other) - sourceA. */
+  const stamp = (node: number, other: number, g: number, sourceA: number): void => {
+    if (node < 2) return;
+    const row = rows[node - 2];
+    row[node - 2] += g;
+    row[size] += sourceA;
+    if (other === 1) row[size + 1] += g;
+    else if (other > 1) row[other - 2] -= g;
+  };
+  branches.forEach(({ from, to, emfV }, k) => {
+    stamp(to, from, conductanceS[k], conductanceS[k] * emfV);
+    stamp(from, to, conductanceS[k], -conductanceS[k] * emfV);
   });
-  if (linkOhm !== null) {
-    for (let node = 0; node + perString < size; node++) {
-      const neighbour = node + perString;
-      rows[node][node] += 1 / linkOhm;
-      rows[neighbour][neighbour] += 1 / linkOhm;
-      rows[node][neighbour] -= 1 / linkOhm;
-      rows[neighbour][node] -= 1 / linkOhm;
-    }
+  for (const { from, to, ohm } of ties) {
+    stamp(from, to, 1 / ohm, 0);
+    stamp(to, from, 1 / ohm, 0);
   }
+  for (let n = 0; n < size; n++) rows[n][n] += nodeLeakS;
   eliminate(rows);
 
-  const branchAt0A: number[] = [];
-  const branchSlopeS: number[] = [];
+  const at0V = (node: number): number => (node < 2 ? 0 : rows[node - 2][size]);
+  const slopeOf = (node: number): number => (node < 2 ? node : rows[node - 2][size + 1]);
   let bankAt0A = 0;
   let bankSlopeS = nodeLeakS;
+  const intoBank = ({ from, to }: { from: number; to: number }, at0A: number, slopeS: number): void => {
+    const sign = (to === 1 ? 1 : 0) - (from === 1 ? 1 : 0);
+    bankAt0A += sign * at0A;
+    bankSlopeS += sign * slopeS;
+  };
+  const branchAt0A: number[] = [];
+  const branchSlopeS: number[] = [];
   branches.forEach((branch, k) => {
-    const position = k % positions;
-    const above = Math.floor(k / positions) * perString + position;
-    const top = position === perString;
-    const at0 = (top ? 0 : rows[above][size]) - (position === 0 ? 0 : rows[above - 1][size]) - branch.emfV;
-    const slope = (top ? 1 : rows[above][size + 1]) - (position === 0 ? 0 : rows[above - 1][size + 1]);
-    branchAt0A.push(conductanceS[k] * at0);
-    branchSlopeS.push(conductanceS[k] * slope);
-    if (top) {
-      bankAt0A += branchAt0A[k];
-      bankSlopeS += branchSlopeS[k];
-    }
+    branchAt0A.push(conductanceS[k] * (at0V(branch.to) - at0V(branch.from) - branch.emfV));
+    branchSlopeS.push(conductanceS[k] * (slopeOf(branch.to) - slopeOf(branch.from)));
+    intoBank(branch, branchAt0A[k], branchSlopeS[k]);
   });
+  for (const tie of ties) {
+    intoBank(tie, (at0V(tie.to) - at0V(tie.from)) / tie.ohm, (slopeOf(tie.to) - slopeOf(tie.from)) / tie.ohm);
+  }
   return { conducting, branchAt0A, branchSlopeS, bankAt0A, bankSlopeS };
 }
 
@@ -134,20 +136,21 @@ function permittedSign(conduction: Conduction): number {
   return conduction === 'discharge-only' ? -1 : 0;
 }
 
-/** Gauss-Jordan elimination with partial pivoting, in place; the last two columns become the solutions. */
-function eliminate(rows: number[][]): void {
+/** Gauss-Jordan elimination with partial pivoting, in place; the columns beyond the square become the solutions. */
+export function eliminate(rows: number[][]): void {
   const size = rows.length;
+  const width = rows[0]?.length ?? 0;
   for (let column = 0; column < size; column++) {
     let pivot = column;
     for (let r = column + 1; r < size; r++) if (Math.abs(rows[r][column]) > Math.abs(rows[pivot][column])) pivot = r;
     [rows[column], rows[pivot]] = [rows[pivot], rows[column]];
     const pivotRow = rows[column];
     const scale = 1 / pivotRow[column];
-    for (let c = column; c < size + 2; c++) pivotRow[c] *= scale;
+    for (let c = column; c < width; c++) pivotRow[c] *= scale;
     for (let r = 0; r < size; r++) {
       const factor = rows[r][column];
       if (r === column || factor === 0) continue;
-      for (let c = column; c < size + 2; c++) rows[r][c] -= factor * pivotRow[c];
+      for (let c = column; c < width; c++) rows[r][c] -= factor * pivotRow[c];
     }
   }
 }

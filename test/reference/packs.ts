@@ -1,4 +1,5 @@
-import type { BmsSettings, ModuleParameters } from '../../src/study/study.js';
+import type { ModuleAgeing } from '../../src/study/ageing-settings.js';
+import type { Activation, BmsSettings, ModuleParameters } from '../../src/study/study.js';
 import { type OcvCurve, ocvCurve } from './ocv-curve.js';
 import type { ReferenceBank } from './reference-bank.js';
 
@@ -14,6 +15,10 @@ export interface Cell {
   readonly hysteresisV: number;
   readonly hysteresisRate: number;
   readonly arrivalCharge: number;
+  readonly activation: Activation | null;
+  readonly ageing: ModuleAgeing | null;
+  /** Charge fraction that the cold keeps out of reach. */
+  readonly floor: number;
 }
 
 /** Cells under one BMS: a module, or for native wiring all cells of a string. */
@@ -24,13 +29,13 @@ export interface Pack {
   readonly cells: readonly Cell[];
   /** Ohmic resistance of all cells plus the path of the BMS. */
   readonly resistanceOhm: number;
-  /** Leads in the same branch of the network. */
-  readonly leadOhm: number;
   /** Whose thresholds and draws the BMS has. */
   readonly module: ModuleParameters;
   readonly bms: BmsSettings;
   readonly bleedA: number;
   readonly bleedStartV: number;
+  /** By how much it is warmer than ambient, K. */
+  readonly offsetK: number;
 }
 
 export interface Packs {
@@ -41,13 +46,12 @@ export interface Packs {
   readonly stateLength: number;
 }
 
-/** Lays out the packs of a bank, string by string from the negative end. */
+/** Lays out the packs of a bank as they are when new and at 25 degC, string by string from the negative end. */
 export function packsOf(bank: ReferenceBank): Packs {
   const curves = bank.ocvTables.map(ocvCurve);
   const native = bank.candidate.wiring === 'native';
   let at = 0;
   const packs = bank.modules.flatMap((modules, s) => {
-    const leads = bank.candidate.leads[s];
     const groups = native ? [modules] : modules.map((module) => [module]);
     return groups.map((group, p): Pack => {
       const cells = group.flatMap((module) =>
@@ -64,11 +68,11 @@ export function packsOf(bank: ReferenceBank): Packs {
         position: p + 1,
         cells,
         resistanceOhm: cells.reduce((sum, cell) => sum + cell.resistanceOhm, module.pathResistanceOhm),
-        leadOhm: (p === 0 ? leads.negativeOhm : leads.betweenOhm) + (p === groups.length - 1 ? leads.positiveOhm : 0),
         module,
         bms: { ...module.bms, bleed: { ...module.bms.bleed, ...bleed } },
         bleedA: currentA ?? module.bleedA,
         bleedStartV: startV ?? module.bleedStartV,
+        offsetK: (bank.candidate.slotOffsetK?.[s]?.[p] ?? 0) + (module.temperatureOffsetK ?? 0),
       };
     });
   });
@@ -90,5 +94,8 @@ function cellOf(module: ModuleParameters, c: number, curve: OcvCurve, at: number
     hysteresisV: module.hysteresisV,
     hysteresisRate: module.hysteresisRate,
     arrivalCharge: module.arrivalCharge[c],
+    activation: module.activation ?? null,
+    ageing: module.ageing ?? null,
+    floor: 0,
   };
 }

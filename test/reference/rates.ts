@@ -1,11 +1,12 @@
 import type { DutySegment } from '../../src/study/study.js';
+import type { SlowAgeing } from './ageing.js';
 import type { Evaluation } from './evaluation.js';
 
 /** States beyond those of the cells: energy served, Wh, and not supplied, Wh and Ah. */
 export const DERIVED_TAIL = 3;
 
 /**
- * Time derivatives of all states of a bank.
+ * Time derivatives of all states of a bank; of the sums that `ageing` keeps too, where cells age.
  *
  *   I_c   = I_terminal - standby - bleed
  *   dz/dt = ((I_c > 0 ? eta I_c : I_c) - leakage) / (3600 Q)
@@ -17,7 +18,9 @@ export function derivativesInto(
   segment: DutySegment,
   states: Float64Array,
   out: Float64Array,
+  ageing: SlowAgeing | null,
 ): void {
+  let number = 0;
   const { layout, packSwitches, bank, bankSwitches } = evaluation;
   const view = evaluation.evaluate(states, segment);
   layout.packs.forEach((pack, k) => {
@@ -25,6 +28,7 @@ export function derivativesInto(
     pack.cells.forEach((cell, c) => {
       const i = currentA - standbyA - (packSwitches[k].bleeding[c] ? pack.bleedA : 0);
       out[cell.at] = ((i > 0 ? cell.efficiency * i : i) - cell.leakageA) / cell.capacityAs;
+      ageing?.ratesInto(number++, i, states[cell.at], out);
       const pull = (cell.hysteresisRate * Math.abs(i)) / cell.capacityAs;
       out[cell.at + 1] = pull * (Math.sign(i) - states[cell.at + 1]);
       for (let p = 0; p < cell.pairs.length; p++) {

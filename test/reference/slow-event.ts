@@ -14,7 +14,6 @@ export type EventKind =
   | 'load-back'
   | 'charge-ended'
   | 'charge-restart'
-  // The slow rewrite has one temperature: these are the engine's only.
   | 'cold-charge-refusal'
   | 'cold-charge-release';
 

@@ -26,8 +26,10 @@ export interface SlowModuleSample {
 export interface SlowRun {
   readonly samples: readonly SlowSample[];
   readonly events: readonly SlowEvent[];
-  /** Charge fraction of every cell at the end of every cycle: [cycle][cell], strings and positions in order. */
+  /** Charge fraction of every cell after every cycle, and the visit that may follow it: [cycle][cell], strings and positions in order. */
   readonly cycleEndCharge: readonly (readonly number[])[];
+  /** Hysteresis of every cell in the end. */
+  readonly endHysteresis: readonly number[];
   readonly cycleEndS: readonly number[];
   /** When each segment began: the starts of phases that event tolerances count from. */
   readonly segmentStartS: readonly number[];

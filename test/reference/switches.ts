@@ -10,6 +10,8 @@ export interface OverCurrentState {
 export interface PackSwitches {
   overVoltage: boolean;
   underVoltage: boolean;
+  /** Charging is refused. */
+  tooCold: boolean;
   readonly overCurrent: { readonly charge: OverCurrentState; readonly discharge: OverCurrentState };
   /** The forward drop of a one-way path has been switched away. */
   reclosed: boolean;
@@ -24,6 +26,8 @@ export interface BankSwitches {
   loadConnected: boolean;
   /** The load asked for more than the bank can give and has not come back yet. */
   overloaded: boolean;
+  /** The bank voltage has the equalisers work. */
+  equalising: boolean;
   /** A connected load goes without, for whatever reason. */
   loadLost: boolean;
 }
@@ -32,6 +36,7 @@ export function closedPack(cells: number): PackSwitches {
   return {
     overVoltage: false,
     underVoltage: false,
+    tooCold: false,
     overCurrent: {
       charge: { open: false, locked: false, tripsS: [] },
       discharge: { open: false, locked: false, tripsS: [] },
@@ -42,9 +47,19 @@ export function closedPack(cells: number): PackSwitches {
   };
 }
 
+/** What a person at the bank does to a BMS: everything is closed and forgotten, but cold it stays. */
+export function clearPack(pack: PackSwitches): void {
+  pack.overVoltage = pack.underVoltage = pack.reclosed = pack.asleep = false;
+  for (const guard of [pack.overCurrent.charge, pack.overCurrent.discharge]) {
+    guard.open = guard.locked = false;
+    guard.tripsS = [];
+  }
+  pack.bleeding.fill(false);
+}
+
 export function chargeOpen(pack: PackSwitches, opens: 'path' | 'both'): boolean {
   const { charge, discharge } = pack.overCurrent;
-  return pack.overVoltage || charge.open || (opens === 'both' && discharge.open);
+  return pack.overVoltage || pack.tooCold || charge.open || (opens === 'both' && discharge.open);
 }
 
 export function dischargeOpen(pack: PackSwitches, opens: 'path' | 'both'): boolean {

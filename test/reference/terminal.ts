@@ -78,7 +78,8 @@ export function restTerminal(shape: NetworkShape, branches: readonly Branch[]): 
   return { ...found, status: 'overload' };
 }
 
-function canDischarge(shape: NetworkShape, branches: readonly Branch[]): boolean {
+/** More than the leaks would flow into a short circuit. */
+export function canDischarge(shape: NetworkShape, branches: readonly Branch[]): boolean {
   return pieceAt(shape, branches, 0, blockedStart(branches)).bankAt0A < -NO_DISCHARGE_A;
 }
 

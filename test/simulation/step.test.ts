@@ -4,7 +4,7 @@ import { hysteresisAfter } from '../../src/simulation/chain-emf.js';
 import { updateCellConstants } from '../../src/simulation/kernel.js';
 import { runSegment } from '../../src/simulation/run-cycle.js';
 import { commitStep, filterAfter, shortenStep, tryStep } from '../../src/simulation/step.js';
-import type { ModuleParameters } from '../../src/study/study.js';
+import type { DutySegment, ModuleParameters } from '../../src/study/study.js';
 import { bankOf } from '../reference/bank-of.js';
 import { bareModule, noLeads, straightTable } from '../reference/bare-module.js';
 import { segmentOf } from '../reference/duties.js';
@@ -78,6 +78,7 @@ describe('the step', () => {
     z: readonly [number, number] = [0.95, 0.8],
     slopeV = 2,
     leakageA = 0,
+    load: Partial<DutySegment> = { loadA: 100 },
   ) {
     const module = (id: string, ohm: number, charge: number): ModuleParameters =>
       bareModule(id, {
@@ -93,7 +94,7 @@ describe('the step', () => {
       leads: noLeads(2),
     });
     const journey = journeyOf(bank);
-    runSegment(journey, segmentOf(0, { loadA: 100 }), bank);
+    runSegment(journey, segmentOf(0, load), bank);
     return journey;
   }
 
@@ -151,6 +152,22 @@ describe('the step', () => {
   it('keeps its order while a cell loses charge of itself', () => {
     const fine = chargeAfterSteps(2048, [], 20);
     const errors = [8, 16, 32].map((steps) => Math.abs(chargeAfterSteps(steps, [], 20) - fine));
+    for (let k = 1; k < errors.length; k++) expect(errors[k - 1] / errors[k]).toBeGreaterThan(6.5);
+  });
+
+  it('keeps its order under a constant power', () => {
+    // Half of what the pair can give at all, 6 kW: what the bus voltage gives way to the power counts.
+    const chargeAfter = (steps: number): number => {
+      const { kernel, work } = pairUnderLoad([], [0.95, 0.8], 2, 0, { loadW: 3000 });
+      for (let step = 0; step < steps; step++) {
+        tryStep(kernel, work, 800 / steps);
+        commitStep(kernel, work);
+        updateCellConstants(kernel);
+      }
+      return kernel.state.charge[0];
+    };
+    const fine = chargeAfter(1024);
+    const errors = [4, 8, 16].map((steps) => Math.abs(chargeAfter(steps) - fine));
     for (let k = 1; k < errors.length; k++) expect(errors[k - 1] / errors[k]).toBeGreaterThan(6.5);
   });
 

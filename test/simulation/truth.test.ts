@@ -2,6 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { referenceBanks } from '../reference/banks.js';
 import { chargeDifference, compareEvents, eventToleranceS } from '../reference/contract.js';
 import { referenceDuty, repeated } from '../reference/duties.js';
+import { optionBanks } from '../reference/option-banks.js';
 import type { ReferenceBank } from '../reference/reference-bank.js';
 import { simulateSlowBank, TRUSTED_STEPS } from '../reference/slow-bank.js';
 import { runEngine } from './engine-run.js';
@@ -13,8 +14,9 @@ const PROMISED = 2e-4;
  * current that creeps past its limit. All others keep the second and the 0.02 % that the contract gives events.
  */
 const AFTER_SLOW_CROSSING_S: Readonly<Record<string, number>> = { '2s4p-profile': 10, '1s2p-cascade': 10 };
+
 describe('the engine against the independent slow rewrite of the physics', () => {
-  it.each(referenceBanks().map((bank) => [bank.name, bank] as const))('%s', (name, bank) => {
+  it.each([...referenceBanks(), ...optionBanks()].map((bank) => [bank.name, bank] as const))('%s', (name, bank) => {
     const slow = simulateSlowBank(bank, { ...TRUSTED_STEPS, nodeLeakS: 0 });
     const fast = runEngine(bank);
     const charge = chargeDifference(fast.cycleEndCharge, slow.cycleEndCharge);
