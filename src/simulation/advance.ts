@@ -17,7 +17,7 @@ import { createWatch, turnOver, updateValues, type Watch } from './watch.js';
 
 const MOST_STEP_S = 3600;
 /** Factor by which a step may be longer than the one before. */
-const MOST_GROWTH = 8;
+const MOST_GROWTH = 5;
 /** Step tried first after a jump of current, and what counts as one. */
 const FIRST_STEP_S = 60;
 const JUMP_A = 2;

@@ -126,7 +126,7 @@ export function copyInto(from: Float64Array, into: Float64Array): void {
 }
 
 /** Adds one short array to another. */
-export function addTo(from: Float64Array, into: Float64Array): void {
+function addTo(from: Float64Array, into: Float64Array): void {
   for (let k = 0; k < from.length; k++) into[k] += from[k];
 }
 

@@ -1,3 +1,4 @@
+import type { BankEqualiser } from '../bank/equaliser.js';
 import { updateEmf } from './chain-emf.js';
 import { commitHysteresis } from './hysteresis-branch.js';
 import { copyInto, type Kernel, solveKept, updateExtremes } from './kernel.js';
@@ -13,6 +14,8 @@ export interface StepWork {
   readonly stage1: StageChange;
   readonly stage2: StageChange;
   readonly stage3: StageChange;
+  /** Embedded error of the charge of each chain in the latest attempt, As. */
+  readonly errorAs: Float64Array;
   /** Charge passed since the start of the step, As. */
   readonly passedAs: Float64Array;
   readonly filterA: Float64Array;
@@ -38,6 +41,8 @@ export const LEAST_STEP_S = 0.01;
 const CHARGE_TOLERANCE = 1e-4;
 /** The same per second of a step: bounds the error of the mean current of short steps, as in a taper, 1/s. */
 const RATE_TOLERANCE = 8e-7;
+/** Share of both that may be between modules in series with an equaliser at work. */
+const BETWEEN_MODULES = 0.1;
 /** Embedded error of a filtered current, as a fraction of the charge of the smallest cell per second (0.01 C), 1/s. */
 const FILTER_TOLERANCE = 2.8e-6;
 
@@ -52,6 +57,7 @@ export function createStepWork(kernel: Kernel): StepWork {
     stage1: stage(),
     stage2: stage(),
     stage3: stage(),
+    errorAs: new Float64Array(chains),
     passedAs: new Float64Array(chains),
     filterA: new Float64Array(filters),
     endAs: new Float64Array(chains),
@@ -127,6 +133,7 @@ export function tryStep(kernel: Kernel, work: StepWork, stepS: number): number {
   for (let i = 0; i < chains; i++) {
     endAs[i] = q1[i] + END_2 * q2[i] + END_3 * q3[i];
     const errorAs = ERROR_1 * q1[i] + ERROR_2 * q2[i] + ERROR_3 * q3[i];
+    work.errorAs[i] = errorAs;
     const perAs = 1 / bank.chainCapacityAs[i];
     let error = Math.abs(errorAs) * perAs * perCharge;
     if (!(error <= worst)) worst = error;
@@ -137,12 +144,32 @@ export function tryStep(kernel: Kernel, work: StepWork, stepS: number): number {
       if (!(error <= worst)) worst = error;
     }
   }
+  if (bank.equaliser !== null && state.equaliserOn[0] === 1) {
+    worst = Math.max(worst, errorBetween(work.errorAs, bank.equaliser, bank.chainCapacityAs) * perCharge);
+  }
   updateEmf(kernel, stepS, endAs, endFilterA);
   if (!solveKept(kernel)) return Number.POSITIVE_INFINITY;
   copyInto(point.currentA, lastA);
   work.endBankA = point.bankA;
   work.endBankV = point.bankV;
   return worst;
+}
+
+/**
+ * Largest error of what an equaliser moves between two modules, as a fraction of the smaller and in parts of what is
+ * allowed of it. Parallel strings take back by sharing what a step errs; between modules in series nothing does.
+ */
+function errorBetween(
+  errorAs: Float64Array,
+  { devices, lower, upper }: BankEqualiser,
+  chainCapacityAs: Float64Array,
+): number {
+  let worst = 0;
+  for (let k = 0; k < devices; k++) {
+    const smallerAs = Math.min(chainCapacityAs[lower[k]], chainCapacityAs[upper[k]]);
+    worst = Math.max(worst, Math.abs(errorAs[lower[k]] - errorAs[upper[k]]) / smallerAs);
+  }
+  return worst / BETWEEN_MODULES;
 }
 
 /** Rates f of charges and filtered currents at a stage, with the share `timeS` of what time alone changes. */

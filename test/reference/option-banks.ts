@@ -88,7 +88,7 @@ export function optionBanks(): ReferenceBank[] {
     winter(),
     ageing('wang-2011', 20),
     ageing('naumann', 10),
-    bankOf('equalised', { modules: unlikePairs(), equaliser: EQUALISER, cycles: [referenceDuty(4)] }),
+    bankOf('equalised', { modules: unlikePairs(), equaliser: EQUALISER, cycles: repeated(referenceDuty(4), 3) }),
     bankOf('equalised-always', {
       modules: [[...unlikePairs().flat().slice(0, 3)]],
       equaliser: { ...EQUALISER, startV: 0.005, fullV: 0.03, currentA: 3, enableV: null },
