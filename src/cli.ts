@@ -3,6 +3,7 @@ import { existsSync, readFileSync, writeFileSync } from 'node:fs';
 import { dirname } from 'node:path';
 import { performance } from 'node:perf_hooks';
 import process from 'node:process';
+import { EXIT_STATUS, STATUS_OF_SIGNAL } from './commands/exit-status.js';
 import { runProgram } from './commands/program.js';
 import type { Shell } from './commands/shell.js';
 import { makeFolder } from './execution/make-folder.js';
@@ -12,21 +13,32 @@ import type { TextOrProblem } from './study/read-text.js';
 
 const interruption = new AbortController();
 
-for (const signal of ['SIGINT', 'SIGTERM'] as const) {
-  process.once(signal, () => {
-    interruption.abort(signal);
-    // Whoever asks twice does not want to wait for what is being finished.
-    process.once(signal, () => process.exit(signal === 'SIGINT' ? 130 : 143));
-  });
+function listenForInterruption(): AbortSignal {
+  if (process.listenerCount('SIGINT') > 0) return interruption.signal;
+  for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) {
+    process.on(signal, () => {
+      // Whoever asks twice does not want to wait for what is being finished.
+      if (interruption.signal.aborted) process.exit(STATUS_OF_SIGNAL[signal]);
+      interruption.abort(signal);
+    });
+  }
+  return interruption.signal;
 }
 
-// The reader of a pipe may go away at any time; that is its right and no fault.
-for (const stream of [process.stdout, process.stderr]) {
-  stream.on('error', (error: NodeJS.ErrnoException) => {
-    if (error.code === 'EPIPE') process.exit();
-    throw error;
-  });
-}
+// The reader of a pipe, or the terminal, may go away at any time; that is its right and no fault. A run goes on without
+// them: its results are in its folder.
+const READER_IS_GONE = ['EPIPE', 'EIO'];
+let isPrinted = true;
+
+process.stderr.on('error', () => undefined);
+process.stdout.on('error', (error: NodeJS.ErrnoException) => {
+  if (READER_IS_GONE.includes(error.code ?? '') || !isPrinted) return;
+  isPrinted = false;
+  process.stderr.write(`the output cannot be written: ${reasonOf(error)}\n`);
+});
+process.on('exit', (status) => {
+  if (status === EXIT_STATUS.done && !isPrinted) process.exitCode = EXIT_STATUS.input;
+});
 
 const REASONS: Readonly<Record<string, string>> = {
   ENOENT: 'no such file',
@@ -79,7 +91,7 @@ const shell: Shell = {
   isTerminal: { out: process.stdout.isTTY === true, err: process.stderr.isTTY === true },
   color: process.stdout.isTTY === true && !process.env.NO_COLOR,
   now: () => performance.now(),
-  interruption: interruption.signal,
+  interruption: listenForInterruption,
 };
 
 const manifest = new URL('../../package.json', import.meta.url);

@@ -1,6 +1,6 @@
 import { performance } from 'node:perf_hooks';
 import { workerData } from 'piscina';
-import { type BlockReply, type BlockTask, blockInstances, outcomeLayout, TWIN_BLOCK } from '../src/outcomes/block.js';
+import { type BlockOrder, type BlockReply, blockInstances, outcomeLayout, TWIN_BLOCK } from '../src/outcomes/block.js';
 import { encodeBlock } from '../src/outcomes/block-csv.js';
 import { outcomeColumns } from '../src/outcomes/columns.js';
 import {
@@ -24,13 +24,14 @@ function preparedCandidate(key: string): PreparedCandidate {
 }
 
 /** Computes one block; the study is in the thread already. */
-export default function computeBlock({ candidate: key, block }: BlockTask): BlockReply {
+export default function computeBlock({ task: { candidate: key, block }, beats }: BlockOrder): BlockReply {
   const startMs = performance.now();
   const range = blockInstances(block, study);
   // Getting a candidate ready takes its twin through its course: a fault before the first instance is the twin's.
   let instance = 0;
   function* rows(candidate: PreparedCandidate) {
     for (instance = range.first; instance <= range.last; instance++) {
+      Atomics.add(beats, 0, 1);
       yield block === TWIN_BLOCK ? simulateTwin(candidate) : simulateInstance(candidate, instance);
     }
   }

@@ -8,8 +8,9 @@ Exit status:
   0  done
   1  a fault of this program, with its stack and how to report it
   2  command line, study or input
-  5  the run ended with blocks missing
-  130, 143  interrupted (Ctrl-C, termination)
+  5  the run ended with blocks missing, or results that could not be written
+  6  verify found something that is not as it was
+  129, 130, 143  interrupted (hang-up, Ctrl-C, termination)
 `;
 
 const CAUTION_HELP = `
@@ -63,6 +64,12 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .addOption(new Option('--threads <count>', 'threads; never changes a result').argParser(wholeNumber(1, 1024)))
     .addOption(new Option('--seed <seed>', "in place of the study's").argParser(seedText))
     .addOption(new Option('--instances <count>', "in place of the study's").argParser(wholeNumber(1, 10_000_000)))
+    .addOption(
+      new Option(
+        '--stall-minutes <minutes>',
+        'a thread that finishes no bank for so long is ended, and its block tried again (default: 10)',
+      ).argParser(positiveNumber),
+    )
     .option('--replace', 'discard what another run left in the folder')
     .option('--json', 'one JSON document in place of the table')
     .option('--quiet', 'results and faults only')
@@ -137,6 +144,7 @@ interface RunFlags {
   readonly threads?: number;
   readonly seed?: string;
   readonly instances?: number;
+  readonly stallMinutes?: number;
   readonly replace?: boolean;
   readonly json?: boolean;
   readonly quiet?: boolean;

@@ -2,13 +2,13 @@ import { availableParallelism } from 'node:os';
 import { basename, join, parse } from 'node:path';
 import { type Execution, executeRun } from '../execution/execute-run.js';
 import { FileOutcomes } from '../execution/file-outcomes.js';
+import { isOfTheMachine } from '../execution/folder-lost.js';
 import { FolderRefused } from '../execution/folder-refused.js';
 import { LostBlock } from '../execution/lost-block.js';
 import { Progress } from '../execution/progress.js';
 import { refuseOtherRun } from '../execution/refuse-other-run.js';
 import { blockFile, RUN_FILE, RunFolder } from '../execution/run-folder.js';
 import { RunRecord, type SessionEnd } from '../execution/run-record.js';
-import { isSystemError } from '../execution/system-error.js';
 import { blockCount, TWIN_BLOCK } from '../outcomes/block.js';
 import { renderJson } from '../output/json-table.js';
 import { renderTable } from '../output/table.js';
@@ -17,7 +17,7 @@ import { answerStudy } from '../questions/answer-study.js';
 import { ENGINE } from '../study/engine.js';
 import { simulationContent, simulationKey } from '../study/simulation-key.js';
 import type { Study } from '../study/study.js';
-import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
+import { EXIT_STATUS, type ExitStatus, STATUS_OF_SIGNAL } from './exit-status.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
 import { renderClosing, renderEarlyEnd } from './run-messages.js';
 import type { Shell } from './shell.js';
@@ -32,6 +32,8 @@ export interface RunOptions {
   readonly instances?: number | undefined;
   /** Threads, as many as the machine runs at once if not said. Never changes a result. */
   readonly threads?: number | undefined;
+  /** Minutes after which a thread that finishes no bank counts as hanging. */
+  readonly stallMinutes?: number | undefined;
   /** Discards what an earlier run left in the folder. */
   readonly replace?: boolean | undefined;
   /** One JSON document in place of the table. */
@@ -42,6 +44,8 @@ export interface RunOptions {
 
 /** All that a run leaves, to be discarded with `--replace`; anything else in the folder stays. */
 const LEFT_BY_A_RUN = [...Object.values(RUN_FILE), ...Object.values(RESULT_FILES)];
+/** Many times what a bank takes over decades, and short against a night. */
+const STALL_MINUTES = 10;
 const WORKER_FILE = new URL('../../workers/block.js', import.meta.url);
 
 /**
@@ -62,9 +66,13 @@ export async function runCommand(options: RunOptions, shell: Shell, workerFile =
       await folder.close();
     }
   } catch (error) {
-    if (!(error instanceof FolderRefused)) throw error;
-    shell.err(`${error.message}\n`);
-    return EXIT_STATUS.input;
+    if (error instanceof FolderRefused) {
+      shell.err(`${error.message}\n`);
+      return EXIT_STATUS.input;
+    }
+    if (!isOfTheMachine(error)) throw error;
+    shell.err(`${error.message}\nended; what was finished before is kept in ${path}\n`);
+    return EXIT_STATUS.blocksMissing;
   }
 }
 
@@ -80,35 +88,53 @@ async function runInFolder(
   const threads = options.threads ?? availableParallelism();
   const keys = new Map(study.candidates.map((candidate) => [candidate.key, simulationKey(study, candidate)]));
   await refuseOtherRun(study, keys, simulationContent, folder);
-  const inputs = await keepStudy(loaded, folder);
-  const record = await RunRecord.begin(folder, threads, new Date());
   const progress = new Progress({
     write: options.quiet ? () => undefined : shell.err,
     terminal: shell.isTerminal.err,
     nowMs: shell.now,
   });
-  const execution = await executeRun({ study, keys, folder, workerFile, threads, stop: shell.interruption, progress });
+  if (await folder.isStudyDamaged()) progress.note(`${RUN_FILE.resolved} is not as it was written; writing it again`);
+  const inputs = await keepStudy(loaded, folder);
+  const record = await RunRecord.begin(folder, threads, new Date());
+  const stop = shell.interruption();
+  const stallMs = (options.stallMinutes ?? STALL_MINUTES) * 60_000;
+  const computed = await executeRun({ study, keys, folder, workerFile, threads, stallMs, stop, progress });
+  const hasResults = computed.instances > 0 && endOf(computed) !== 'failed';
+  const unwritten = await troubleIn(async () => {
+    if (hasResults) shell.out(await resultsOf(study, computed.instances, folder, inputs, options.json ?? false));
+  });
+  const execution = { ...computed, failure: computed.failure ?? unwritten };
   const end = endOf(execution);
-  if (execution.instances > 0 && end !== 'failed') {
-    shell.out(await resultsOf(study, execution.instances, folder, inputs, options.json ?? false));
-  }
   const durationMs = shell.now() - startMs;
-  await record.end(end, durationMs / 1000);
+  // Nothing depends on the record: where it cannot be written, what stopped that has been told.
+  await troubleIn(() => record.end(end, durationMs / 1000));
   if (end === 'complete') {
     if (!options.quiet) shell.err(renderClosing(study, execution, { durationMs, threads, folder: folder.path }));
     return EXIT_STATUS.done;
   }
   const { failure } = execution;
   if (failure instanceof Error) shell.err(`${failure.message}\n`);
-  shell.err(renderEarlyEnd(study, execution, folder.path));
+  shell.err(renderEarlyEnd(study, execution, { folder: folder.path, areResultsWritten: unwritten === undefined }));
   if (end === 'failed') throw failure;
   if (end === 'blocks missing') return EXIT_STATUS.blocksMissing;
-  return shell.interruption.reason === 'SIGTERM' ? EXIT_STATUS.terminated : EXIT_STATUS.interrupted;
+  const signal: keyof typeof STATUS_OF_SIGNAL = stop.reason;
+  return STATUS_OF_SIGNAL[signal];
+}
+
+/** @returns what of the machine kept something from being done, undefined if it was done */
+async function troubleIn(deed: () => Promise<void>): Promise<Error | undefined> {
+  try {
+    await deed();
+    return undefined;
+  } catch (error) {
+    if (isOfTheMachine(error)) return error;
+    throw error;
+  }
 }
 
 /** A thread that ends and a disk that is full are the machine's; anything else that fails is ours. */
 function endOf({ failure, missing }: Execution): Exclude<SessionEnd, null> {
-  if (failure instanceof LostBlock || isSystemError(failure)) return 'blocks missing';
+  if (failure instanceof LostBlock || isOfTheMachine(failure)) return 'blocks missing';
   if (failure !== undefined) return 'failed';
   return missing === 0 ? 'complete' : 'interrupted';
 }
@@ -116,7 +142,7 @@ function endOf({ failure, missing }: Execution): Exclude<SessionEnd, null> {
 /** Keeps the study as read, as resolved and with the files that it names. @returns names of those files */
 async function keepStudy({ text, study, inputs }: LoadedStudy, folder: RunFolder): Promise<readonly string[]> {
   await folder.write(RUN_FILE.study, text);
-  await folder.write(RUN_FILE.resolved, `${JSON.stringify(study, null, 2)}\n`);
+  await folder.keepStudy(`${JSON.stringify(study, null, 2)}\n`);
   await folder.remove(RUN_FILE.inputs);
   const names: string[] = [];
   for (const [index, input] of inputs.entries()) {

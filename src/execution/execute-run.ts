@@ -5,7 +5,7 @@ import { blockName } from './lost-block.js';
 import { commonInstances, instancesDue, planRun } from './plan.js';
 import { BlockPool } from './pool.js';
 import type { Progress } from './progress.js';
-import { blockFile, type RunFolder } from './run-folder.js';
+import { blockFile, RUN_FILE, type RunFolder } from './run-folder.js';
 
 export interface ExecuteOptions {
   readonly study: Study;
@@ -15,6 +15,8 @@ export interface ExecuteOptions {
   /** Compiled thread entry. */
   readonly workerFile: URL;
   readonly threads: number;
+  /** A thread that finishes no instance for so long, in ms, hangs: its block is tried again on another. */
+  readonly stallMs: number;
   /** Aborted, the run ends after the blocks in flight. */
   readonly stop: AbortSignal;
   readonly progress: Progress;
@@ -36,6 +38,8 @@ export interface Execution {
 export async function executeRun(options: ExecuteOptions): Promise<Execution> {
   const { study, keys, folder, progress } = options;
   const plan = await planRun(study, keys, folder);
+  const { damagedLines } = folder.journal.contents;
+  if (damagedLines.length > 0) progress.note(damagedLinesNote(damagedLines));
   for (const task of plan.damaged) {
     progress.note(`${blockFile(task)} is not as it was written; computing it again`);
   }
@@ -50,8 +54,14 @@ export async function executeRun(options: ExecuteOptions): Promise<Execution> {
   };
 }
 
+function damagedLinesNote(lines: readonly number[]): string {
+  const which =
+    lines.length === 1 ? `line ${lines[0]} is` : `${lines.length} lines, the first of them ${lines[0]}, are`;
+  return `${RUN_FILE.journal}: ${which} not as written; computing again what they stood for`;
+}
+
 async function computeMissing(
-  { study, keys, folder, workerFile, threads, stop, progress }: ExecuteOptions,
+  { study, keys, folder, workerFile, threads, stallMs, stop, progress }: ExecuteOptions,
   missing: readonly BlockTask[],
   computed: BlockTask[],
 ): Promise<unknown> {
@@ -61,6 +71,7 @@ async function computeMissing(
     workerFile,
     threads: inFlight,
     study,
+    stallMs,
     onRetry: (task, reason) => progress.note(`${blockName(task)}: its thread ended (${reason}); trying again`),
   });
   progress.update(0, missing.length);

@@ -8,6 +8,7 @@ import { OutcomeFault } from '../outcomes/outcome-fault.js';
 import { columnIndex, type OutcomeStore } from '../outcomes/outcome-store.js';
 import type { Study } from '../study/study.js';
 import { UNFINISHED } from './durable-file.js';
+import { FolderLost } from './folder-lost.js';
 import { blockFile, RUN_FILE, type RunFolder } from './run-folder.js';
 
 const BYTES = Float64Array.BYTES_PER_ELEMENT;
@@ -113,7 +114,7 @@ export class FileOutcomes implements OutcomeStore {
   async #rows(candidate: string, block: number): Promise<OutcomeRow[]> {
     const name = blockFile({ candidate, block });
     const csv = await this.#folder.read(name);
-    if (csv === undefined) throw new OutcomeFault(`${name} is gone`);
+    if (csv === undefined) throw new FolderLost(`${join(this.#folder.path, name)} was removed while the run went on`);
     try {
       return decodeBlock(this.columns(candidate), blockInstances(block, this.#sizing), csv);
     } catch (error) {

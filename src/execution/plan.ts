@@ -1,6 +1,7 @@
 import { type BlockTask, blockCount, blockInstances, TWIN_BLOCK } from '../outcomes/block.js';
 import type { Study } from '../study/study.js';
-import { blockFile, type RunFolder, sha256 } from './run-folder.js';
+import { sha256 } from './checksum.js';
+import { blockFile, type RunFolder } from './run-folder.js';
 
 /** What a run has to do and what it finds done. */
 export interface Plan {
@@ -31,7 +32,7 @@ export function instancesDue(study: Study, block: number): number {
  * enough instances and is byte for byte what the journal says.
  */
 export async function planRun(study: Study, keys: ReadonlyMap<string, string>, folder: RunFolder): Promise<Plan> {
-  const entries = new Map(folder.journal.entries.map((entry) => [blockFile(entry), entry]));
+  const entries = new Map(folder.journal.contents.entries.map((entry) => [blockFile(entry), entry]));
   const finished: BlockTask[] = [];
   const missing: BlockTask[] = [];
   const damaged: BlockTask[] = [];

@@ -10,6 +10,13 @@ export interface BlockTask {
   readonly block: number;
 }
 
+/** What a thread is handed: the block, and a count that it raises at each instance, so that one that hangs shows. */
+export interface BlockOrder {
+  readonly task: BlockTask;
+  /** One number in shared memory. */
+  readonly beats: Int32Array<SharedArrayBuffer>;
+}
+
 /** What comes back: the block as it is kept, or the instance that has no outcome. */
 export type BlockReply =
   | { readonly csv: string; readonly computeS: number }

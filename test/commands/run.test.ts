@@ -72,7 +72,7 @@ async function run(options: RunOptions, interruption = new AbortController().sig
     isTerminal: { out: false, err: false },
     color: false,
     now: () => performance.now(),
-    interruption,
+    interruption: () => interruption,
   };
   const status = await runCommand({ threads: 2, ...options }, shell, program.workerFile);
   return { status, out, err };
@@ -125,7 +125,7 @@ describe('run', () => {
       'summary.csv',
     ]);
     expect(readFileSync(join(out, 'study.yaml'), 'utf8')).toBe(STUDY);
-    expect(readFileSync(join(out, 'journal.jsonl'), 'utf8').trimEnd().split('\n')).toHaveLength(BLOCKS);
+    expect(readFileSync(join(out, 'journal.jsonl'), 'utf8').trimEnd().split('\n')).toHaveLength(BLOCKS + 1);
     expect(JSON.parse(readFileSync(join(out, 'run.json'), 'utf8'))).toMatchObject({
       interruptions: 0,
       sessions: [{ threads: 2, ended: 'complete' }],

@@ -36,7 +36,16 @@ export async function fakeRun(
   const folder = await RunFolder.open(path, []);
   try {
     const keys = fakeKeys(study);
-    const execution = await executeRun({ study, keys, folder, workerFile, threads, stop: stop.signal, progress });
+    const execution = await executeRun({
+      study,
+      keys,
+      folder,
+      workerFile,
+      threads,
+      stallMs: 60_000,
+      stop: stop.signal,
+      progress,
+    });
     return { ...execution, notes };
   } finally {
     await folder.close();
