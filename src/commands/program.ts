@@ -116,6 +116,28 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     });
 
   program
+    .command('verify <folder>')
+    .description('compare a folder of results with its checksums, compute some of its blocks again')
+    .addOption(
+      new Option('--blocks <count>', 'blocks to be computed again, evenly spread (default: 8)').argParser(
+        wholeNumber(0, 10_000_000),
+      ),
+    )
+    .addOption(new Option('--threads <count>', 'threads; never changes a result').argParser(wholeNumber(1, 1024)))
+    .option('--json', 'one JSON document in place of the lines')
+    .addHelpText(
+      'after',
+      `
+Writes nothing. Exit status 0 if all is identical, 6 if something is not.
+
+Example: motleybank verify results/demo --blocks 20`,
+    )
+    .action(async (folder: string, options: { blocks?: number; threads?: number; json?: boolean }) => {
+      const { verifyCommand } = await import('./verify.js');
+      status = await verifyCommand({ folder, ...options }, shellFor());
+    });
+
+  program
     .command('new <file>')
     .description('write a first study of a few lines; never overwrites')
     .option('--quiet', 'faults only')

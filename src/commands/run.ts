@@ -45,8 +45,9 @@ export interface RunOptions {
 /** All that a run leaves, to be discarded with `--replace`; anything else in the folder stays. */
 const LEFT_BY_A_RUN = [...Object.values(RUN_FILE), ...Object.values(RESULT_FILES)];
 /** Many times what a bank takes over decades, and short against a night. */
-const STALL_MINUTES = 10;
-const WORKER_FILE = new URL('../../workers/block.js', import.meta.url);
+export const STALL_MINUTES = 10;
+/** Compiled thread entry. */
+export const WORKER_FILE = new URL('../../workers/block.js', import.meta.url);
 
 /**
  * Runs a study: computes what its folder lacks, answers its questions and prints the table.

@@ -47,7 +47,8 @@ export interface FolderLock {
 export async function takeLock(folder: string): Promise<FolderLock> {
   const mine = `run.${randomUUID()}.lock`;
   const path = join(folder, mine);
-  const release = () => rm(path, { force: true });
+  // Where a lock cannot be removed it is one of a process that has ended, and keeps nobody out.
+  const release = () => rm(path, { force: true }).catch(() => undefined);
   try {
     await writeDurably(path, JSON.stringify(await holderOf(process.pid)));
     for (let look = 1; ; look++) {
