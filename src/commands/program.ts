@@ -70,13 +70,20 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
         'a thread that finishes no bank for so long is ended, and its block tried again (default: 10)',
       ).argParser(positiveNumber),
     )
+    .addOption(
+      new Option(
+        '--may-fail <percent>',
+        'banks of each candidate that may fail to converge; they are listed and left out (default: 0)',
+      ).argParser(percentage),
+    )
     .option('--replace', 'discard what another run left in the folder')
     .option('--json', 'one JSON document in place of the table')
     .option('--quiet', 'results and faults only')
     .addHelpText('after', '\nExample: motleybank run studies/demo.yaml --out results/demo')
     .action(async (study: string, options: RunFlags) => {
       const { runCommand } = await import('./run.js');
-      status = await runCommand({ study, ...options }, shellFor());
+      const { mayFail: mayFailPercent, ...rest } = options;
+      status = await runCommand({ study, mayFailPercent, ...rest }, shellFor());
     });
 
   program
@@ -167,6 +174,7 @@ interface RunFlags {
   readonly seed?: string;
   readonly instances?: number;
   readonly stallMinutes?: number;
+  readonly mayFail?: number;
   readonly replace?: boolean;
   readonly json?: boolean;
   readonly quiet?: boolean;
@@ -193,6 +201,12 @@ function seedText(text: string): string {
   // A text that begins with a hyphen is the next option: the seed was left out.
   if (isSeed(text) && !text.startsWith('-')) return text;
   throw new InvalidArgumentError(`It must be ${SEED_RULE}.`);
+}
+
+function percentage(text: string): number {
+  const value = Number(text);
+  if (text.trim() !== '' && value >= 0 && value <= 100) return value;
+  throw new InvalidArgumentError('It must be a number from 0 to 100.');
 }
 
 function positiveNumber(text: string): number {

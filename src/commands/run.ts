@@ -18,6 +18,7 @@ import { ENGINE } from '../study/engine.js';
 import { simulationContent, simulationKey } from '../study/simulation-key.js';
 import type { Study } from '../study/study.js';
 import { EXIT_STATUS, type ExitStatus, STATUS_OF_SIGNAL } from './exit-status.js';
+import { FAILED_FILE, listFailedBanks, renderFailedBanks } from './failed-banks.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
 import { renderClosing, renderEarlyEnd } from './run-messages.js';
 import type { Shell } from './shell.js';
@@ -34,6 +35,8 @@ export interface RunOptions {
   readonly threads?: number | undefined;
   /** Minutes after which a thread that finishes no bank counts as hanging. */
   readonly stallMinutes?: number | undefined;
+  /** Percentage of the banks that may fail to converge in each candidate; 0 if not said. */
+  readonly mayFailPercent?: number | undefined;
   /** Discards what an earlier run left in the folder. */
   readonly replace?: boolean | undefined;
   /** One JSON document in place of the table. */
@@ -43,7 +46,7 @@ export interface RunOptions {
 }
 
 /** All that a run leaves, to be discarded with `--replace`; anything else in the folder stays. */
-const LEFT_BY_A_RUN = [...Object.values(RUN_FILE), ...Object.values(RESULT_FILES)];
+const LEFT_BY_A_RUN = [...Object.values(RUN_FILE), ...Object.values(RESULT_FILES), FAILED_FILE];
 /** Many times what a bank takes over decades, and short against a night. */
 export const STALL_MINUTES = 10;
 /** Compiled thread entry. */
@@ -99,12 +102,17 @@ async function runInFolder(
   const record = await RunRecord.begin(folder, threads, new Date());
   const stop = shell.interruption();
   const stallMs = (options.stallMinutes ?? STALL_MINUTES) * 60_000;
-  const computed = await executeRun({ study, keys, folder, workerFile, threads, stallMs, stop, progress });
+  const mayFailFraction = (options.mayFailPercent ?? 0) / 100;
+  const task = { study, keys, folder, workerFile, threads, stallMs, mayFailFraction, stop, progress };
+  const computed = await executeRun(task);
   const hasResults = computed.instances > 0 && endOf(computed) !== 'failed';
   const unwritten = await troubleIn(async () => {
-    if (hasResults) shell.out(await resultsOf(study, computed.instances, folder, inputs, options.json ?? false));
+    if (!hasResults) return;
+    shell.out(await resultsOf(study, computed, folder, inputs, options.json ?? false));
+    await listFailedBanks(folder, computed.failed);
   });
   const execution = { ...computed, failure: computed.failure ?? unwritten };
+  shell.err(renderFailedBanks(study, computed.instances, computed.failed, folder.path));
   const end = endOf(execution);
   const durationMs = shell.now() - startMs;
   // Nothing depends on the record: where it cannot be written, what stopped that has been told.
@@ -157,12 +165,12 @@ async function keepStudy({ text, study, inputs }: LoadedStudy, folder: RunFolder
 /** Answers the questions and writes the answers. @returns what is to be printed */
 async function resultsOf(
   study: Study,
-  instances: number,
+  { instances, failed }: Execution,
   folder: RunFolder,
   inputs: readonly string[],
   json: boolean,
 ): Promise<string> {
-  const outcomes = new FileOutcomes(folder, study, instances);
+  const outcomes = new FileOutcomes(folder, study, instances, { failed });
   try {
     const answers = await answerStudy(study, outcomes);
     const provenance = {

@@ -1,8 +1,9 @@
 import type { BlockTask } from '../outcomes/block.js';
 import type { Study } from '../study/study.js';
 import { computeBlocks } from './compute-blocks.js';
+import { allowedFailures, type CandidateFailure, failuresWithin } from './failed-instances.js';
 import { blockName } from './lost-block.js';
-import { commonInstances, instancesDue, planRun } from './plan.js';
+import { commonInstances, type FinishedBlock, instancesDue, planRun } from './plan.js';
 import { BlockPool } from './pool.js';
 import type { Progress } from './progress.js';
 import { blockFile, RUN_FILE, type RunFolder } from './run-folder.js';
@@ -17,6 +18,8 @@ export interface ExecuteOptions {
   readonly threads: number;
   /** A thread that finishes no instance for so long, in ms, hangs: its block is tried again on another. */
   readonly stallMs: number;
+  /** Share of the instances that may fail in each candidate, 0 to 1. */
+  readonly mayFailFraction: number;
   /** Aborted, the run ends after the blocks in flight. */
   readonly stop: AbortSignal;
   readonly progress: Progress;
@@ -30,6 +33,8 @@ export interface Execution {
   /** Blocks computed, twins included. */
   readonly computed: number;
   readonly missing: number;
+  /** Those of the instances that have no outcome. */
+  readonly failed: readonly CandidateFailure[];
   /** What ended the run before its end, if it was a failure. */
   readonly failure: unknown;
 }
@@ -37,16 +42,22 @@ export interface Execution {
 /** Computes what the folder lacks of a study. A failure is returned, not thrown, because what is finished still counts. */
 export async function executeRun(options: ExecuteOptions): Promise<Execution> {
   const { study, keys, folder, progress } = options;
-  const plan = await planRun(study, keys, folder);
+  const allowed = allowedFailures(study, options.mayFailFraction);
+  const plan = await planRun(study, keys, folder, allowed);
   const { damagedLines } = folder.journal.contents;
   if (damagedLines.length > 0) progress.note(damagedLinesNote(damagedLines));
   for (const task of plan.damaged) {
     progress.note(`${blockFile(task)} is not as it was written; computing it again`);
   }
-  const computed: BlockTask[] = [];
-  const failure = await computeMissing(options, plan.missing, computed);
+  const computed: FinishedBlock[] = [];
+  const before = failuresWithin(study, plan.finished, study.instances);
+  const mayFail = (key: string) => allowed - before.filter(({ candidate }) => candidate === key).length;
+  const failure = await computeMissing(options, plan.missing, computed, mayFail);
+  const blocks = [...plan.finished, ...computed];
+  const instances = commonInstances(study, blocks);
   return {
-    instances: commonInstances(study, [...plan.finished, ...computed]),
+    instances,
+    failed: failuresWithin(study, blocks, instances),
     found: plan.finished.length,
     computed: computed.length,
     missing: plan.missing.length - computed.length,
@@ -63,7 +74,8 @@ function damagedLinesNote(lines: readonly number[]): string {
 async function computeMissing(
   { study, keys, folder, workerFile, threads, stallMs, stop, progress }: ExecuteOptions,
   missing: readonly BlockTask[],
-  computed: BlockTask[],
+  computed: FinishedBlock[],
+  mayFail: (candidate: string) => number,
 ): Promise<unknown> {
   if (missing.length === 0) return undefined;
   const inFlight = Math.min(threads, missing.length);
@@ -82,9 +94,10 @@ async function computeMissing(
       run: (task) => pool.run(task),
       keep: async (task, block) => {
         await folder.keep(task, keys.get(task.candidate) ?? '', instancesDue(study, task.block), block);
-        computed.push(task);
+        computed.push(block.failed === undefined ? task : { ...task, failed: block.failed });
         progress.update(computed.length, missing.length);
       },
+      mayFail,
       stop,
     });
     return undefined;

@@ -1,5 +1,6 @@
 import { type FileHandle, open } from 'node:fs/promises';
 import { dirname } from 'node:path';
+import type { FailedInstance } from '../outcomes/block.js';
 import { sha256 } from './checksum.js';
 import { flushFolder } from './durable-file.js';
 
@@ -16,6 +17,8 @@ export interface JournalEntry {
   readonly sha256: string;
   /** Time of one thread, s. */
   readonly compute_s: number;
+  /** Instances without an outcome; absent if there are none. */
+  readonly failed?: readonly FailedInstance[];
 }
 
 /** The resolved study that the folder is left with. */

@@ -102,10 +102,11 @@ export class RunFolder {
   }
 
   /** Keeps a block: first its file, then its line in the journal. */
-  async keep(task: BlockTask, key: string, instances: number, { csv, computeS }: ComputedBlock): Promise<void> {
+  async keep(task: BlockTask, key: string, instances: number, { csv, computeS, failed }: ComputedBlock): Promise<void> {
     await this.write(blockFile(task), csv);
     const compute_s = Number(computeS.toFixed(3));
-    await this.journal.append({ ...task, key, instances, sha256: sha256(csv), compute_s });
+    const entry = { ...task, key, instances, sha256: sha256(csv), compute_s };
+    await this.journal.append(failed === undefined ? entry : { ...entry, failed });
   }
 
   async close(): Promise<void> {

@@ -17,9 +17,20 @@ export interface BlockOrder {
   readonly beats: Int32Array<SharedArrayBuffer>;
 }
 
-/** What comes back: the block as it is kept, or the instance that has no outcome. */
+/** An instance that has no outcome, and never a row, because its simulation did not converge. */
+export interface FailedInstance {
+  readonly instance: number;
+  readonly message: string;
+}
+
+/** What comes back: the block as it is kept, or the instance under which the thread met a mistake in the program. */
 export type BlockReply =
-  | { readonly csv: string; readonly computeS: number }
+  | {
+      readonly csv: string;
+      readonly computeS: number;
+      /** Ascending; absent if there are none, as almost always. */
+      readonly failed?: readonly FailedInstance[];
+    }
   | { readonly fault: { readonly instance: number; readonly message: string; readonly stack: string } };
 
 /** Block number of the twin. */

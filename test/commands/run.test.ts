@@ -269,6 +269,32 @@ describe('run', () => {
     expect((await run({ study: studyFile(), out })).status).toBe(0);
   });
 
+  it('lists the banks that did not converge within the allowed share, and summarises the others', async () => {
+    const study = studyFile(STUDY.replace('title: fake', 'title: diverge strings 3+35'));
+    const out = scratch.next();
+    const { status, out: json, err } = await run({ study, out, mayFailPercent: 5, json: true, quiet: true });
+    expect(status).toBe(0);
+    expect(err).toBe(
+      `strings: 2 of 40 banks did not converge and are left out (failed.csv); the first: motleybank trace ${out} --candidate strings --instance 3\n`,
+    );
+    expect(readFileSync(join(out, 'failed.csv'), 'utf8')).toBe(
+      [
+        'candidate,instance,message,trace',
+        'strings,3,bank 3 did not settle,motleybank trace . --candidate strings --instance 3',
+        'strings,35,bank 35 did not settle,motleybank trace . --candidate strings --instance 35',
+        '',
+      ].join('\r\n'),
+    );
+    expect(JSON.parse(json).instances).toBe(40);
+    // Nothing is summarised of them: 38 banks are left, of which some have no such measure.
+    const [head = '', ...rows] = readFileSync(join(out, 'summary.csv'), 'utf8').trimEnd().split('\r\n');
+    const n = head.split(',').indexOf('instances');
+    const loadLost = rows
+      .filter((row) => /,load_lost,.*share_of_banks/.test(row))
+      .map((row) => Number(row.split(',')[n]));
+    expect(loadLost).toEqual([38, 40]);
+  });
+
   it('of a study with faults computes nothing and makes no folder', async () => {
     const out = scratch.next();
     const { status, err } = await run({ study: studyFile(STUDY.replace('seed: 7', 'sed: 7')), out });
