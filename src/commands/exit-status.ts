@@ -8,7 +8,7 @@ export const EXIT_STATUS = {
   /** The run ended with blocks missing, or its results could not be written. */
   blocksMissing: 5,
   /** `verify` found what is not as it was written, or not computed the same again. */
-  different: 6,
+  different: 7,
   hungUp: 129,
   interrupted: 130,
   terminated: 143,

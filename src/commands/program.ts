@@ -9,7 +9,7 @@ Exit status:
   1  a fault of this program, with its stack and how to report it
   2  command line, study or input
   5  the run ended with blocks missing, or results that could not be written
-  6  verify found something that is not as it was
+  7  verify found something that is not as it was
   129, 130, 143  interrupted (hang-up, Ctrl-C, termination)
 `;
 
@@ -135,7 +135,7 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .addHelpText(
       'after',
       `
-Writes nothing. Exit status 0 if all is identical, 6 if something is not.
+Writes nothing. Exit status 0 if all is identical, 7 if something is not.
 
 Example: motleybank verify results/demo --blocks 20`,
     )

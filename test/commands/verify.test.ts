@@ -66,7 +66,7 @@ describe('verify', () => {
     const name = 'outcomes/turned/block-0007.csv';
     flipBit(join(folder, name), 12_345);
     const { status, out } = await verify(folder, { blocks: 99 });
-    expect(status).toBe(6);
+    expect(status).toBe(7);
     expect(out).toBe(
       `${name} is not as it was written\n${folder} is not as it was: 1 findings; 21 blocks intact, 21 computed again\n`,
     );
@@ -78,7 +78,7 @@ describe('verify', () => {
       const folder = copy();
       flipBit(join(folder, 'journal.jsonl'), Math.floor(share * length) * 8 + 1);
       const { status, out } = await verify(folder, { blocks: 0 });
-      expect(status).toBe(6);
+      expect(status).toBe(7);
       expect(out).toMatch(/^journal\.jsonl, line \d+ is not as it was written\n/);
     }
   });
@@ -87,7 +87,7 @@ describe('verify', () => {
     const folder = copy();
     flipBit(join(folder, 'study.resolved.json'), 4001);
     const { status, out } = await verify(folder);
-    expect(status).toBe(6);
+    expect(status).toBe(7);
     expect(out).toMatch(/^study\.resolved\.json is not as it was written\n.*; 0 blocks intact, 0 computed again\n$/);
   });
 
@@ -102,7 +102,7 @@ describe('verify', () => {
     const line = journalLine({ ...entry, sha256: sha256(text) });
     writeFileSync(join(folder, 'journal.jsonl'), line, { flag: 'a' });
     const { status, out } = await verify(folder, { blocks: 22 });
-    expect(status).toBe(6);
+    expect(status).toBe(7);
     expect(out).toMatch(/^outcomes\/strings\/block-0002\.csv, instance 8: \w+ is \S+, and \S+ when computed again\n/);
   });
 

@@ -163,7 +163,7 @@ describe(`a run that is disturbed in ${ROUNDS} rounds`, () => {
         cwd: chaos.home,
         encoding: 'utf8',
       });
-      expect(verified.status).toBe(6);
+      expect(verified.status).toBe(7);
       expect(verified.stdout).toContain(name);
       const mended = toTheEnd(chaos.home);
       expect(mended.status).toBe(0);
