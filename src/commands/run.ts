@@ -42,6 +42,8 @@ export interface RunOptions {
 
 /** All that a run leaves, to be discarded with `--replace`; anything else in the folder stays. */
 const LEFT_BY_A_RUN = [...Object.values(RUN_FILE), ...Object.values(RESULT_FILES)];
+/** Characters: four bytes each at most, and no file system has names of more than 255. */
+const LONGEST_KEPT_NAME = 60;
 const WORKER_FILE = new URL('../../workers/block.js', import.meta.url);
 
 /**
@@ -120,11 +122,16 @@ async function keepStudy({ text, study, inputs }: LoadedStudy, folder: RunFolder
   await folder.remove(RUN_FILE.inputs);
   const names: string[] = [];
   for (const [index, input] of inputs.entries()) {
-    const name = `${RUN_FILE.inputs}/${String(index + 1).padStart(2, '0')}-${basename(input.path)}`;
+    const name = `${RUN_FILE.inputs}/${String(index + 1).padStart(2, '0')}-${portableName(input.path)}`;
     await folder.write(name, input.text);
     names.push(name);
   }
   return names;
+}
+
+/** The end of a file's name in characters that names may have on every system. */
+function portableName(path: string): string {
+  return [...basename(path).replace(/[^\p{L}\p{M}\p{N}._ -]/gu, '_')].slice(-LONGEST_KEPT_NAME).join('');
 }
 
 /** Answers the questions and writes the answers. @returns what is to be printed */
