@@ -7,6 +7,8 @@ export const EXIT_STATUS = {
   input: 2,
   /** The run ended with blocks missing. */
   blocksMissing: 5,
+  /** `status`: the run goes on. */
+  running: 6,
   interrupted: 130,
   terminated: 143,
 } as const;

@@ -9,6 +9,7 @@ Exit status:
   1  a fault of this program, with its stack and how to report it
   2  command line, study or input
   5  the run ended with blocks missing
+  6  status: the run goes on
   130, 143  interrupted (Ctrl-C, termination)
 `;
 
@@ -66,6 +67,7 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .option('--replace', 'discard what another run left in the folder')
     .option('--json', 'one JSON document in place of the table')
     .option('--quiet', 'results and faults only')
+    .option('--log <file>', 'append a JSON object per line: start, progress every minute, notes, end')
     .addHelpText('after', '\nExample: motleybank run studies/demo.yaml --out results/demo')
     .action(async (study: string, options: RunFlags) => {
       const { runCommand } = await import('./run.js');
@@ -109,6 +111,16 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     });
 
   program
+    .command('status <folder>')
+    .description('tell from the folder of a run alone how it stands: running, complete, or ended with blocks missing')
+    .option('--json', 'one JSON document in place of the lines')
+    .addHelpText('after', '\nExample: motleybank status results/demo')
+    .action(async (folder: string, options: { json?: boolean }) => {
+      const { statusCommand } = await import('./status.js');
+      status = await statusCommand({ folder, ...options }, shellFor(), Date.now());
+    });
+
+  program
     .command('new <file>')
     .description('write a first study of a few lines; never overwrites')
     .option('--quiet', 'faults only')
@@ -140,6 +152,7 @@ interface RunFlags {
   readonly replace?: boolean;
   readonly json?: boolean;
   readonly quiet?: boolean;
+  readonly log?: string;
 }
 
 interface TraceFlags {

@@ -1,12 +1,13 @@
 import { availableParallelism } from 'node:os';
 import { basename, join, parse } from 'node:path';
-import { type Execution, executeRun } from '../execution/execute-run.js';
+import { type ExecuteOptions, type Execution, executeRun } from '../execution/execute-run.js';
 import { FileOutcomes } from '../execution/file-outcomes.js';
 import { FolderRefused } from '../execution/folder-refused.js';
 import { LostBlock } from '../execution/lost-block.js';
 import { Progress } from '../execution/progress.js';
 import { refuseOtherRun } from '../execution/refuse-other-run.js';
 import { blockFile, RUN_FILE, RunFolder } from '../execution/run-folder.js';
+import { RunLog } from '../execution/run-log.js';
 import { RunRecord, type SessionEnd } from '../execution/run-record.js';
 import { isSystemError } from '../execution/system-error.js';
 import { blockCount, TWIN_BLOCK } from '../outcomes/block.js';
@@ -20,6 +21,7 @@ import type { Study } from '../study/study.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
 import { renderClosing, renderEarlyEnd } from './run-messages.js';
+import { RunWatch } from './run-watch.js';
 import type { Shell } from './shell.js';
 
 /** What `run` is told on the command line. */
@@ -38,6 +40,8 @@ export interface RunOptions {
   readonly json?: boolean | undefined;
   /** Results and faults only. */
   readonly quiet?: boolean | undefined;
+  /** File to which a JSON object per line is appended. */
+  readonly log?: string | undefined;
 }
 
 /** All that a run leaves, to be discarded with `--replace`; anything else in the folder stays. */
@@ -82,20 +86,43 @@ async function runInFolder(
   const threads = options.threads ?? availableParallelism();
   const keys = new Map(study.candidates.map((candidate) => [candidate.key, simulationKey(study, candidate)]));
   await refuseOtherRun(study, keys, simulationContent, folder);
-  const inputs = await keepStudy(loaded, folder);
-  const record = await RunRecord.begin(folder, threads, new Date());
   const progress = new Progress({
     write: options.quiet ? () => undefined : shell.err,
     terminal: shell.isTerminal.err,
     nowMs: shell.now,
+    onNote: (text) => log.write({ event: 'note', text }),
   });
-  const execution = await executeRun({ study, keys, folder, workerFile, threads, stop: shell.interruption, progress });
+  const log = openLog(options.log, progress);
+  const inputs = await keepStudy(loaded, folder);
+  const record = await RunRecord.begin(folder, threads, new Date());
+  log.write({
+    event: 'started',
+    study: loaded.file,
+    folder: folder.path,
+    engine: ENGINE,
+    seed: study.seed,
+    threads,
+    instances: study.instances,
+    candidates: [...keys.keys()],
+  });
+  const execution = await executeWatched(
+    { study, keys, folder, workerFile, threads, stop: shell.interruption, progress },
+    log,
+  );
   const end = endOf(execution);
   if (execution.instances > 0 && end !== 'failed') {
     shell.out(await resultsOf(study, execution.instances, folder, inputs, options.json ?? false));
   }
   const durationMs = shell.now() - startMs;
   await record.end(end, durationMs / 1000);
+  log.write({
+    event: 'ended',
+    how: end,
+    instances: execution.instances,
+    blocks_missing: execution.missing,
+    duration_s: Number((durationMs / 1000).toFixed(3)),
+    ...(execution.failure instanceof Error && { failure: execution.failure.message }),
+  });
   if (end === 'complete') {
     if (!options.quiet) shell.err(renderClosing(study, execution, { durationMs, threads, folder: folder.path }));
     return EXIT_STATUS.done;
@@ -106,6 +133,29 @@ async function runInFolder(
   if (end === 'failed') throw failure;
   if (end === 'blocks missing') return EXIT_STATUS.blocksMissing;
   return shell.interruption.reason === 'SIGTERM' ? EXIT_STATUS.terminated : EXIT_STATUS.interrupted;
+}
+
+/** @throws FolderRefused if the log cannot be written */
+function openLog(path: string | undefined, progress: Progress): RunLog {
+  const log = new RunLog(path, (reason) => progress.line(`the log goes no further: ${reason}`));
+  try {
+    log.open();
+    return log;
+  } catch (error) {
+    if (!isSystemError(error)) throw error;
+    throw new FolderRefused(`${path} cannot be written: ${error.message}`);
+  }
+}
+
+/** Computes what is missing; every minute the screen and the log are told how it goes. */
+async function executeWatched(options: ExecuteOptions, log: RunLog): Promise<Execution> {
+  const watch = new RunWatch(options.study, options.folder, options.progress, log);
+  watch.start();
+  try {
+    return await executeRun({ ...options, onFinished: (task, isComputed) => watch.finished(task, isComputed) });
+  } finally {
+    await watch.stop();
+  }
 }
 
 /** A thread that ends and a disk that is full are the machine's; anything else that fails is ours. */

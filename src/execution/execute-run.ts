@@ -18,6 +18,8 @@ export interface ExecuteOptions {
   /** Aborted, the run ends after the blocks in flight. */
   readonly stop: AbortSignal;
   readonly progress: Progress;
+  /** Told of every block that is in the folder: those found there first, then each that is computed. */
+  readonly onFinished?: ((task: BlockTask, isComputed: boolean) => void) | undefined;
 }
 
 export interface Execution {
@@ -39,6 +41,7 @@ export async function executeRun(options: ExecuteOptions): Promise<Execution> {
   for (const task of plan.damaged) {
     progress.note(`${blockFile(task)} is not as it was written; computing it again`);
   }
+  for (const task of plan.finished) options.onFinished?.(task, false);
   const computed: BlockTask[] = [];
   const failure = await computeMissing(options, plan.missing, computed);
   return {
@@ -51,7 +54,7 @@ export async function executeRun(options: ExecuteOptions): Promise<Execution> {
 }
 
 async function computeMissing(
-  { study, keys, folder, workerFile, threads, stop, progress }: ExecuteOptions,
+  { study, keys, folder, workerFile, threads, stop, progress, onFinished }: ExecuteOptions,
   missing: readonly BlockTask[],
   computed: BlockTask[],
 ): Promise<unknown> {
@@ -72,6 +75,7 @@ async function computeMissing(
       keep: async (task, block) => {
         await folder.keep(task, keys.get(task.candidate) ?? '', instancesDue(study, task.block), block);
         computed.push(task);
+        onFinished?.(task, true);
         progress.update(computed.length, missing.length);
       },
       stop,
