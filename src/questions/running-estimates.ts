@@ -14,7 +14,7 @@ export type WatchedMeasure = Pick<AcceptanceLine, 'measure' | 'statistic'>;
 const WITHOUT_ACCEPTANCE: readonly MeasureName[] = ['early_cutoff_on_charge', 'load_lost'];
 
 /** What the acceptance lines of a study speak of; without any, how often a cutoff comes early and load is lost. */
-export function watchedMeasures({ acceptance }: Study): readonly WatchedMeasure[] {
+function watchedMeasures({ acceptance }: Study): readonly WatchedMeasure[] {
   if (acceptance.length === 0) {
     return WITHOUT_ACCEPTANCE.map((measure) => ({ measure, statistic: 'share_of_banks' }));
   }

@@ -49,7 +49,7 @@ describe('a file that is read', () => {
   });
 
   it.runIf(process.platform === 'linux')('is neither a pipe nor a device, which might never end', () => {
-    execFileSync('mkfifo', [join(folder, 'pipe')]);
+    execFileSync('sh', ['-c', 'mkfifo pipe'], { cwd: folder });
     symlinkSync('/dev/zero', join(folder, 'zero'));
     for (const name of ['pipe', 'zero']) {
       expect(readText(join(folder, name))).toEqual({ problem: 'it is a pipe or a device' });
