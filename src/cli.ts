@@ -1,13 +1,11 @@
 #!/usr/bin/env node
-import { existsSync, readFileSync, writeFileSync } from 'node:fs';
-import { dirname } from 'node:path';
+import { existsSync, readFileSync } from 'node:fs';
 import { performance } from 'node:perf_hooks';
 import process from 'node:process';
 import { EXIT_STATUS, STATUS_OF_SIGNAL } from './commands/exit-status.js';
 import { runProgram } from './commands/program.js';
 import type { Shell } from './commands/shell.js';
-import { makeFolder } from './execution/make-folder.js';
-import type { TextOrProblem } from './study/read-text.js';
+import { readText, reasonOf, writeText } from './commands/text-files.js';
 
 // The only file that touches the process: it makes the real shell, runs one command line and sets the exit status.
 
@@ -39,47 +37,6 @@ process.stdout.on('error', (error: NodeJS.ErrnoException) => {
 process.on('exit', (status) => {
   if (status === EXIT_STATUS.done && !isPrinted) process.exitCode = EXIT_STATUS.input;
 });
-
-const REASONS: Readonly<Record<string, string>> = {
-  ENOENT: 'no such file',
-  EISDIR: 'it is a folder',
-  EACCES: 'no permission',
-  EPERM: 'no permission',
-  EEXIST: 'it is there already',
-  ENOTDIR: 'a part of its path is a file',
-  ENOSPC: 'no space is left',
-};
-
-/** Where a folder is to be made, two codes mean something else than for a file. */
-const FOLDER_REASONS: Readonly<Record<string, string>> = {
-  ENOENT: 'no folder can be made there',
-  EEXIST: 'a part of its path is a file',
-};
-
-function reasonOf(error: unknown): string {
-  const { code = '', syscall = '' }: Partial<NodeJS.ErrnoException> = error instanceof Error ? error : {};
-  const reason = syscall === 'mkdir' ? (FOLDER_REASONS[code] ?? REASONS[code]) : REASONS[code];
-  return reason ?? (error instanceof Error ? error.message : String(error));
-}
-
-function readText(path: string): TextOrProblem {
-  try {
-    return { text: new TextDecoder('utf-8', { fatal: true }).decode(readFileSync(path)) };
-  } catch (error) {
-    if (error instanceof TypeError) return { problem: 'it is no UTF-8 text' };
-    return { problem: reasonOf(error) };
-  }
-}
-
-function writeText(path: string, text: string, flag: 'wx' | 'w'): string | null {
-  try {
-    makeFolder(dirname(path));
-    writeFileSync(path, text, { flag });
-    return null;
-  } catch (error) {
-    return reasonOf(error);
-  }
-}
 
 const shell: Shell = {
   out: (text) => process.stdout.write(text),

@@ -7,6 +7,8 @@ export const EXIT_STATUS = {
   input: 2,
   /** The run ended with blocks missing, or its results could not be written. */
   blocksMissing: 5,
+  /** `status`: the run goes on. */
+  running: 6,
   /** `verify` found what is not as it was written, or not computed the same again. */
   different: 7,
   hungUp: 129,

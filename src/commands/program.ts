@@ -9,6 +9,7 @@ Exit status:
   1  a fault of this program, with its stack and how to report it
   2  command line, study or input
   5  the run ended with blocks missing, or results that could not be written
+  6  status: the run goes on
   7  verify found something that is not as it was
   129, 130, 143  interrupted (hang-up, Ctrl-C, termination)
 `;
@@ -79,6 +80,7 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .option('--replace', 'discard what another run left in the folder')
     .option('--json', 'one JSON document in place of the table')
     .option('--quiet', 'results and faults only')
+    .option('--log <file>', 'append a JSON object per line: start, progress every minute, notes, end')
     .addHelpText('after', '\nExample: motleybank run studies/demo.yaml --out results/demo')
     .action(async (study: string, options: RunFlags) => {
       const { runCommand } = await import('./run.js');
@@ -120,6 +122,16 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
       const { traceCommand } = await import('./trace.js');
       const { every: everyS, ...rest } = options;
       status = await traceCommand({ source, everyS, ...rest }, shellFor());
+    });
+
+  program
+    .command('status <folder>')
+    .description('tell from the folder of a run alone how it stands: running, complete, or ended with blocks missing')
+    .option('--json', 'one JSON document in place of the lines')
+    .addHelpText('after', '\nExample: motleybank status results/demo')
+    .action(async (folder: string, options: { json?: boolean }) => {
+      const { statusCommand } = await import('./status.js');
+      status = await statusCommand({ folder, ...options }, shellFor(), Date.now());
     });
 
   program
@@ -178,6 +190,7 @@ interface RunFlags {
   readonly replace?: boolean;
   readonly json?: boolean;
   readonly quiet?: boolean;
+  readonly log?: string;
 }
 
 interface TraceFlags {

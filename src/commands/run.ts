@@ -1,6 +1,6 @@
 import { availableParallelism } from 'node:os';
 import { basename, join, parse } from 'node:path';
-import { type Execution, executeRun } from '../execution/execute-run.js';
+import { type ExecuteOptions, type Execution, executeRun } from '../execution/execute-run.js';
 import { FileOutcomes } from '../execution/file-outcomes.js';
 import { isOfTheMachine } from '../execution/folder-lost.js';
 import { FolderRefused } from '../execution/folder-refused.js';
@@ -8,7 +8,9 @@ import { LostBlock } from '../execution/lost-block.js';
 import { Progress } from '../execution/progress.js';
 import { refuseOtherRun } from '../execution/refuse-other-run.js';
 import { blockFile, RUN_FILE, RunFolder } from '../execution/run-folder.js';
+import { RunLog } from '../execution/run-log.js';
 import { RunRecord, type SessionEnd } from '../execution/run-record.js';
+import { isSystemError } from '../execution/system-error.js';
 import { blockCount, TWIN_BLOCK } from '../outcomes/block.js';
 import { renderJson } from '../output/json-table.js';
 import { renderTable } from '../output/table.js';
@@ -21,6 +23,7 @@ import { EXIT_STATUS, type ExitStatus, STATUS_OF_SIGNAL } from './exit-status.js
 import { FAILED_FILE, listFailedBanks, renderFailedBanks } from './failed-banks.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
 import { renderClosing, renderEarlyEnd } from './run-messages.js';
+import { RunWatch } from './run-watch.js';
 import type { Shell } from './shell.js';
 
 /** What `run` is told on the command line. */
@@ -43,10 +46,14 @@ export interface RunOptions {
   readonly json?: boolean | undefined;
   /** Results and faults only. */
   readonly quiet?: boolean | undefined;
+  /** File to which a JSON object per line is appended. */
+  readonly log?: string | undefined;
 }
 
 /** All that a run leaves, to be discarded with `--replace`; anything else in the folder stays. */
 const LEFT_BY_A_RUN = [...Object.values(RUN_FILE), ...Object.values(RESULT_FILES), FAILED_FILE];
+/** Characters: four bytes each at most, and no file system has names of more than 255. */
+const LONGEST_KEPT_NAME = 60;
 /** Many times what a bank takes over decades, and short against a night. */
 export const STALL_MINUTES = 10;
 /** Compiled thread entry. */
@@ -96,15 +103,27 @@ async function runInFolder(
     write: options.quiet ? () => undefined : shell.err,
     terminal: shell.isTerminal.err,
     nowMs: shell.now,
+    onNote: (text) => log.write({ event: 'note', text }),
   });
+  const log = openLog(options.log, progress);
   if (await folder.isStudyDamaged()) progress.note(`${RUN_FILE.resolved} is not as it was written; writing it again`);
   const inputs = await keepStudy(loaded, folder);
   const record = await RunRecord.begin(folder, threads, new Date());
+  log.write({
+    event: 'started',
+    study: loaded.file,
+    folder: folder.path,
+    engine: ENGINE,
+    seed: study.seed,
+    threads,
+    instances: study.instances,
+    candidates: [...keys.keys()],
+  });
   const stop = shell.interruption();
   const stallMs = (options.stallMinutes ?? STALL_MINUTES) * 60_000;
   const mayFailFraction = (options.mayFailPercent ?? 0) / 100;
   const task = { study, keys, folder, workerFile, threads, stallMs, mayFailFraction, stop, progress };
-  const computed = await executeRun(task);
+  const computed = await executeWatched(task, log);
   const hasResults = computed.instances > 0 && endOf(computed) !== 'failed';
   const unwritten = await troubleIn(async () => {
     if (!hasResults) return;
@@ -117,6 +136,14 @@ async function runInFolder(
   const durationMs = shell.now() - startMs;
   // Nothing depends on the record: where it cannot be written, what stopped that has been told.
   await troubleIn(() => record.end(end, durationMs / 1000));
+  log.write({
+    event: 'ended',
+    how: end,
+    instances: execution.instances,
+    blocks_missing: execution.missing,
+    duration_s: Number((durationMs / 1000).toFixed(3)),
+    ...(execution.failure instanceof Error && { failure: execution.failure.message }),
+  });
   if (end === 'complete') {
     if (!options.quiet) shell.err(renderClosing(study, execution, { durationMs, threads, folder: folder.path }));
     return EXIT_STATUS.done;
@@ -141,6 +168,29 @@ async function troubleIn(deed: () => Promise<void>): Promise<Error | undefined> 
   }
 }
 
+/** @throws FolderRefused if the log cannot be written */
+function openLog(path: string | undefined, progress: Progress): RunLog {
+  const log = new RunLog(path, (reason) => progress.line(`the log goes no further: ${reason}`));
+  try {
+    log.open();
+    return log;
+  } catch (error) {
+    if (!isSystemError(error)) throw error;
+    throw new FolderRefused(`${path} cannot be written: ${error.message}`);
+  }
+}
+
+/** Computes what is missing; every minute the screen and the log are told how it goes. */
+async function executeWatched(options: ExecuteOptions, log: RunLog): Promise<Execution> {
+  const watch = new RunWatch(options.study, options.folder, options.progress, log);
+  watch.start();
+  try {
+    return await executeRun({ ...options, onFinished: (task, isComputed) => watch.finished(task, isComputed) });
+  } finally {
+    await watch.stop();
+  }
+}
+
 /** A thread that ends and a disk that is full are the machine's; anything else that fails is ours. */
 function endOf({ failure, missing }: Execution): Exclude<SessionEnd, null> {
   if (failure instanceof LostBlock || isOfTheMachine(failure)) return 'blocks missing';
@@ -155,11 +205,16 @@ async function keepStudy({ text, study, inputs }: LoadedStudy, folder: RunFolder
   await folder.remove(RUN_FILE.inputs);
   const names: string[] = [];
   for (const [index, input] of inputs.entries()) {
-    const name = `${RUN_FILE.inputs}/${String(index + 1).padStart(2, '0')}-${basename(input.path)}`;
+    const name = `${RUN_FILE.inputs}/${String(index + 1).padStart(2, '0')}-${portableName(input.path)}`;
     await folder.write(name, input.text);
     names.push(name);
   }
   return names;
+}
+
+/** The end of a file's name in characters that names may have on every system. */
+function portableName(path: string): string {
+  return [...basename(path).replace(/[^\p{L}\p{M}\p{N}._ -]/gu, '_')].slice(-LONGEST_KEPT_NAME).join('');
 }
 
 /** Answers the questions and writes the answers. @returns what is to be printed */

@@ -23,6 +23,8 @@ export interface ExecuteOptions {
   /** Aborted, the run ends after the blocks in flight. */
   readonly stop: AbortSignal;
   readonly progress: Progress;
+  /** Told of every block that is in the folder: those found there first, then each that is computed. */
+  readonly onFinished?: ((task: BlockTask, isComputed: boolean) => void) | undefined;
 }
 
 export interface Execution {
@@ -49,6 +51,7 @@ export async function executeRun(options: ExecuteOptions): Promise<Execution> {
   for (const task of plan.damaged) {
     progress.note(`${blockFile(task)} is not as it was written; computing it again`);
   }
+  for (const task of plan.finished) options.onFinished?.(task, false);
   const computed: FinishedBlock[] = [];
   const before = failuresWithin(study, plan.finished, study.instances);
   const mayFail = (key: string) => allowed - before.filter(({ candidate }) => candidate === key).length;
@@ -72,7 +75,7 @@ function damagedLinesNote(lines: readonly number[]): string {
 }
 
 async function computeMissing(
-  { study, keys, folder, workerFile, threads, stallMs, stop, progress }: ExecuteOptions,
+  { study, keys, folder, workerFile, threads, stallMs, stop, progress, onFinished }: ExecuteOptions,
   missing: readonly BlockTask[],
   computed: FinishedBlock[],
   mayFail: (candidate: string) => number,
@@ -95,6 +98,7 @@ async function computeMissing(
       keep: async (task, block) => {
         await folder.keep(task, keys.get(task.candidate) ?? '', instancesDue(study, task.block), block);
         computed.push(block.failed === undefined ? task : { ...task, failed: block.failed });
+        onFinished?.(task, true);
         progress.update(computed.length, missing.length);
       },
       mayFail,

@@ -126,3 +126,13 @@ async function holderOf(pid: number): Promise<Holder> {
   const numbering = await readlink('/proc/self/ns/pid').catch(() => null);
   return { pid, host: hostname(), boot: boot?.trim() ?? null, numbering, started };
 }
+
+/** Who holds a folder, or held it when their process ended; nothing is touched. */
+export async function lookForHolders(
+  folder: string,
+): Promise<readonly { readonly pid: number; readonly host: string; readonly live: boolean }[]> {
+  const locks = (await readdir(folder)).filter(isLockFile);
+  const holders = await Promise.all(locks.map((name) => readHolder(join(folder, name))));
+  const known = holders.filter((holder) => holder !== undefined);
+  return Promise.all(known.map(async (holder) => ({ ...holder, live: await isLive(holder) })));
+}

@@ -92,6 +92,17 @@ function resultFiles(folder: string): Record<string, string> {
 }
 
 describe('run', () => {
+  it('keeps its input files under names that every system can have, however theirs are spelt', async () => {
+    const study = studyFile(
+      STUDY.replace('duties/week.csv', `duties/h\u00fctte "${'x'.repeat(200)}": 2.csv`.replace(/^(.*)$/, "'$1'")),
+    );
+    const long = `h\u00fctte "${'x'.repeat(200)}": 2.csv`;
+    writeFileSync(join(study, '..', 'duties', long), 'time_h,load_W,charge_W\n0,100,0\n12,0,500\n');
+    const out = scratch.next();
+    expect(await run({ study, out })).toMatchObject({ status: 0 });
+    expect(readdirSync(join(out, 'inputs'))).toEqual([`01-${'x'.repeat(52)}__ 2.csv`]);
+  });
+
   it('leaves the folder that the README promises and prints the table', async () => {
     const study = studyFile();
     const out = scratch.next();
