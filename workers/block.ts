@@ -1,14 +1,17 @@
 import { performance } from 'node:perf_hooks';
 import { workerData } from 'piscina';
-import { type BlockReply, type BlockTask, blockInstances, outcomeLayout, TWIN_BLOCK } from '../src/outcomes/block.js';
+import {
+  type BlockOrder,
+  type BlockReply,
+  blockInstances,
+  type FailedInstance,
+  outcomeLayout,
+  TWIN_BLOCK,
+} from '../src/outcomes/block.js';
 import { encodeBlock } from '../src/outcomes/block-csv.js';
 import { outcomeColumns } from '../src/outcomes/columns.js';
-import {
-  type PreparedCandidate,
-  prepareCandidate,
-  simulateInstance,
-  simulateTwin,
-} from '../src/simulation/simulate-instance.js';
+import { attemptInstance } from '../src/simulation/attempt-instance.js';
+import { type PreparedCandidate, prepareCandidate, simulateTwin } from '../src/simulation/simulate-instance.js';
 import type { Study } from '../src/study/study.js';
 
 const study: Study = workerData;
@@ -24,21 +27,26 @@ function preparedCandidate(key: string): PreparedCandidate {
 }
 
 /** Computes one block; the study is in the thread already. */
-export default function computeBlock({ candidate: key, block }: BlockTask): BlockReply {
+export default function computeBlock({ task: { candidate: key, block }, beats }: BlockOrder): BlockReply {
   const startMs = performance.now();
   const range = blockInstances(block, study);
   // Getting a candidate ready takes its twin through its course: a fault before the first instance is the twin's.
   let instance = 0;
+  const failed: FailedInstance[] = [];
   function* rows(candidate: PreparedCandidate) {
     for (instance = range.first; instance <= range.last; instance++) {
-      yield block === TWIN_BLOCK ? simulateTwin(candidate) : simulateInstance(candidate, instance);
+      Atomics.add(beats, 0, 1);
+      const row = block === TWIN_BLOCK ? simulateTwin(candidate) : attemptInstance(candidate, instance);
+      if (row instanceof Error) failed.push({ instance, message: row.message });
+      else yield row;
     }
   }
   try {
     const candidate = preparedCandidate(key);
     const columns = outcomeColumns(outcomeLayout(study, candidate.candidate));
-    const csv = encodeBlock(columns, range, rows(candidate));
-    return { csv, computeS: (performance.now() - startMs) / 1000 };
+    const csv = encodeBlock(columns, range, rows(candidate), failed);
+    const computeS = (performance.now() - startMs) / 1000;
+    return failed.length === 0 ? { csv, computeS } : { csv, computeS, failed };
   } catch (error) {
     // Classes do not cross threads, and an instance fails the same way every time: the address is what helps.
     const { message, stack = message } = error instanceof Error ? error : new Error(String(error));

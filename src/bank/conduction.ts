@@ -1,3 +1,4 @@
+import { NotConverged } from '../mathematics/not-converged.js';
 import type { Bank } from './bank.js';
 import { type BankState, BOTH_WAYS, DISCHARGE_ONLY, NO_WAY } from './bank-state.js';
 import { equalisedMap } from './equalised-map.js';
@@ -131,7 +132,7 @@ export function settleConduction(
     if (wrong < 0) return;
     state.conduction[wrong] = state.conduction[wrong] === FORWARD ? LEAKING : FORWARD;
   }
-  throw new RangeError(`conduction of ${state.conduction.length} chains did not settle`);
+  throw new NotConverged(`conduction of ${state.conduction.length} chains did not settle`);
 }
 
 /** Currents and bank voltage of the present pattern, without asking whether its rectifiers stand right. */

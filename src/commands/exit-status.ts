@@ -5,10 +5,22 @@ export const EXIT_STATUS = {
   ourFault: 1,
   /** Command line, study or input. */
   input: 2,
-  /** The run ended with blocks missing. */
+  /** The run ended with blocks missing, or its results could not be written. */
   blocksMissing: 5,
+  /** `status`: the run goes on. */
+  running: 6,
+  /** `verify` found what is not as it was written, or not computed the same again. */
+  different: 7,
+  hungUp: 129,
   interrupted: 130,
   terminated: 143,
 } as const;
 
 export type ExitStatus = (typeof EXIT_STATUS)[keyof typeof EXIT_STATUS];
+
+/** Statuses of a command that was interrupted, by the signal. */
+export const STATUS_OF_SIGNAL = {
+  SIGHUP: EXIT_STATUS.hungUp,
+  SIGINT: EXIT_STATUS.interrupted,
+  SIGTERM: EXIT_STATUS.terminated,
+} as const;

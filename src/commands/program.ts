@@ -8,8 +8,10 @@ Exit status:
   0  done
   1  a fault of this program, with its stack and how to report it
   2  command line, study or input
-  5  the run ended with blocks missing
-  130, 143  interrupted (Ctrl-C, termination)
+  5  the run ended with blocks missing, or results that could not be written
+  6  status: the run goes on
+  7  verify found something that is not as it was
+  129, 130, 143  interrupted (hang-up, Ctrl-C, termination)
 `;
 
 const TRACE_HELP = `
@@ -69,13 +71,27 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .addOption(new Option('--threads <count>', 'threads; never changes a result').argParser(wholeNumber(1, 1024)))
     .addOption(new Option('--seed <seed>', "in place of the study's").argParser(seedText))
     .addOption(new Option('--instances <count>', "in place of the study's").argParser(wholeNumber(1, 10_000_000)))
+    .addOption(
+      new Option(
+        '--stall-minutes <minutes>',
+        'a thread that finishes no bank for so long is ended, and its block tried again (default: 10)',
+      ).argParser(positiveNumber),
+    )
+    .addOption(
+      new Option(
+        '--may-fail <percent>',
+        'banks of each candidate that may fail to converge; they are listed and left out (default: 0)',
+      ).argParser(percentage),
+    )
     .option('--replace', 'discard what another run left in the folder')
     .option('--json', 'one JSON document in place of the table')
     .option('--quiet', 'results and faults only')
+    .option('--log <file>', 'append a JSON object per line: start, progress every minute, notes, end')
     .addHelpText('after', '\nExample: motleybank run studies/demo.yaml --out results/demo')
     .action(async (study: string, options: RunFlags) => {
       const { runCommand } = await import('./run.js');
-      status = await runCommand({ study, ...options }, shellFor());
+      const { mayFail: mayFailPercent, ...rest } = options;
+      status = await runCommand({ study, mayFailPercent, ...rest }, shellFor());
     });
 
   program
@@ -117,6 +133,38 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     });
 
   program
+    .command('status <folder>')
+    .description('tell from the folder of a run alone how it stands: running, complete, or ended with blocks missing')
+    .option('--json', 'one JSON document in place of the lines')
+    .addHelpText('after', '\nExample: motleybank status results/demo')
+    .action(async (folder: string, options: { json?: boolean }) => {
+      const { statusCommand } = await import('./status.js');
+      status = await statusCommand({ folder, ...options }, shellFor(), Date.now());
+    });
+
+  program
+    .command('verify <folder>')
+    .description('compare a folder of results with its checksums, compute some of its blocks again')
+    .addOption(
+      new Option('--blocks <count>', 'blocks to be computed again, evenly spread (default: 8)').argParser(
+        wholeNumber(0, 10_000_000),
+      ),
+    )
+    .addOption(new Option('--threads <count>', 'threads; never changes a result').argParser(wholeNumber(1, 1024)))
+    .option('--json', 'one JSON document in place of the lines')
+    .addHelpText(
+      'after',
+      `
+Writes nothing. Exit status 0 if all is identical, 7 if something is not.
+
+Example: motleybank verify results/demo --blocks 20`,
+    )
+    .action(async (folder: string, options: { blocks?: number; threads?: number; json?: boolean }) => {
+      const { verifyCommand } = await import('./verify.js');
+      status = await verifyCommand({ folder, ...options }, shellFor());
+    });
+
+  program
     .command('new <file>')
     .description('write a first study of a few lines; never overwrites')
     .option('--quiet', 'faults only')
@@ -145,9 +193,12 @@ interface RunFlags {
   readonly threads?: number;
   readonly seed?: string;
   readonly instances?: number;
+  readonly stallMinutes?: number;
+  readonly mayFail?: number;
   readonly replace?: boolean;
   readonly json?: boolean;
   readonly quiet?: boolean;
+  readonly log?: string;
 }
 
 interface TraceFlags {
@@ -173,6 +224,12 @@ function seedText(text: string): string {
   // A text that begins with a hyphen is the next option: the seed was left out.
   if (isSeed(text) && !text.startsWith('-')) return text;
   throw new InvalidArgumentError(`It must be ${SEED_RULE}.`);
+}
+
+function percentage(text: string): number {
+  const value = Number(text);
+  if (text.trim() !== '' && value >= 0 && value <= 100) return value;
+  throw new InvalidArgumentError('It must be a number from 0 to 100.');
 }
 
 function positiveNumber(text: string): number {

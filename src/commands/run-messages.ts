@@ -18,12 +18,17 @@ export function renderClosing(
 }
 
 /** What is said of a run that ended early. */
-export function renderEarlyEnd(study: Study, { instances, missing, failure }: Execution, folder: string): string {
+export function renderEarlyEnd(
+  study: Study,
+  { instances, missing, failure }: Execution,
+  { folder, areResultsWritten }: { folder: string; areResultsWritten: boolean },
+): string {
   const how = failure === undefined ? 'interrupted' : 'ended';
+  const results = areResultsWritten ? 'the results are of those' : 'the results could not be written';
   const done =
     instances === 0
       ? 'before every candidate had a block: nothing to summarise'
-      : `with ${instances} of ${study.instances} banks in every candidate: the results are of those`;
+      : `with ${instances} of ${study.instances} banks in every candidate: ${results}`;
   return `${how} ${done}; ${counted(missing, 'block')} missing in ${folder}; the same command takes them up\n`;
 }
 

@@ -21,6 +21,9 @@ export interface Shell {
   readonly color: boolean;
   /** Milliseconds of a clock that never goes back. */
   readonly now: () => number;
-  /** Aborted by SIGINT or SIGTERM, the name being its reason. A second signal ends the process. */
-  readonly interruption: AbortSignal;
+  /**
+   * From the first call on SIGINT, SIGTERM and SIGHUP end the process no more: they abort the signal returned, the name
+   * being its reason. A second one ends the process at once. Only for commands that heed it.
+   */
+  readonly interruption: () => AbortSignal;
 }

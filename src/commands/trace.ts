@@ -1,5 +1,7 @@
 import { join, parse } from 'node:path';
+import { sha256 } from '../execution/checksum.js';
 import { writeDurably } from '../execution/durable-file.js';
+import { readJournal } from '../execution/journal.js';
 import { makeFolder } from '../execution/make-folder.js';
 import { RUN_FILE } from '../execution/run-folder.js';
 import { errorCode } from '../execution/system-error.js';
@@ -76,13 +78,14 @@ function studyOf(source: string, shell: Shell): Study | null {
     shell.err(`${resolved} cannot be read: ${read.problem}\n`);
     return null;
   }
-  try {
-    const study: Study = JSON.parse(read.text);
-    return study;
-  } catch {
-    shell.err(`${resolved} must be JSON as a run left it\n`);
+  const journal = shell.readText(join(source, RUN_FILE.journal));
+  const checksum = 'text' in journal ? readJournal(journal.text).study : null;
+  if (sha256(read.text) !== checksum) {
+    shell.err(`${resolved} must be as the run left it, by its checksum in ${RUN_FILE.journal}\n`);
     return null;
   }
+  const study: Study = JSON.parse(read.text);
+  return study;
 }
 
 function problemOf(study: Study, key: string, fromCycle: number, toCycle: number, everyS: number): string | null {

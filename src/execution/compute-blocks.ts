@@ -1,4 +1,4 @@
-import type { BlockReply, BlockTask } from '../outcomes/block.js';
+import type { BlockReply, BlockTask, FailedInstance } from '../outcomes/block.js';
 import { InstanceFault } from './instance-fault.js';
 
 /** A block as a thread returned it. */
@@ -6,6 +6,8 @@ export interface ComputedBlock {
   readonly csv: string;
   /** Time of one thread, s. */
   readonly computeS: number;
+  /** Instances without an outcome; absent if there are none. */
+  readonly failed?: readonly FailedInstance[];
 }
 
 export interface ComputeOptions {
@@ -16,6 +18,8 @@ export interface ComputeOptions {
   readonly run: (task: BlockTask) => Promise<BlockReply>;
   /** Keeps a block for good; the next block of the same thread waits for it. */
   readonly keep: (task: BlockTask, block: ComputedBlock) => Promise<void>;
+  /** Instances of a candidate that may still fail; one more ends the run. */
+  readonly mayFail: (candidate: string) => number;
   /** Once aborted, no further block is begun; those in flight are finished and kept. */
   readonly stop: AbortSignal;
 }
@@ -28,15 +32,22 @@ export interface ComputeOptions {
  *
  * @throws InstanceFault or LostBlock, the first that occurs, after the blocks in flight are kept
  */
-export async function computeBlocks({ tasks, inFlight, run, keep, stop }: ComputeOptions): Promise<void> {
+export async function computeBlocks({ tasks, inFlight, run, keep, mayFail, stop }: ComputeOptions): Promise<void> {
   const failure = new AbortController();
   const waiting = tasks.values();
+  const failures = new Map<string, number>();
   const lane = async () => {
     while (!stop.aborted && !failure.signal.aborted) {
       const next = waiting.next();
       if (next.done) return;
       const reply = await run(next.value);
       if ('fault' in reply) throw new InstanceFault(next.value.candidate, reply.fault);
+      if (reply.failed !== undefined) {
+        const { candidate } = next.value;
+        const count = (failures.get(candidate) ?? 0) + reply.failed.length;
+        failures.set(candidate, count);
+        if (count > mayFail(candidate)) throw InstanceFault.ofFailed(candidate, reply.failed);
+      }
       await keep(next.value, reply);
     }
   };

@@ -8,11 +8,20 @@ import { OutcomeFault } from '../outcomes/outcome-fault.js';
 import { columnIndex, type OutcomeStore } from '../outcomes/outcome-store.js';
 import type { Study } from '../study/study.js';
 import { UNFINISHED } from './durable-file.js';
+import type { CandidateFailure } from './failed-instances.js';
+import { FolderLost } from './folder-lost.js';
 import { blockFile, RUN_FILE, type RunFolder } from './run-folder.js';
 
 const BYTES = Float64Array.BYTES_PER_ELEMENT;
 /** Values held while rows are turned into columns: 8 MiB. */
 const BATCH_VALUES = 1 << 20;
+
+interface FileOutcomesOptions {
+  /** Instances that have no row; every value of theirs is absent. */
+  readonly failed?: readonly CandidateFailure[];
+  /** Values held while rows are turned into columns; no fewer than those of a block. */
+  readonly batchValues?: number;
+}
 
 /**
  * The outcomes in a run folder. Blocks hold rows and summaries want columns; so the blocks of a candidate are read and
@@ -25,13 +34,17 @@ export class FileOutcomes implements OutcomeStore {
   readonly #columns: ReadonlyMap<string, readonly OutcomeColumn[]>;
   readonly #byColumn = new Map<string, Promise<FileHandle>>();
   readonly #batchValues: number;
+  readonly #failed: readonly CandidateFailure[];
   readonly instances: number;
 
-  /**
-   * @param instances those to be read: all of the study, or as many as every candidate has
-   * @param batchValues values held while rows are turned into columns; no fewer than those of a block
-   */
-  constructor(folder: RunFolder, study: Study, instances: number, batchValues = BATCH_VALUES) {
+  /** @param instances those to be read: all of the study, or as many as every candidate has */
+  constructor(
+    folder: RunFolder,
+    study: Study,
+    instances: number,
+    { failed = [], batchValues = BATCH_VALUES }: FileOutcomesOptions = {},
+  ) {
+    this.#failed = failed;
     this.#batchValues = batchValues;
     this.#folder = folder;
     this.#sizing = { instances, blockSize: study.blockSize };
@@ -100,10 +113,12 @@ export class FileOutcomes implements OutcomeStore {
       rows = 0;
     };
     for (let block = 1; block <= blockCount(this.#sizing); block++) {
-      const decoded = await this.#rows(candidate, block);
-      if (rows + decoded.length > height) await flush();
-      for (const { values } of decoded) {
-        for (let column = 0; column < width; column++) batch[column * height + rows] = values[column] ?? Number.NaN;
+      const { first, last } = blockInstances(block, this.#sizing);
+      const decoded = new Map((await this.#rows(candidate, block)).map(({ instance, values }) => [instance, values]));
+      if (rows + last - first + 1 > height) await flush();
+      for (let instance = first; instance <= last; instance++) {
+        const values = decoded.get(instance);
+        for (let column = 0; column < width; column++) batch[column * height + rows] = values?.[column] ?? Number.NaN;
         rows++;
       }
     }
@@ -113,9 +128,10 @@ export class FileOutcomes implements OutcomeStore {
   async #rows(candidate: string, block: number): Promise<OutcomeRow[]> {
     const name = blockFile({ candidate, block });
     const csv = await this.#folder.read(name);
-    if (csv === undefined) throw new OutcomeFault(`${name} is gone`);
+    if (csv === undefined) throw new FolderLost(`${join(this.#folder.path, name)} was removed while the run went on`);
     try {
-      return decodeBlock(this.columns(candidate), blockInstances(block, this.#sizing), csv);
+      const failed = this.#failed.filter((failure) => failure.candidate === candidate);
+      return decodeBlock(this.columns(candidate), blockInstances(block, this.#sizing), csv, failed);
     } catch (error) {
       if (error instanceof OutcomeFault) throw new OutcomeFault(`${name}: ${error.message}`);
       throw error;

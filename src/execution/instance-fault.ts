@@ -1,3 +1,5 @@
+import type { FailedInstance } from '../outcomes/block.js';
+
 /** An instance that has no outcome because its simulation failed: a fault of ours, with its address. */
 export class InstanceFault extends Error {
   override readonly name = 'InstanceFault';
@@ -11,5 +13,15 @@ export class InstanceFault extends Error {
     this.instance = fault.instance;
     // The place in the simulation, not the place where the reply was read.
     this.stack = fault.stack;
+  }
+
+  /** The fault of the first of some instances that did not converge. */
+  static ofFailed(candidate: string, [first]: readonly FailedInstance[]): InstanceFault {
+    const { instance = 0, message = '' } = first ?? {};
+    return new InstanceFault(candidate, {
+      instance,
+      message,
+      stack: `NotConverged: ${message}\n    in ${candidate}, instance ${instance}`,
+    });
   }
 }

@@ -1,5 +1,6 @@
 import { randomUUID } from 'node:crypto';
-import { readdir, readFile, rm } from 'node:fs/promises';
+import { existsSync } from 'node:fs';
+import { readdir, readFile, readlink, rm } from 'node:fs/promises';
 import { hostname } from 'node:os';
 import { join } from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
@@ -14,6 +15,10 @@ const PAUSE_MS = 30;
 interface Holder {
   readonly pid: number;
   readonly host: string;
+  /** Since when the machine is up; process numbers begin anew then. Null where the system gives none. */
+  readonly boot: string | null;
+  /** Where the process number is known: containers of one machine count theirs apart. Null as above. */
+  readonly numbering: string | null;
   /** Mark of the process's start, because numbers of processes are used again; null where the system gives none. */
   readonly started: string | null;
 }
@@ -23,9 +28,15 @@ export function isLockFile(name: string): boolean {
   return /^run\.[0-9a-f-]{36}\.lock$/.test(name);
 }
 
+/** A folder that is held by this process. */
+export interface FolderLock {
+  /** Whether the folder is still there, under its name: it may be removed or moved away while it is held. */
+  readonly isHeld: () => boolean;
+  readonly release: () => Promise<void>;
+}
+
 /**
- * Takes a folder for this process until the function returned is called. Locks of processes that have ended are
- * removed.
+ * Takes a folder for this process until it is released. Locks of processes that have ended are removed.
  *
  * Every run puts down a lock of its own name first and looks for others afterwards, so of two runs at least one sees
  * the other, and no name is ever used twice, so nobody removes a lock that has just been taken. Of several that come
@@ -33,15 +44,17 @@ export function isLockFile(name: string): boolean {
  *
  * @throws FolderRefused if another run holds the folder
  */
-export async function takeLock(folder: string): Promise<() => Promise<void>> {
+export async function takeLock(folder: string): Promise<FolderLock> {
   const mine = `run.${randomUUID()}.lock`;
-  const release = () => rm(join(folder, mine), { force: true });
+  const path = join(folder, mine);
+  // Where a lock cannot be removed it is one of a process that has ended, and keeps nobody out.
+  const release = () => rm(path, { force: true }).catch(() => undefined);
   try {
-    await writeDurably(join(folder, mine), JSON.stringify(await holderOf(process.pid)));
+    await writeDurably(path, JSON.stringify(await holderOf(process.pid)));
     for (let look = 1; ; look++) {
       const others = await liveLocks(folder, mine);
       const [other] = others;
-      if (other === undefined) return release;
+      if (other === undefined) return { isHeld: () => existsSync(path), release };
       if (look === LOOKS || others.some(({ name }) => name < mine)) {
         const { pid, host } = other.holder;
         throw new FolderRefused(
@@ -78,17 +91,21 @@ async function readHolder(path: string): Promise<Holder | undefined> {
   try {
     const value: Partial<Holder> | null = JSON.parse(await readFile(path, 'utf8'));
     if (typeof value?.pid !== 'number' || typeof value.host !== 'string') return undefined;
-    return { pid: value.pid, host: value.host, started: value.started ?? null };
+    const { pid, host, boot = null, numbering = null, started = null } = value;
+    return { pid, host, boot, numbering, started };
   } catch (error) {
     if (error instanceof SyntaxError || errorCode(error) === 'ENOENT') return undefined;
     throw error;
   }
 }
 
-/** A process on another machine cannot be asked and counts as live. */
+/** A process on another machine or in another container cannot be asked and counts as live. */
 async function isLive(holder: Holder): Promise<boolean> {
   if (holder.host !== hostname()) return true;
-  return isProcess(holder.pid) && (await holderOf(holder.pid)).started === holder.started;
+  const now = await holderOf(holder.pid);
+  if (holder.boot !== now.boot) return false;
+  if (holder.numbering !== now.numbering) return true;
+  return isProcess(holder.pid) && holder.started === now.started;
 }
 
 function isProcess(pid: number): boolean {
@@ -105,5 +122,17 @@ async function holderOf(pid: number): Promise<Holder> {
   // Linux: field 22 of the process's stat file, counted after the name in brackets, which may hold blanks.
   const stat = await readFile(`/proc/${pid}/stat`, 'utf8').catch(() => '');
   const started = stat.slice(stat.lastIndexOf(')') + 2).split(' ')[19] ?? null;
-  return { pid, host: hostname(), started };
+  const boot = await readFile('/proc/sys/kernel/random/boot_id', 'utf8').catch(() => null);
+  const numbering = await readlink('/proc/self/ns/pid').catch(() => null);
+  return { pid, host: hostname(), boot: boot?.trim() ?? null, numbering, started };
+}
+
+/** Who holds a folder, or held it when their process ended; nothing is touched. */
+export async function lookForHolders(
+  folder: string,
+): Promise<readonly { readonly pid: number; readonly host: string; readonly live: boolean }[]> {
+  const locks = (await readdir(folder)).filter(isLockFile);
+  const holders = await Promise.all(locks.map((name) => readHolder(join(folder, name))));
+  const known = holders.filter((holder) => holder !== undefined);
+  return Promise.all(known.map(async (holder) => ({ ...holder, live: await isLive(holder) })));
 }

@@ -1,10 +1,18 @@
+import type { FailedInstance } from '../outcomes/block.js';
 import { type BlockTask, blockCount, blockInstances, TWIN_BLOCK } from '../outcomes/block.js';
 import type { Study } from '../study/study.js';
-import { blockFile, type RunFolder, sha256 } from './run-folder.js';
+import { sha256 } from './checksum.js';
+import { failuresWithin } from './failed-instances.js';
+import { blockFile, type RunFolder } from './run-folder.js';
+
+/** A finished block, with what it has no outcome of. */
+export interface FinishedBlock extends BlockTask {
+  readonly failed?: readonly FailedInstance[];
+}
 
 /** What a run has to do and what it finds done. */
 export interface Plan {
-  readonly finished: readonly BlockTask[];
+  readonly finished: readonly FinishedBlock[];
   readonly missing: readonly BlockTask[];
   /** Those of the missing blocks that the journal calls finished though their file is gone or altered. */
   readonly damaged: readonly BlockTask[];
@@ -28,11 +36,22 @@ export function instancesDue(study: Study, block: number): number {
 
 /**
  * Compares a study with what its folder holds. A block serves if it belongs to the candidate's simulation key, has
- * enough instances and is byte for byte what the journal says.
+ * enough instances and is byte for byte what the journal says. Where more instances of a candidate have failed than may,
+ * the blocks with failures do not serve: computing them tells the failures anew.
+ *
+ * @param allowed failed instances of each candidate
  */
-export async function planRun(study: Study, keys: ReadonlyMap<string, string>, folder: RunFolder): Promise<Plan> {
-  const entries = new Map(folder.journal.entries.map((entry) => [blockFile(entry), entry]));
-  const finished: BlockTask[] = [];
+export async function planRun(
+  study: Study,
+  keys: ReadonlyMap<string, string>,
+  folder: RunFolder,
+  allowed: number,
+): Promise<Plan> {
+  const { entries: all } = folder.journal.contents;
+  const hasTooMany = (candidate: string) =>
+    failuresWithin(study, all, study.instances).filter((failure) => failure.candidate === candidate).length > allowed;
+  const entries = new Map(all.map((entry) => [blockFile(entry), entry]));
+  const finished: FinishedBlock[] = [];
   const missing: BlockTask[] = [];
   const damaged: BlockTask[] = [];
   for (const task of allBlocks(study)) {
@@ -41,9 +60,13 @@ export async function planRun(study: Study, keys: ReadonlyMap<string, string>, f
       missing.push(task);
       continue;
     }
+    if (entry?.failed !== undefined && hasTooMany(task.candidate)) {
+      missing.push(task);
+      continue;
+    }
     const csv = await folder.read(blockFile(task));
     if (csv !== undefined && sha256(csv) === entry?.sha256) {
-      finished.push(task);
+      finished.push(entry.failed === undefined ? task : { ...task, failed: entry.failed });
     } else {
       missing.push(task);
       damaged.push(task);

@@ -4,6 +4,8 @@ export interface ProgressOptions {
   readonly terminal: boolean;
   /** Milliseconds on a clock that never goes back. */
   readonly nowMs: () => number;
+  /** Told of every note, whether the screen shows it or not. */
+  readonly onNote?: ((text: string) => void) | undefined;
 }
 
 const QUIET_MS = 60_000;
@@ -15,11 +17,15 @@ export class Progress {
   readonly #write: (text: string) => void;
   readonly #terminal: boolean;
   readonly #nowMs: () => number;
+  readonly #onNote: ProgressOptions['onNote'];
   readonly #startMs: number;
   #shownMs: number;
   #line = '';
+  #done = 0;
+  #total = 0;
 
-  constructor({ write, terminal, nowMs }: ProgressOptions) {
+  constructor({ write, terminal, nowMs, onNote }: ProgressOptions) {
+    this.#onNote = onNote;
     this.#write = write;
     this.#terminal = terminal;
     this.#nowMs = nowMs;
@@ -33,12 +39,29 @@ export class Progress {
    * @param total blocks that this session has to compute
    */
   update(done: number, total: number): void {
+    this.#done = done;
+    this.#total = total;
+    this.tick();
+  }
+
+  /** How far the session is; `leftMs` is null before its first block. */
+  get state(): {
+    readonly done: number;
+    readonly total: number;
+    readonly elapsedMs: number;
+    readonly leftMs: number | null;
+  } {
+    const [done, total] = [this.#done, this.#total];
+    const elapsedMs = this.#nowMs() - this.#startMs;
+    return { done, total, elapsedMs, leftMs: done === 0 ? null : (elapsedMs / done) * (total - done) };
+  }
+
+  /** Shows that time goes on, if nothing was shown for long enough. */
+  tick(): void {
     const nowMs = this.#nowMs();
     if (nowMs - this.#shownMs < (this.#terminal ? REDRAW_MS : QUIET_MS)) return;
     this.#shownMs = nowMs;
-    const spentMs = nowMs - this.#startMs;
-    const left = done === 0 ? '' : `, about ${clock((spentMs / done) * (total - done))} left`;
-    const line = `${done} of ${total} blocks in ${clock(spentMs)}${left}`;
+    const line = progressLine(this.state);
     if (!this.#terminal) {
       this.#write(`${line}\n`);
       return;
@@ -47,8 +70,14 @@ export class Progress {
     this.#write(`${CLEAR_LINE}${line}`);
   }
 
-  /** A line that stays. */
+  /** Something that happened: a line that stays. */
   note(text: string): void {
+    this.line(text);
+    this.#onNote?.(text);
+  }
+
+  /** A line that stays. */
+  line(text: string): void {
     this.#write(this.#line === '' ? `${text}\n` : `${CLEAR_LINE}${text}\n${this.#line}`);
   }
 
@@ -57,6 +86,14 @@ export class Progress {
     if (this.#line !== '') this.#write(CLEAR_LINE);
     this.#line = '';
   }
+}
+
+function progressLine({ done, total, elapsedMs, leftMs }: Progress['state']): string {
+  const how = `${done} of ${total} blocks in ${clock(elapsedMs)}`;
+  if (leftMs === null) return how;
+  const perMinute = (done * 60_000) / elapsedMs;
+  const rate = perMinute < 10 ? perMinute.toFixed(1) : perMinute.toFixed(0);
+  return `${how}, ${rate} a minute, about ${clock(leftMs)} left`;
 }
 
 /** Minutes and seconds, with hours if there are any: 0:07, 12:30, 1:02:05. */

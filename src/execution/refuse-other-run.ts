@@ -22,7 +22,9 @@ export async function refuseOtherRun(
   folder: RunFolder,
 ): Promise<void> {
   const isOther = (candidate: Candidate) =>
-    folder.journal.entries.some((entry) => entry.candidate === candidate.key && entry.key !== keys.get(candidate.key));
+    folder.journal.contents.entries.some(
+      (entry) => entry.candidate === candidate.key && entry.key !== keys.get(candidate.key),
+    );
   const other = study.candidates.find(isOther);
   if (other === undefined) return;
   const difference = differenceFrom(await folder.read(RUN_FILE.resolved), study, other, contentOf);

@@ -1,12 +1,14 @@
-import { createHash } from 'node:crypto';
+import { existsSync } from 'node:fs';
 import { readdir, readFile, rm } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 import { type BlockTask, TWIN_BLOCK } from '../outcomes/block.js';
+import { sha256 } from './checksum.js';
 import type { ComputedBlock } from './compute-blocks.js';
 import { UNFINISHED, writeDurably } from './durable-file.js';
+import { FolderLost } from './folder-lost.js';
 import { FolderRefused } from './folder-refused.js';
 import { Journal } from './journal.js';
-import { isLockFile, takeLock } from './lock.js';
+import { type FolderLock, isLockFile, takeLock } from './lock.js';
 import { makeFolder } from './make-folder.js';
 import { errorCode, isSystemError } from './system-error.js';
 
@@ -24,12 +26,12 @@ export const RUN_FILE = {
 export class RunFolder {
   readonly path: string;
   readonly journal: Journal;
-  readonly #release: () => Promise<void>;
+  readonly #lock: FolderLock;
 
-  private constructor(path: string, journal: Journal, release: () => Promise<void>) {
+  private constructor(path: string, journal: Journal, lock: FolderLock) {
     this.path = path;
     this.journal = journal;
-    this.#release = release;
+    this.#lock = lock;
   }
 
   /**
@@ -50,12 +52,13 @@ export class RunFolder {
 
   /** A folder that has been looked at, with its lock and its journal. */
   static async #take(path: string, discard: readonly string[]): Promise<RunFolder> {
-    const release = await takeLock(path);
+    const lock = await takeLock(path);
     try {
       for (const name of discard) await rm(join(path, name), { recursive: true, force: true });
-      return new RunFolder(path, await Journal.open(join(path, RUN_FILE.journal)), release);
+      await removeUnfinished(path);
+      return new RunFolder(path, await Journal.open(join(path, RUN_FILE.journal)), lock);
     } catch (error) {
-      await release();
+      await lock.release();
       throw error;
     }
   }
@@ -70,7 +73,9 @@ export class RunFolder {
     }
   }
 
+  /** @throws FolderLost if the folder is not there any more: it is not made again, with a part of the run in it */
   async write(name: string, text: string): Promise<void> {
+    if (!this.#lock.isHeld()) throw new FolderLost(`${this.path} was removed or moved while the run went on`);
     const path = join(this.path, name);
     makeFolder(dirname(path));
     await writeDurably(path, text);
@@ -81,16 +86,32 @@ export class RunFolder {
     await rm(join(this.path, name), { recursive: true, force: true });
   }
 
+  /** Keeps the resolved study, and its checksum in the journal. */
+  async keepStudy(text: string): Promise<void> {
+    await this.write(RUN_FILE.resolved, text);
+    const study = sha256(text);
+    if (study !== this.journal.contents.study) await this.journal.append({ study });
+  }
+
+  /** Whether the resolved study is not as a run left it. */
+  async isStudyDamaged(): Promise<boolean> {
+    const { study } = this.journal.contents;
+    if (study === null) return false;
+    const text = await this.read(RUN_FILE.resolved);
+    return text === undefined || sha256(text) !== study;
+  }
+
   /** Keeps a block: first its file, then its line in the journal. */
-  async keep(task: BlockTask, key: string, instances: number, { csv, computeS }: ComputedBlock): Promise<void> {
+  async keep(task: BlockTask, key: string, instances: number, { csv, computeS, failed }: ComputedBlock): Promise<void> {
     await this.write(blockFile(task), csv);
     const compute_s = Number(computeS.toFixed(3));
-    await this.journal.append({ ...task, key, instances, sha256: sha256(csv), compute_s });
+    const entry = { ...task, key, instances, sha256: sha256(csv), compute_s };
+    await this.journal.append(failed === undefined ? entry : { ...entry, failed });
   }
 
   async close(): Promise<void> {
     await this.journal.close();
-    await this.#release();
+    await this.#lock.release();
   }
 }
 
@@ -100,9 +121,19 @@ export function blockFile({ candidate, block }: BlockTask): string {
   return `${RUN_FILE.outcomes}/${candidate}/${name}.csv`;
 }
 
-/** Checksum as in the journal. */
-export function sha256(text: string): string {
-  return createHash('sha256').update(text).digest('hex');
+/** Removes blocks and locks that a run that ended suddenly was writing; what else it wrote is written anew. */
+async function removeUnfinished(path: string): Promise<void> {
+  const outcomes = join(path, RUN_FILE.outcomes);
+  const blocks = existsSync(outcomes) ? await readdir(outcomes, { recursive: true }) : [];
+  const unfinished = [
+    ...blocks.filter((name) => name.endsWith(UNFINISHED)).map((name) => join(outcomes, name)),
+    ...(await readdir(path)).filter(isUnfinishedLock).map((name) => join(path, name)),
+  ];
+  for (const name of unfinished) await rm(name, { force: true });
+}
+
+function isUnfinishedLock(name: string): boolean {
+  return name.endsWith(UNFINISHED) && isLockFile(name.slice(0, -UNFINISHED.length));
 }
 
 /** Nothing is written into, or removed from, a folder that a run did not make. */

@@ -55,7 +55,7 @@ export class RunRecord {
 }
 
 /** A record that cannot be read is begun anew: nothing depends on it. */
-function readSessions(text: string | undefined): Session[] {
+export function readSessions(text: string | undefined): Session[] {
   try {
     const record: { readonly sessions?: unknown } | null = JSON.parse(text ?? 'null');
     return Array.isArray(record?.sessions) ? record.sessions : [];

@@ -1,5 +1,5 @@
 import { measureNamed } from '../measures/registry.js';
-import type { InstanceRange } from './block.js';
+import type { FailedInstance, InstanceRange } from './block.js';
 import type { OutcomeColumn, OutcomeRow } from './columns.js';
 import { OutcomeFault } from './outcome-fault.js';
 
@@ -11,6 +11,7 @@ const LINE_END = '\r\n';
  *
  * @param range instances of the block
  * @param rows in that order; taken one at a time, so that the row taken last is the one at fault
+ * @param failed instances that have no row; may grow while rows are taken
  * @throws OutcomeFault if a row is missing or out of order, does not have one finite number or null per column, or an
  *   event is neither 0 nor 1
  */
@@ -18,16 +19,22 @@ export function encodeBlock(
   columns: readonly OutcomeColumn[],
   range: InstanceRange,
   rows: Iterable<OutcomeRow>,
+  failed: readonly FailedInstance[] = [],
 ): string {
   const isEvent = columns.map(isEventColumn);
   const lines = [headerOf(columns)];
   let due = range.first;
+  const passFailed = () => {
+    while (failed.some(({ instance }) => instance === due)) due++;
+  };
   for (const { instance, values } of rows) {
+    passFailed();
     if (instance !== due) throw new OutcomeFault(`instance ${instance} where ${due} is due`);
     checkValues(columns, isEvent, values);
     lines.push([instance, ...values.map((value) => value ?? '')].join(','));
     due++;
   }
+  passFailed();
   if (due !== range.last + 1) throw new OutcomeFault(`no row for instance ${due}`);
   return [...lines, ''].join(LINE_END);
 }
@@ -37,17 +44,26 @@ export function encodeBlock(
  *
  * @param range instances that the block must hold, in ascending order; rows beyond `last` are allowed and left out,
  *   because a block computed for a larger count serves a smaller one
+ * @param failed instances that have no row
  * @throws OutcomeFault if it was not written by `encodeBlock` for these columns, or a row is missing or out of order
  */
-export function decodeBlock(columns: readonly OutcomeColumn[], range: InstanceRange, csv: string): OutcomeRow[] {
+export function decodeBlock(
+  columns: readonly OutcomeColumn[],
+  range: InstanceRange,
+  csv: string,
+  failed: readonly FailedInstance[] = [],
+): OutcomeRow[] {
   const lines = csv.split(LINE_END);
   if (lines.pop() !== '') throw new OutcomeFault('last line has no line end');
   if (lines[0] !== headerOf(columns)) throw new OutcomeFault('header is not that of this study');
-  const count = range.last - range.first + 1;
-  if (lines.length - 1 < count) throw new OutcomeFault(`${lines.length - 1} rows where ${count} are due`);
+  const hasFailed = new Set(failed.map(({ instance }) => instance));
+  const due = Array.from({ length: range.last - range.first + 1 }, (_, index) => range.first + index).filter(
+    (instance) => !hasFailed.has(instance),
+  );
+  if (lines.length - 1 < due.length) throw new OutcomeFault(`${lines.length - 1} rows where ${due.length} are due`);
   const isEvent = columns.map(isEventColumn);
-  return lines.slice(1, count + 1).map((line, index) => {
-    const instance = range.first + index;
+  return due.map((instance, index) => {
+    const line = lines[index + 1] ?? '';
     const [first = '', ...fields] = line.split(',');
     if (first !== String(instance)) throw new OutcomeFault(`instance "${first}" where ${instance} is due`);
     try {

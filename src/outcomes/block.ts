@@ -10,9 +10,27 @@ export interface BlockTask {
   readonly block: number;
 }
 
-/** What comes back: the block as it is kept, or the instance that has no outcome. */
+/** What a thread is handed: the block, and a count that it raises at each instance, so that one that hangs shows. */
+export interface BlockOrder {
+  readonly task: BlockTask;
+  /** One number in shared memory. */
+  readonly beats: Int32Array<SharedArrayBuffer>;
+}
+
+/** An instance that has no outcome, and never a row, because its simulation did not converge. */
+export interface FailedInstance {
+  readonly instance: number;
+  readonly message: string;
+}
+
+/** What comes back: the block as it is kept, or the instance under which the thread met a mistake in the program. */
 export type BlockReply =
-  | { readonly csv: string; readonly computeS: number }
+  | {
+      readonly csv: string;
+      readonly computeS: number;
+      /** Ascending; absent if there are none, as almost always. */
+      readonly failed?: readonly FailedInstance[];
+    }
   | { readonly fault: { readonly instance: number; readonly message: string; readonly stack: string } };
 
 /** Block number of the twin. */

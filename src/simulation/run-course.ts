@@ -1,5 +1,6 @@
 import type { DutyCycle } from '../duty/course.js';
 import { lastLoadSegment } from '../duty/course.js';
+import { NotConverged } from '../mathematics/not-converged.js';
 import type { BankFactors } from '../sampling/bank-factors.js';
 import type { Journey } from './advance.js';
 import { ageAfterCycle } from './ageing.js';
@@ -32,7 +33,7 @@ export function runCourse(
     });
     endCycle(recorder, journey);
     if (!journey.kernel.state.charge.every(Number.isFinite)) {
-      throw new Error(`charge is not finite after cycle ${recorder.cycle}`);
+      throw new NotConverged(`charge is not finite after cycle ${recorder.cycle}`);
     }
     if (journey.ageing !== null) ageAfterCycle(journey, journey.ageing);
     if (visits !== null && index + 1 < course.length) visitIfDue(visits, journey, recorder.cycle);

@@ -5,6 +5,7 @@ import { fixConduction } from '../bank/conduction.js';
 import { settleEqualiser } from '../bank/equaliser.js';
 import type { BankEvent, BankEventKind } from '../bank/events.js';
 import { updateChainModes } from '../bank/paths.js';
+import { NotConverged } from '../mathematics/not-converged.js';
 import { updateEmf } from './chain-emf.js';
 import { updateBranches } from './hysteresis-branch.js';
 import { cellVoltageV, copyInto, type Kernel, updateCellConstants, updateEmfShifts, updateExtremes } from './kernel.js';
@@ -62,7 +63,7 @@ export function settle(
     updateNextDue(kernel, watch);
     return;
   }
-  throw new RangeError(`bank did not settle at ${kernel.nowS} s`);
+  throw new NotConverged(`bank did not settle at ${kernel.nowS} s`);
 }
 
 /** Switches the bleed of cells not in `spent` by their voltage now. @returns true if any was switched */

@@ -135,7 +135,7 @@ function filePoints(path: StudyPath, file: string, reading: Reading): Points | u
     reading.problems.push(...read.problems);
     return undefined;
   }
-  const { columns, lines } = read.table;
+  const { columns, problemAt } = read.table;
   const charge = columns.get(key) ?? [];
   const voltageV = columns.get('V') ?? [];
   let sound = charge.length >= 2;
@@ -146,8 +146,7 @@ function filePoints(path: StudyPath, file: string, reading: Reading): Points | u
   ] as const) {
     const index = firstNotAscending(values);
     if (index === undefined) continue;
-    const message = `must be above the value before it, got ${values[index]}`;
-    reading.problems.push({ file, line: lines[index] ?? null, column: 1, path: name, message });
+    reading.problems.push(problemAt(index, name, `must be above the value before it, got ${values[index]}`));
     sound = false;
   }
   return sound ? { chargeFraction: charge.map((value) => value / scale), voltageV } : undefined;

@@ -1,7 +1,8 @@
 import { ambientOf } from './ambient.js';
-import { readNumericTable } from './numeric-table.js';
+import { type NumericTable, readNumericTable } from './numeric-table.js';
 import type { Problem } from './problem.js';
 import type { DutySegment } from './study.js';
+import { MOST_PROBLEMS } from './table-lines.js';
 import { secondsFromHours } from './units.js';
 
 const MOST_POWER_W = 1e6;
@@ -34,26 +35,20 @@ export function readProfile(
     { name: 'ambient_degC', atLeast: -60, atMost: 80, isOptional: true },
   ]);
   if ('problems' in read) return read;
-  const { columns, lines } = read.table;
+  const { columns, problemAt } = read.table;
   const timeH = columns.get('time_h') ?? [];
   const problems: Problem[] = [];
   for (const [index, time] of timeH.entries()) {
     const before = timeH[index - 1];
     if (before === undefined ? time === 0 : time > before) continue;
     const rule = before === undefined ? '0 in the first row' : `above ${before}, the time of the row before`;
-    problems.push({
-      file,
-      line: lines[index] ?? null,
-      column: 1,
-      path: 'time_h',
-      message: `must be ${rule}, got ${time}`,
-    });
+    problems.push(problemAt(index, 'time_h', `must be ${rule}, got ${time}`));
   }
-  if (problems.length > 0) return { problems };
+  if (problems.length > 0) return { problems: problems.slice(0, MOST_PROBLEMS) };
   const cycleS = secondsFromHours(cycleH);
   const rows = rowsOf(columns, timeH, cycleS, ambientDegC);
-  problems.push(...peakProblems(columns, rows, file, lines));
-  return problems.length > 0 ? { problems } : { cycles: cyclesOf(rows, cycleS) };
+  const peaks = peakProblems(read.table, rows, file).slice(0, MOST_PROBLEMS);
+  return peaks.length > 0 ? { problems: peaks } : { cycles: cyclesOf(rows, cycleS) };
 }
 
 /** A row with the time it holds. */
@@ -93,12 +88,7 @@ function cycleCountOf(lastStartS: number, cycleS: number): number {
 }
 
 /** The two columns of peaks go together, and a peak is no trough and lies within its row. */
-function peakProblems(
-  columns: ReadonlyMap<string, readonly number[]>,
-  rows: readonly ProfileRow[],
-  file: string,
-  lines: readonly number[],
-): readonly Problem[] {
+function peakProblems({ columns, problemAt }: NumericTable, rows: readonly ProfileRow[], file: string): Problem[] {
   const has = (name: string): boolean => columns.has(name);
   if (has('load_peak_W') !== has('peak_s')) {
     const path = has('peak_s') ? 'load_peak_W' : 'peak_s';
@@ -113,13 +103,7 @@ function peakProblems(
     ];
   }
   return rows.flatMap(({ fromS, toS, loadW, peakW, peakS }, row) => {
-    const problem = (path: string, message: string): Problem => ({
-      file,
-      line: lines[row] ?? null,
-      column: 1,
-      path,
-      message,
-    });
+    const problem = (name: string, message: string): Problem => problemAt(row, name, message);
     if (peakS === 0) {
       return peakW === 0 ? [] : [problem('peak_s', `must be above 0 beside load_peak_W ${peakW}, got ${peakS}`)];
     }

@@ -9,7 +9,7 @@ import { showValue } from './show-value.js';
 import type { Study } from './study.js';
 import { FORMAT, PARTIAL_STUDY_FILE, STUDY_FILE, type StudyInput } from './study-file.js';
 import { renderPath, valueAt } from './study-path.js';
-import { readYaml, type YamlSource } from './yaml-source.js';
+import { MOST_PROBLEMS, readYaml, type YamlSource } from './yaml-source.js';
 
 export type { InputText } from './reading.js';
 
@@ -40,8 +40,9 @@ export function readStudy(text: string, options: ReadStudyOptions): ReadStudy {
   const sound = parseSoundParts<StudyInput>(STUDY_FILE, PARTIAL_STUDY_FILE, source.data);
   const reading = new Reading(fileName, source, options.readText, sound.setAside);
   const study = sound.value && resolveStudy(sound.value, options, reading);
-  const problems = [...sound.faults.map((fault) => problemOf(fault, source, fileName)), ...reading.problems];
-  if (problems.length > 0) return { kind: 'refused', problems: inFileOrder(problems, fileName) };
+  const faults = sound.faults.slice(0, MOST_PROBLEMS).map((fault) => problemOf(fault, source, fileName));
+  const problems = inFileOrder([...faults, ...reading.problems], fileName).slice(0, MOST_PROBLEMS);
+  if (problems.length > 0) return { kind: 'refused', problems };
   if (study === undefined) throw new RangeError('a study without problems was not resolved');
   const { origins, warnings, inputs } = reading;
   return { kind: 'read', study, origins, warnings, inputs };

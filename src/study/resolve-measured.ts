@@ -6,6 +6,7 @@ import type { Picked } from './layers.js';
 import type { MeasuredInput } from './measured.js';
 import { didYouMean } from './nearest-name.js';
 import type { Origin } from './origin.js';
+import type { Problem } from './problem.js';
 import { QUANTITIES, type QuantityName } from './quantities.js';
 import { QUANTITY_KEYS, quantityOfKey } from './quantity-keys.js';
 import type { Reading } from './reading.js';
@@ -13,6 +14,7 @@ import type { ResolvedSpread } from './resolve-spread.js';
 import { showValue } from './show-value.js';
 import type { Law, MeasuredModules } from './study.js';
 import { renderPath, type StudyPath } from './study-path.js';
+import { MOST_PROBLEMS } from './table-lines.js';
 import { readTextTable, type TextTable } from './text-table.js';
 import { differenceFromKey, inUnitOfKey, siFromKey, unitOfKey } from './units.js';
 
@@ -69,14 +71,15 @@ export function resolveMeasured(
       row,
       ...reachOf(name, rows[row]?.[place] ?? 0, sd, own, stock.cellsInSeries),
     }));
-    for (const { row, lower, upper } of reaches) {
+    const impossible = reaches.flatMap(({ row, lower, upper }) => {
       const fault = impossibleValue(name, lower, upper);
-      if (fault === undefined) continue;
+      if (fault === undefined) return [];
       const message = `must be measured so that, with uncertainty and cells, it is ${fault.rule}, got ${fault.shown}`;
-      reading.addTableProblems([table.problemAt(row, QUANTITY_KEYS[name], message)]);
-    }
-    const lower = Math.min(...reaches.map((reach) => reach.lower));
-    const upper = Math.max(...reaches.map((reach) => reach.upper));
+      return [table.problemAt(row, QUANTITY_KEYS[name], message)];
+    });
+    reading.addTableProblems(impossible.slice(0, MOST_PROBLEMS));
+    const lower = leastOf(reaches.map((reach) => reach.lower));
+    const upper = greatestOf(reaches.map((reach) => reach.upper));
     spreads[name] = { ...own, lower, upper };
     noteOrigin(stock.owner, name, columns[place] ?? [], used, input, source, reading);
   }
@@ -144,16 +147,17 @@ function rowsById(
 ): ReadonlyMap<string, number> | undefined {
   const place = table.names.indexOf(ID_COLUMN);
   const rowOf = new Map<string, number>();
-  let sound = true;
+  const problems: Problem[] = [];
   for (const [row, { cells }] of table.rows.entries()) {
     const id = cells[place]?.text ?? '';
     if (id === '' || rowOf.has(id)) {
       const rule = id === '' ? 'the name of a module' : 'a module that is given once';
-      reading.addTableProblems([table.problemAt(row, ID_COLUMN, `must be ${rule}, got ${showValue(id)}`)]);
-      sound = false;
+      problems.push(table.problemAt(row, ID_COLUMN, `must be ${rule}, got ${showValue(id)}`));
     }
     rowOf.set(id, row);
   }
+  reading.addTableProblems(problems.slice(0, MOST_PROBLEMS));
+  let sound = problems.length === 0;
   for (const [index, id] of moduleIds.entries()) {
     if (rowOf.has(id)) continue;
     const path = [...owner, 'modules', index];
@@ -191,6 +195,15 @@ function reachOf(
   return { lower: value - off - reach, upper: value + off + reach };
 }
 
+/** Not `Math.min(...values)`: a table has more rows than a call may have arguments. */
+function leastOf(values: readonly number[]): number {
+  return values.reduce((least, value) => Math.min(least, value), Number.POSITIVE_INFINITY);
+}
+
+function greatestOf(values: readonly number[]): number {
+  return values.reduce((greatest, value) => Math.max(greatest, value), Number.NEGATIVE_INFINITY);
+}
+
 /** Says that a quantity is measured, in place of the nominal value and the deviations that this sets aside. */
 function noteOrigin(
   owner: StudyPath,
@@ -206,7 +219,7 @@ function noteOrigin(
   const isAside = ({ path }: Origin): boolean => [own, `${own}.lot`, `${own}.module`].includes(path);
   const values = used.map((row) => inUnitOfKey(key, column[row] ?? 0));
   const round = (value: number): number => Number(value.toPrecision(5));
-  const range = `${round(Math.min(...values))} to ${round(Math.max(...values))}`;
+  const range = `${round(leastOf(values))} to ${round(greatestOf(values))}`;
   const sd = uncertainty?.[key] ?? 0;
   const drawn = rows === 'resampled' ? `one of ${values.length} rows, mean ${round(meanOf(values))}, ` : '';
   const origin: Origin = {

@@ -1,6 +1,6 @@
-import { type Cell, cellsOf, linesOf, MOST_PROBLEMS, MOST_ROWS, numberOf } from './numeric-table.js';
 import type { Problem } from './problem.js';
 import { showValue } from './show-value.js';
+import { type Cell, MOST_PROBLEMS, readTableLines } from './table-lines.js';
 
 /** A table of named columns, its cells text until they are asked for. */
 export interface TextTable {
@@ -17,34 +17,29 @@ export interface TextTable {
   ) => { readonly values: readonly number[] } | { readonly problems: readonly Problem[] };
 }
 
-/** Reads a table of comma-separated cells under one line of column names, whatever else its columns are called. */
+/** Reads a table of cells under one line of column names, whatever else its columns are called. */
 export function readTextTable(
   text: string,
   file: string,
 ): { readonly table: TextTable } | { readonly problems: readonly Problem[] } {
-  const lines = linesOf(text);
+  const lines = readTableLines(text, file);
+  if ('problems' in lines) return lines;
+  const { header, rows, numberOf, numberHint, raggedRow } = lines.table;
   const fault = (line: number, column: number, message: string): Problem => ({ file, line, column, path: '', message });
-  if (lines.length === 0) {
+  if (header.length === 0) {
     return { problems: [fault(1, 1, 'must be a table that begins with a line of column names, got an empty file')] };
   }
-  const header = cellsOf(lines[0] ?? '');
   const names = header.map((cell) => cell.text);
   const twice = header.find(({ text: name }, place) => names.indexOf(name) !== place);
   if (twice !== undefined) {
     const message = `must be a column that is given once, got ${showValue(twice.text)}`;
     return { problems: [{ ...fault(1, twice.column, message), path: twice.text }] };
   }
-  if (lines.length < 2) return { problems: [fault(1, 1, 'must be a table with at least one row, got none')] };
-  if (lines.length - 1 > MOST_ROWS) {
-    return { problems: [fault(1, 1, `must be at most ${MOST_ROWS} rows, got ${lines.length - 1}`)] };
-  }
-  const rows = lines.slice(1).map((line, index) => ({ line: index + 2, cells: cellsOf(line) }));
+  if (rows.length === 0) return { problems: [fault(1, 1, 'must be a table with at least one row, got none')] };
   const ragged = rows.filter(({ cells }) => cells.length !== header.length).slice(0, MOST_PROBLEMS);
   if (ragged.length > 0) {
     return {
-      problems: ragged.map(({ line, cells }) =>
-        fault(line, 1, `must be a row of ${header.length} cells, got ${cells.length}`),
-      ),
+      problems: ragged.map(({ line, cells }) => fault(line, 1, raggedRow(cells.length))),
     };
   }
   const problemAt = (row: number | null, name: string, message: string): Problem => {
@@ -61,7 +56,8 @@ export function readTextTable(
       const value = numberOf(written);
       if (value !== undefined && value >= atLeast && value <= atMost) values.push(value);
       else if (problems.length < MOST_PROBLEMS) {
-        const message = `must be a number from ${atLeast} to ${atMost}, got ${showValue(value ?? written)}`;
+        const got = value === undefined ? `${showValue(written)}${numberHint(written)}` : value;
+        const message = `must be a number from ${atLeast} to ${atMost}, got ${got}`;
         problems.push(problemAt(index, name, message));
       }
     }

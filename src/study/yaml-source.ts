@@ -1,10 +1,16 @@
-import { type Document, isAlias, isMap, isNode, isPair, isScalar, LineCounter, parseDocument, visit } from 'yaml';
+import { type Document, isAlias, isMap, isNode, isScalar, LineCounter, parseDocument, visit, type YAMLMap } from 'yaml';
 import type { Problem } from './problem.js';
 import type { StudyPath } from './study-path.js';
+import { firstDeeperThan } from './yaml-depth.js';
 
 /** Far above any study, far below what would slow the reader down. */
-const LONGEST_TEXT = 2_000_000;
+const LONGEST_TEXT = 1_000_000;
+const DEEPEST_NESTING = 50;
 const MOST_ALIASES = 100;
+/** As many as a stock may have modules. */
+const MOST_KEYS = 1000;
+/** More faults than anyone reads at once. */
+export const MOST_PROBLEMS = 100;
 const RESERVED_KEYS: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);
 
 /** Place in a file, both from 1. */
@@ -25,7 +31,7 @@ export interface YamlSource {
 /**
  * Reads YAML 1.2 text into plain data.
  *
- * @returns the source, or every fault of the text: syntax, duplicate keys, tags, reserved names, alias bombs, size
+ * @returns the source, or every fault of the text: syntax, duplicate keys, tags, reserved names, alias bombs, size, depth
  */
 export function readYaml(
   text: string,
@@ -38,15 +44,27 @@ export function readYaml(
     return whole(`must be a file of at most ${LONGEST_TEXT} characters, got ${text.length}`);
   }
   if (text.trim() === '') return whole('must be a study, got an empty file');
+  // A line may end in CR alone, which the parser does not know; places stay as they are.
+  const normal = text.replace(/\r(?!\n)/g, '\n');
   const lines = new LineCounter();
   const place = (offset: number): Place => {
     const { line, col } = lines.linePos(offset);
     return { line: Math.max(1, line), column: Math.max(1, col) };
   };
+  const tooDeep = firstDeeperThan(DEEPEST_NESTING, normal, lines.addNewLine);
+  if (tooDeep !== undefined) {
+    const message = `must be nested at most ${DEEPEST_NESTING} levels deep, got more`;
+    return { problems: [{ file, ...place(tooDeep), path: '', message }] };
+  }
   try {
-    const document = parseDocument(text, { lineCounter: lines, prettyErrors: false, version: '1.2' });
-    const problems = syntaxProblems(document, text, file, place);
-    if (problems.length > 0) return { problems };
+    // Keys are compared below: the parser compares each with every other, which takes minutes for a long mapping.
+    const document = parseDocument(normal, { prettyErrors: false, version: '1.2', uniqueKeys: false });
+    const problems = [...syntaxProblems(document, normal), ...keyProblems(document)];
+    if (problems.length > 0) {
+      return {
+        problems: problems.slice(0, MOST_PROBLEMS).map(({ offset, ...rest }) => ({ file, ...place(offset), ...rest })),
+      };
+    }
     const data: unknown = document.toJS({ maxAliasCount: MOST_ALIASES });
     return {
       source: {
@@ -56,35 +74,66 @@ export function readYaml(
       },
     };
   } catch (error) {
-    // The parser throws on what it cannot hold: too many aliases, or nesting deeper than the stack.
+    // The parser throws on too many aliases.
     const reason = error instanceof Error ? error.message.split('\n')[0] : 'it cannot be read';
-    return whole(`must be YAML of moderate depth and few aliases, got: ${reason}`);
+    return whole(`must be YAML with few aliases, got: ${reason}`);
   }
 }
 
-function syntaxProblems(
-  document: Document.Parsed,
-  text: string,
-  file: string,
-  place: (offset: number) => Place,
-): Problem[] {
-  const keyAt = (offset: number): string => /^[^\s:]*/.exec(text.slice(offset, offset + 80))?.[0] ?? '';
-  const problems: Problem[] = [];
-  const add = (offset: number, path: string, message: string): void => {
-    problems.push({ file, ...place(offset), path, message });
-  };
-  for (const { code, message, pos } of [...document.errors, ...document.warnings]) {
-    if (code === 'DUPLICATE_KEY') add(pos[0], keyAt(pos[0]), 'must be given once, got it again');
-    else if (code === 'MULTIPLE_DOCS') add(pos[0], '', 'must be one YAML document, got several');
-    else add(pos[0], '', `must be well-formed YAML 1.2, got: ${message.split('\n')[0]}`);
-  }
-  visit(document, (_, node) => {
-    if (isPair(node) && isScalar(node.key) && RESERVED_KEYS.has(String(node.key.value))) {
-      const name = String(node.key.value);
-      add(node.key.range?.[0] ?? 0, name, `must be another name, got ${JSON.stringify(name)}, which is reserved`);
-    }
+/** A problem before its place is looked up. */
+interface ProblemAt extends Pick<Problem, 'path' | 'message'> {
+  readonly offset: number;
+}
+
+/** Blanks that YAML does not take for blanks, as they come from web pages and word processors. */
+const FALSE_BLANK = /[\u00a0\u2000-\u200b\u202f\u205f\u3000]|(?!^)\ufeff/;
+
+function syntaxProblems(document: Document.Parsed, text: string): ProblemAt[] {
+  const problems = [...document.errors, ...document.warnings].map(({ code, message, pos }): ProblemAt => {
+    const rule =
+      code === 'MULTIPLE_DOCS'
+        ? 'must be one YAML document, got several'
+        : `must be well-formed YAML 1.2, got: ${message.split('\n')[0]}`;
+    return { offset: pos[0], path: '', message: rule };
+  });
+  const blank = problems.length > 0 ? FALSE_BLANK.exec(text) : null;
+  if (blank === null) return problems;
+  const code = blank[0].charCodeAt(0).toString(16).toUpperCase().padStart(4, '0');
+  const message = `must be indented and set apart with plain spaces, got the character U+${code} that looks like one`;
+  return [{ offset: blank.index, path: '', message }];
+}
+
+/** Keys that are no plain words, that are reserved or that a mapping has twice. */
+function keyProblems(document: Document.Parsed): ProblemAt[] {
+  const problems: ProblemAt[] = [];
+  visit(document, {
+    Map: (_, map) => {
+      problems.push(...keyProblemsOf(map));
+    },
   });
   return problems;
+}
+
+function keyProblemsOf({ items, range }: YAMLMap): ProblemAt[] {
+  if (items.length > MOST_KEYS) {
+    const message = `must be a mapping of at most ${MOST_KEYS} keys, got ${items.length}`;
+    return [{ offset: range?.[0] ?? 0, path: '', message }];
+  }
+  const known = new Set<string>();
+  return items.flatMap(({ key }): ProblemAt[] => {
+    if (!isScalar(key)) {
+      const offset = (isNode(key) ? key.range?.[0] : undefined) ?? range?.[0] ?? 0;
+      return [{ offset, path: '', message: 'must be a mapping whose keys are plain words, got another key' }];
+    }
+    const name = String(key.value);
+    const offset = key.range?.[0] ?? 0;
+    if (RESERVED_KEYS.has(name)) {
+      return [{ offset, path: name, message: `must be another name, got ${JSON.stringify(name)}, which is reserved` }];
+    }
+    if (known.has(name)) return [{ offset, path: name, message: 'must be given once, got it again' }];
+    known.add(name);
+    return [];
+  });
 }
 
 /** Offset of the value at a path; aliases are followed, the alias being the place that is reported. */

@@ -35,6 +35,6 @@ export function memoryShell(files: Readonly<Record<string, string>> = {}): Memor
     isTerminal: { out: false, err: false },
     color: false,
     now: () => 0,
-    interruption: new AbortController().signal,
+    interruption: () => new AbortController().signal,
   };
 }

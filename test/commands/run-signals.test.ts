@@ -1,79 +1,64 @@
-import { type ChildProcess, spawn } from 'node:child_process';
-import { once } from 'node:events';
-import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { setTimeout as pause } from 'node:timers/promises';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { Scratch } from '../execution/fake-run.js';
-import { compileWithFakeEngine, type FakeProgram } from '../execution/program-with-fake-engine.js';
+import { FakeCli, finishedBlocks, SLOW_BLOCKS, SLOW_STUDY, untilBlocks } from './fake-cli.js';
 
-// 10 blocks of 4 banks for each of 2 candidates, a fifth of a second each.
-const STUDY = `motleybank: 1
-title: slow 50
-seed: 7
-instances: 40
-block: 4
-cycles: 3
-stock:
-  newer: {grade: new-same-make, modules: [N1, N2], cells_in_series: 4, capacity_Ah: {nominal: 100}}
-bank:
-  charger: {limit_A: 60, absorption_V: 28.4, until: {tail_A: 4}, float_V: 27.2}
-duty:
-  phases: [{rest_h: 1}]
-candidates:
-  strings: {wiring: strings, modules: [[N1, N2]]}
-  turned: {wiring: strings, modules: [[N2, N1]]}
-reference: strings
-`;
-const BLOCKS = 22; // with the twins
-
-let program: FakeProgram;
+let cli: FakeCli;
 const scratch = new Scratch();
 
 beforeAll(() => {
-  program = compileWithFakeEngine(['src/cli.ts']);
+  cli = new FakeCli();
 });
 afterAll(() => {
-  program.remove();
+  cli.remove();
   scratch.remove();
 });
 
-function start(folder: string): ChildProcess {
-  mkdirSync(folder, { recursive: true });
-  writeFileSync(join(folder, 'cabin.yaml'), STUDY);
-  const args = [program.compiled('src/cli.ts'), 'run', 'cabin.yaml', '--threads', '2', '--quiet'];
-  return spawn(process.execPath, args, { cwd: folder, stdio: ['ignore', 'ignore', 'pipe'] });
-}
-
-function finishedBlocks(folder: string): number {
-  const journal = join(folder, 'results', 'cabin', 'journal.jsonl');
-  return existsSync(journal) ? readFileSync(journal, 'utf8').split('\n').length - 1 : 0;
-}
-
 describe('the program', () => {
   it.each([
+    ['SIGHUP', 129],
     ['SIGINT', 130],
     ['SIGTERM', 143],
   ] as const)('ends by %s with its status after the blocks in flight, and loses none', async (signal, status) => {
     const folder = scratch.next();
-    const child = start(folder);
-    const exit = once(child, 'close');
-    let notes = '';
-    child.stderr?.on('data', (chunk) => {
-      notes += chunk;
-    });
-    while (finishedBlocks(folder) < 4 && child.exitCode === null) await pause(10);
-    child.kill(signal);
-    expect(await exit).toEqual([status, null]);
-    expect(notes).toMatch(
+    const results = join(folder, 'results', 'cabin');
+    const run = cli.run(folder, ['--quiet']);
+    await untilBlocks(run, results, 4);
+    run.child.kill(signal);
+    expect(await run.end).toEqual({ status, signal: null });
+    expect(run.notes()).toMatch(
       /^interrupted with \d+ of 40 banks in every candidate: the results are of those; \d+ blocks missing/,
     );
-    const kept = finishedBlocks(folder);
+    const kept = finishedBlocks(results);
     expect(kept).toBeGreaterThanOrEqual(4);
-    expect(kept).toBeLessThan(BLOCKS);
-    const record = JSON.parse(readFileSync(join(folder, 'results', 'cabin', 'run.json'), 'utf8'));
+    expect(kept).toBeLessThan(SLOW_BLOCKS);
+    const record = JSON.parse(readFileSync(join(results, 'run.json'), 'utf8'));
     expect(record.sessions).toMatchObject([{ ended: 'interrupted' }]);
-    const summary = readFileSync(join(folder, 'results', 'cabin', 'summary.csv'), 'utf8');
+    const summary = readFileSync(join(results, 'summary.csv'), 'utf8');
     expect(summary).toContain('strings,lost_capacity,');
+  });
+
+  it.each([
+    ['SIGINT', 'SIGINT', 130],
+    ['SIGINT', 'SIGTERM', 143],
+    ['SIGHUP', 'SIGHUP', 129],
+  ] as const)('ends at once by %s and %s, and is taken up again', async (first, second, status) => {
+    const folder = scratch.next();
+    const results = join(folder, 'results', 'cabin');
+    // A block takes 8 s: whoever waited for it would be seen.
+    const slow = SLOW_STUDY.replace('slow 50', 'slow 2000');
+    const run = cli.run(folder, ['--quiet'], slow);
+    await untilBlocks(run, results, 1);
+    run.child.kill(first);
+    await new Promise((resolve) => setTimeout(resolve, 300));
+    expect(run.child.exitCode).toBeNull();
+    run.child.kill(second);
+    expect(await run.end).toEqual({ status, signal: null });
+    expect(run.notes()).toBe('');
+    // The lock of the process that has gone keeps nobody out.
+    const again = cli.run(folder, ['--quiet'], SLOW_STUDY.replace('slow 50', 'slow 0'));
+    expect(await again.end).toEqual({ status: 0, signal: null });
+    expect(finishedBlocks(results)).toBe(SLOW_BLOCKS);
   });
 });

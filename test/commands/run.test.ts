@@ -72,7 +72,7 @@ async function run(options: RunOptions, interruption = new AbortController().sig
     isTerminal: { out: false, err: false },
     color: false,
     now: () => performance.now(),
-    interruption,
+    interruption: () => interruption,
   };
   const status = await runCommand({ threads: 2, ...options }, shell, program.workerFile);
   return { status, out, err };
@@ -92,6 +92,17 @@ function resultFiles(folder: string): Record<string, string> {
 }
 
 describe('run', () => {
+  it('keeps its input files under names that every system can have, however theirs are spelt', async () => {
+    const study = studyFile(
+      STUDY.replace('duties/week.csv', `duties/h\u00fctte "${'x'.repeat(200)}": 2.csv`.replace(/^(.*)$/, "'$1'")),
+    );
+    const long = `h\u00fctte "${'x'.repeat(200)}": 2.csv`;
+    writeFileSync(join(study, '..', 'duties', long), 'time_h,load_W,charge_W\n0,100,0\n12,0,500\n');
+    const out = scratch.next();
+    expect(await run({ study, out })).toMatchObject({ status: 0 });
+    expect(readdirSync(join(out, 'inputs'))).toEqual([`01-${'x'.repeat(52)}__ 2.csv`]);
+  });
+
   it('leaves the folder that the README promises and prints the table', async () => {
     const study = studyFile();
     const out = scratch.next();
@@ -125,7 +136,7 @@ describe('run', () => {
       'summary.csv',
     ]);
     expect(readFileSync(join(out, 'study.yaml'), 'utf8')).toBe(STUDY);
-    expect(readFileSync(join(out, 'journal.jsonl'), 'utf8').trimEnd().split('\n')).toHaveLength(BLOCKS);
+    expect(readFileSync(join(out, 'journal.jsonl'), 'utf8').trimEnd().split('\n')).toHaveLength(BLOCKS + 1);
     expect(JSON.parse(readFileSync(join(out, 'run.json'), 'utf8'))).toMatchObject({
       interruptions: 0,
       sessions: [{ threads: 2, ended: 'complete' }],
@@ -267,6 +278,32 @@ describe('run', () => {
     expect(JSON.parse(readFileSync(join(out, 'run.json'), 'utf8'))).toMatchObject({ sessions: [{ ended: 'failed' }] });
     // The folder is free again and keeps what was finished.
     expect((await run({ study: studyFile(), out })).status).toBe(0);
+  });
+
+  it('lists the banks that did not converge within the allowed share, and summarises the others', async () => {
+    const study = studyFile(STUDY.replace('title: fake', 'title: diverge strings 3+35'));
+    const out = scratch.next();
+    const { status, out: json, err } = await run({ study, out, mayFailPercent: 5, json: true, quiet: true });
+    expect(status).toBe(0);
+    expect(err).toBe(
+      `strings: 2 of 40 banks did not converge and are left out (failed.csv); the first: motleybank trace ${out} --candidate strings --instance 3\n`,
+    );
+    expect(readFileSync(join(out, 'failed.csv'), 'utf8')).toBe(
+      [
+        'candidate,instance,message,trace',
+        'strings,3,bank 3 did not settle,motleybank trace . --candidate strings --instance 3',
+        'strings,35,bank 35 did not settle,motleybank trace . --candidate strings --instance 35',
+        '',
+      ].join('\r\n'),
+    );
+    expect(JSON.parse(json).instances).toBe(40);
+    // Nothing is summarised of them: 38 banks are left, of which some have no such measure.
+    const [head = '', ...rows] = readFileSync(join(out, 'summary.csv'), 'utf8').trimEnd().split('\r\n');
+    const n = head.split(',').indexOf('instances');
+    const loadLost = rows
+      .filter((row) => /,load_lost,.*share_of_banks/.test(row))
+      .map((row) => Number(row.split(',')[n]));
+    expect(loadLost).toEqual([38, 40]);
   });
 
   it('of a study with faults computes nothing and makes no folder', async () => {

@@ -3,6 +3,8 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { type TraceOptions, traceCommand } from '../../src/commands/trace.js';
+import { sha256 } from '../../src/execution/checksum.js';
+import { journalLine } from '../../src/execution/journal.js';
 import { studyOf } from '../study/study-under-test.js';
 import { memoryShell } from './memory-shell.js';
 
@@ -19,9 +21,11 @@ candidates:
   pair: {wiring: strings, modules: [[A, B]]}
 `;
 
+const RESOLVED = JSON.stringify(studyOf(STUDY));
 const FILES = {
   'pair.yaml': STUDY,
-  'run/study.resolved.json': JSON.stringify(studyOf(STUDY)),
+  'run/study.resolved.json': RESOLVED,
+  'run/journal.jsonl': journalLine({ study: sha256(RESOLVED) }),
   'broken/study.resolved.json': '{',
 };
 
@@ -131,7 +135,7 @@ describe('trace', () => {
     [{ fromCycle: 4, toCycle: 3 }, '--from-cycle must be at most --to-cycle (3), got 4'],
     [{ fromCycle: 1, toCycle: 6, everyS: 0.01 }, '--every must be longer or the window shorter'],
     [{ source: 'nowhere.yaml' }, 'nowhere.yaml cannot be read'],
-    [{ source: 'broken' }, 'must be JSON as a run left it'],
+    [{ source: 'broken' }, 'must be as the run left it, by its checksum in journal.jsonl'],
   ])('refuses %j', async (more, message) => {
     const { status, out, err } = await trace(more);
     expect(status).toBe(2);

@@ -27,6 +27,7 @@ describe('computing blocks', () => {
             keep: async ({ block }, { csv }) => {
               kept.push([block, csv]);
             },
+            mayFail: () => 0,
             stop: never,
           });
           expect(kept.sort(([a], [b]) => a - b)).toEqual(TASKS.map(({ block }) => [block, `content ${block}`]));
@@ -50,6 +51,7 @@ describe('computing blocks', () => {
         return { csv: '', computeS: 0 };
       },
       keep: async () => {},
+      mayFail: () => 0,
       stop: never,
     });
     expect(Math.max(...seen)).toBe(3);
@@ -71,6 +73,7 @@ describe('computing blocks', () => {
       keep: async ({ block }) => {
         kept.push(block);
       },
+      mayFail: () => 0,
       stop: never,
     });
     await expect(run).rejects.toThrow(InstanceFault);
@@ -88,6 +91,7 @@ describe('computing blocks', () => {
       keep: async () => {
         throw full;
       },
+      mayFail: () => 0,
       stop: never,
     });
     await expect(run).rejects.toBe(full);

@@ -152,6 +152,38 @@ describe('a run', () => {
     expect(execution.notes).toBe('');
   });
 
+  it('ends with the address of an instance that does not converge, and does not keep its block', async () => {
+    const path = scratch.next();
+    const execution = await run(path, { ...FAKE_STUDY, title: 'diverge cross-linked 6' });
+    expect(execution.failure).toMatchObject({ candidate: 'cross-linked', instance: 6 });
+    expect(String(execution.failure)).toContain('cross-linked, instance 6: bank 6 did not settle');
+    expect(outcomeFiles(path)[join('cross-linked', 'block-0002.csv')]).toBeUndefined();
+  });
+
+  it('within an allowed share counts instances that do not converge and makes no row of them', async () => {
+    const path = scratch.next();
+    const study = { ...FAKE_STUDY, title: 'diverge cross-linked 5+8+14' };
+    const options = { workerFile: program.workerFile, threads: 2 };
+    // By hand: 3 of 14 may fail at 0.22 (3.08) and not at 0.21 (2.94).
+    const tooFew = await fakeRun(path, study, { ...options, mayFailFraction: 0.21 });
+    expect(tooFew.failure).toBeInstanceOf(InstanceFault);
+    const enough = await fakeRun(path, study, { ...options, mayFailFraction: 0.22 });
+    const failed = [5, 8, 14].map((instance) => ({
+      candidate: 'cross-linked',
+      instance,
+      message: `bank ${instance} did not settle`,
+    }));
+    expect(enough).toMatchObject({ failure: undefined, missing: 0, instances: 14, failed });
+    const rows = outcomeFiles(path)[join('cross-linked', 'block-0002.csv')]?.split('\r\n') ?? [];
+    expect(rows.slice(1, -1).map((row) => row.split(',')[0])).toEqual(['6', '7']);
+    // Taken up, the folder tells the same; with less allowed the blocks are computed again and fail again.
+    expect(await fakeRun(path, study, { ...options, mayFailFraction: 0.22 })).toMatchObject({ computed: 0, failed });
+    expect((await fakeRun(path, study, options)).failure).toBeInstanceOf(InstanceFault);
+    // Once the simulation converges, a run that allows none mends the folder.
+    expect(await run(path)).toMatchObject({ failure: undefined, failed: [] });
+    expect(outcomeFiles(path)).toEqual(await undisturbed());
+  });
+
   it('does not write a finished block again', async () => {
     const path = scratch.next();
     await run(path);

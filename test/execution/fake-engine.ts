@@ -1,5 +1,6 @@
 import { createHash } from 'node:crypto';
 import { existsSync, writeFileSync } from 'node:fs';
+import { NotConverged } from '../../src/mathematics/not-converged.js';
 import { outcomeLayout } from '../../src/outcomes/block.js';
 import { type OutcomeColumn, type OutcomeRow, outcomeColumns } from '../../src/outcomes/columns.js';
 import type { Candidate, Study } from '../../src/study/study.js';
@@ -11,6 +12,7 @@ import type { Candidate, Study } from '../../src/study/study.js';
  *   exit CANDIDATE INSTANCE            the thread ends under it
  *   exit-once CANDIDATE INSTANCE FILE  the same, the first time only; FILE remembers
  *   throw CANDIDATE INSTANCE           the simulation fails
+ *   diverge CANDIDATE INSTANCE         it does not converge; also with INSTANCE+INSTANCE...
  *   not-finite CANDIDATE INSTANCE      it gives infinity
  *   throw-ready CANDIDATE              getting the candidate ready fails
  *   slow MILLISECONDS                  every instance takes its time
@@ -50,6 +52,9 @@ export function simulateTwin(prepared: PreparedCandidate): OutcomeRow {
 function makeMischief(order: string, candidate: string, instance: number): boolean {
   const [deed, argument = '', at, file = ''] = order.split(' ');
   if (deed === 'slow') Atomics.wait(new Int32Array(new SharedArrayBuffer(4)), 0, 0, Number(argument));
+  if (deed === 'diverge' && argument === candidate && at?.split('+').map(Number).includes(instance)) {
+    throw new NotConverged(`bank ${instance} did not settle`);
+  }
   if (argument !== candidate || Number(at) !== instance) return false;
   if (deed === 'exit' || (deed === 'exit-once' && !existsSync(file))) {
     if (deed === 'exit-once') writeFileSync(file, '');

@@ -12,13 +12,14 @@ export interface FakeRunOptions {
   readonly threads: number;
   /** Interrupts the session after so many blocks. */
   readonly stopAfter?: number;
+  readonly mayFailFraction?: number;
 }
 
 /** One session on a folder; notes are collected, progress is not. */
 export async function fakeRun(
   path: string,
   study: Study,
-  { workerFile, threads, stopAfter }: FakeRunOptions,
+  { workerFile, threads, stopAfter, mayFailFraction = 0 }: FakeRunOptions,
 ): Promise<Execution & { readonly notes: string }> {
   const stop = new AbortController();
   let notes = '';
@@ -36,7 +37,17 @@ export async function fakeRun(
   const folder = await RunFolder.open(path, []);
   try {
     const keys = fakeKeys(study);
-    const execution = await executeRun({ study, keys, folder, workerFile, threads, stop: stop.signal, progress });
+    const execution = await executeRun({
+      study,
+      keys,
+      folder,
+      workerFile,
+      threads,
+      stallMs: 60_000,
+      mayFailFraction,
+      stop: stop.signal,
+      progress,
+    });
     return { ...execution, notes };
   } finally {
     await folder.close();

@@ -21,10 +21,10 @@ afterAll(() => scratch.remove());
 async function withOutcomes<T>(
   instances: number,
   use: (outcomes: FileOutcomes) => Promise<T>,
-  batchValues?: number,
+  batchValues = 1 << 20,
 ): Promise<T> {
   const folder = await RunFolder.open(path, []);
-  const outcomes = new FileOutcomes(folder, FAKE_STUDY, instances, batchValues);
+  const outcomes = new FileOutcomes(folder, FAKE_STUDY, instances, { batchValues });
   try {
     return await use(outcomes);
   } finally {

@@ -11,7 +11,7 @@ const scratch = new Scratch();
 afterAll(() => scratch.remove());
 const TASK = { candidate: 'strings', block: 3 };
 
-async function poolOn(entry: string) {
+async function poolOn(entry: string, stallMs = 60_000) {
   const folder = scratch.next();
   mkdirSync(folder, { recursive: true });
   const file = join(folder, 'entry.mjs');
@@ -21,6 +21,7 @@ async function poolOn(entry: string) {
     workerFile: pathToFileURL(file),
     threads: 2,
     study: FAKE_STUDY,
+    stallMs,
     onRetry: (_, reason) => retries.push(reason),
   });
   return { pool, retries };
@@ -50,10 +51,37 @@ describe('the pool of threads', () => {
     expect(retries).toHaveLength(2);
   });
 
+  it.each([
+    ['hangs in a loop', 'export default () => { for (;;); };'],
+    ['waits for what never comes', 'export default () => new Promise(() => undefined);'],
+  ])('gives a block up after three attempts if its thread %s', async (_, entry) => {
+    const { pool, retries } = await poolOn(entry, 500);
+    const error = await pool.run(TASK).catch((reason: unknown) => reason);
+    await pool.close();
+    expect(error).toBeInstanceOf(LostBlock);
+    expect(String(error)).toContain('strings, block 3: its thread ended each time: no bank was finished within 0.5 s');
+    expect(retries).toHaveLength(2);
+  });
+
+  it('gives a block up whose thread runs out of memory, and the others go on', async () => {
+    const { pool, retries } = await poolOn(
+      `export default ({ task }) => {
+        const held = [];
+        while (task.block === 3) held.push(new Array(1e6).fill(1.5));
+        return { csv: 'done', computeS: 0 };
+      };`,
+    );
+    const lost = pool.run(TASK).catch((reason: unknown) => reason);
+    expect(await pool.run({ ...TASK, block: 4 })).toMatchObject({ csv: 'done' });
+    expect(String(await lost)).toMatch(/strings, block 3: .*out of memory/i);
+    expect(retries).toHaveLength(2);
+    await pool.close();
+  });
+
   it('hands the study to every thread and tasks by name', async () => {
     const piscina = JSON.stringify(import.meta.resolve('piscina'));
     const { pool, retries } = await poolOn(
-      `import { workerData } from ${piscina}; export default (task) => ({ csv: JSON.stringify([workerData, task]), computeS: 0 });`,
+      `import { workerData } from ${piscina}; export default ({ task }) => ({ csv: JSON.stringify([workerData, task]), computeS: 0 });`,
     );
     const replies = await Promise.all([pool.run(TASK), pool.run(TASK), pool.run(TASK)]);
     await pool.close();

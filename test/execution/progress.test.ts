@@ -27,7 +27,9 @@ describe('progress', () => {
       progress.end();
     });
     // By hand: 60 of 300 blocks in 60 s leave 240 s, 120 in 120 s leave 180 s.
-    expect(text).toBe('60 of 300 blocks in 1:00, about 4:00 left\n120 of 300 blocks in 2:00, about 3:00 left\n');
+    expect(text).toBe(
+      '60 of 300 blocks in 1:00, 60 a minute, about 4:00 left\n120 of 300 blocks in 2:00, 60 a minute, about 3:00 left\n',
+    );
   });
 
   it('on a terminal writes over its line, lets notes stand and goes away at the end', () => {
@@ -38,7 +40,7 @@ describe('progress', () => {
       progress.end();
     });
     const clear = '\r\u001b[K';
-    const line = '1 of 4 blocks in 0:01, about 0:03 left';
+    const line = '1 of 4 blocks in 0:01, 60 a minute, about 0:03 left';
     expect(text).toBe(`${clear}${line}${clear}a note\n${line}${clear}`);
   });
 
@@ -52,6 +54,30 @@ describe('progress', () => {
       progress.update(0, 4);
     });
     expect(text).toBe('0 of 4 blocks in 1:01\n');
+  });
+
+  it('shows that time goes on while no block comes', () => {
+    const text = shown(false, (progress, at) => {
+      at(30);
+      progress.update(1, 10);
+      at(120);
+      progress.tick();
+    });
+    // By hand: one block in 120 s is half a block a minute and leaves 9 x 2 minutes.
+    expect(text).toBe('1 of 10 blocks in 2:00, 0.5 a minute, about 18:00 left\n');
+  });
+
+  it('tells notes to whoever wants them too, lines to the screen only', () => {
+    const notes: string[] = [];
+    const progress = new Progress({
+      terminal: false,
+      nowMs: () => 0,
+      write: () => undefined,
+      onNote: (text) => notes.push(text),
+    });
+    progress.note('a thread ended');
+    progress.line('so far so good');
+    expect(notes).toEqual(['a thread ended']);
   });
 
   it.each([

@@ -23,7 +23,7 @@ const DOORS = {
   'fast-csv': 'src/output/csv.ts',
   piscina: 'src/execution/pool.ts|workers/block.ts',
   commander: 'src/commands/program.ts',
-  yaml: 'src/study/yaml-source.ts',
+  yaml: 'src/study/yaml-(source|depth).ts',
   zod: 'src/study/[^/]+',
 };
 

@@ -15,7 +15,7 @@ afterAll(() => program.remove());
 
 async function replyTo(block: number, study: Study = FAKE_STUDY): Promise<BlockReply> {
   const { workerFile } = program;
-  const pool = await BlockPool.start({ workerFile, threads: 1, study, onRetry: () => undefined });
+  const pool = await BlockPool.start({ workerFile, threads: 1, study, stallMs: 60_000, onRetry: () => undefined });
   try {
     return await pool.run({ candidate: 'strings', block });
   } finally {
