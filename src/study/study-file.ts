@@ -3,6 +3,7 @@ import { ACCEPTANCE } from './acceptance.js';
 import { amount, count } from './amount.js';
 import { BANK, CANDIDATES } from './candidate.js';
 import { DUTY } from './duty.js';
+import { ENOUGH } from './enough.js';
 import { OCV } from './ocv.js';
 import { section } from './section.js';
 import { SEED } from './seed.js';
@@ -69,6 +70,7 @@ export const STUDY_FILE = section({
     .meta({ description: 'Candidate the others are compared with; default: the first.' })
     .optional(),
   acceptance: ACCEPTANCE.meta({ description: 'Lines that a candidate must meet.' }).optional(),
+  enough: ENOUGH.meta({ description: 'When fewer banks than instances are enough; default: never.' }).optional(),
 });
 
 /** A study file as written, where every section may be missing. */
