@@ -21,12 +21,10 @@ export function amountEstimates(
   statistics: readonly Statistic[],
   confidence: number,
 ): readonly StatisticEstimate[] {
-  // Float64Array sorts by number, and the copy leaves the column in the order of instances.
-  const ascending = Float64Array.from(values).sort();
   return statistics.map((statistic) => ({
     ...(statistic === 'mean'
       ? meanEstimate(values, confidence)
-      : quantileEstimate(ascending, probabilityOf(statistic), confidence)),
+      : quantileEstimate(values, probabilityOf(statistic), confidence)),
     statistic,
   }));
 }

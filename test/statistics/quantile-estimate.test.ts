@@ -1,23 +1,23 @@
 import { describe, expect, test } from 'vitest';
 import { binomialCdf } from '../../src/mathematics/binomial.js';
 import { quantileEstimate, quantileRanks } from '../../src/statistics/quantile-estimate.js';
-import { quantileOfSorted } from '../../src/statistics/quantile-of-sorted.js';
+import { sampleQuantile } from '../../src/statistics/sample-quantile.js';
 import { allTables, probabilityThat } from './multinomial.js';
 
 const oneTo = (n: number): Float64Array => Float64Array.from({ length: n }, (_, index) => index + 1);
 
-describe('quantile of sorted values', () => {
+describe('quantile of a sample', () => {
   test('interpolates as R and NumPy do by default', () => {
     // By hand, definition 7: place (4 - 1) 0.4 = 1.2, so 2 + 0.2 (4 - 2).
-    expect(quantileOfSorted(Float64Array.of(1, 2, 4, 8), 0.4)).toBeCloseTo(2.4, 14);
-    expect(quantileOfSorted(Float64Array.of(1, 2, 4, 8), 0)).toBe(1);
-    expect(quantileOfSorted(Float64Array.of(1, 2, 4, 8), 1)).toBe(8);
-    expect(quantileOfSorted(Float64Array.of(5), 0.3)).toBe(5);
+    expect(sampleQuantile(Float64Array.of(8, 1, 4, 2), 0.4)).toBeCloseTo(2.4, 14);
+    expect(sampleQuantile(Float64Array.of(1, 2, 4, 8), 0)).toBe(1);
+    expect(sampleQuantile(Float64Array.of(1, 2, 4, 8), 1)).toBe(8);
+    expect(sampleQuantile(Float64Array.of(5), 0.3)).toBe(5);
   });
 
   test('refuses no values and no probability', () => {
-    expect(() => quantileOfSorted(new Float64Array(), 0.5)).toThrow(RangeError);
-    for (const p of [-0.1, 1.1, Number.NaN]) expect(() => quantileOfSorted(oneTo(3), p)).toThrow(RangeError);
+    expect(() => sampleQuantile(new Float64Array(), 0.5)).toThrow(RangeError);
+    for (const p of [-0.1, 1.1, Number.NaN]) expect(() => sampleQuantile(oneTo(3), p)).toThrow(RangeError);
   });
 });
 
