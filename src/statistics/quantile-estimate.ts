@@ -1,7 +1,7 @@
 import { binomialQuantile } from '../mathematics/binomial.js';
 import { type Estimate, notEstimable, requireConfidence } from './estimate.js';
-import { orderStatistic } from './order-statistic.js';
-import { sampleQuantile } from './sample-quantile.js';
+import { orderStatistics } from './order-statistics.js';
+import { quantilePlace } from './quantile-place.js';
 
 /** Ranks (from 1) of the two order statistics that bound a quantile. */
 export interface QuantileRanks {
@@ -26,10 +26,13 @@ export function quantileEstimate(values: Float64Array, p: number, confidence: nu
   const n = values.length;
   const ranks = quantileRanks(n, p, confidence);
   if (ranks === null) return notEstimable(n);
+  const place = quantilePlace(n, p);
+  const found = orderStatistics(values, [ranks.lower, place.below, place.above, ranks.upper]);
+  const at = (rank: number): number => found.get(rank) ?? Number.NaN;
   return {
-    estimate: sampleQuantile(values, p),
-    lower: orderStatistic(values, ranks.lower),
-    upper: orderStatistic(values, ranks.upper),
+    estimate: at(place.below) + (at(place.above) - at(place.below)) * place.part,
+    lower: at(ranks.lower),
+    upper: at(ranks.upper),
     method: 'order-statistics',
     note: `ranks ${ranks.lower} and ${ranks.upper}`,
     instances: n,
