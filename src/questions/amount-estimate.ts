@@ -22,12 +22,10 @@ export function amountEstimates(
   statistics: readonly Statistic[],
   confidence: number,
 ): readonly StatisticEstimate[] {
-  // Float64Array sorts by number, and the copy leaves the column in the order of instances.
-  const ascending = Float64Array.from(drawn.values).sort();
   return statistics.map((statistic) => ({
     ...(statistic === 'mean'
       ? meanOf(drawn, confidence)
-      : asPooled(quantileEstimate(ascending, probabilityOf(statistic), confidence), drawn)),
+      : asPooled(quantileEstimate(drawn.values, probabilityOf(statistic), confidence), drawn)),
     statistic,
   }));
 }

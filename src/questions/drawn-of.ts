@@ -1,10 +1,11 @@
 import type { ColumnValues } from '../outcomes/column-values.js';
 import type { Drawn } from '../statistics/drawn.js';
+import { bindsBlocks } from '../study/sampling-plan.js';
 import type { Study } from '../study/study.js';
 
 /** Instances in a block where the plan of the study makes only whole blocks independent of each other; else null. */
 export function independentBlockSize({ plan, blockSize }: Study): number | null {
-  return plan === 'independent' ? null : blockSize;
+  return bindsBlocks(plan) ? blockSize : null;
 }
 
 /**
