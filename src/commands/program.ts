@@ -8,6 +8,8 @@ Exit status:
   0  done
   1  a fault of this program, with its stack and how to report it
   2  command line, study or input
+  3  the candidate of run --require fails an acceptance line
+  4  whether it meets them all is not decided
   5  the run ended with blocks missing
   130, 143  interrupted (Ctrl-C, termination)
 `;
@@ -63,6 +65,7 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
     .addOption(new Option('--threads <count>', 'threads; never changes a result').argParser(wholeNumber(1, 1024)))
     .addOption(new Option('--seed <seed>', "in place of the study's").argParser(seedText))
     .addOption(new Option('--instances <count>', "in place of the study's").argParser(wholeNumber(1, 10_000_000)))
+    .option('--require <candidate>', 'end with status 3 if it fails an acceptance line, 4 if that is not decided')
     .option('--replace', 'discard what another run left in the folder')
     .option('--json', 'one JSON document in place of the table')
     .option('--quiet', 'results and faults only')
@@ -137,6 +140,7 @@ interface RunFlags {
   readonly threads?: number;
   readonly seed?: string;
   readonly instances?: number;
+  readonly require?: string;
   readonly replace?: boolean;
   readonly json?: boolean;
   readonly quiet?: boolean;

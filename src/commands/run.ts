@@ -1,6 +1,6 @@
 import { availableParallelism } from 'node:os';
 import { basename, join, parse } from 'node:path';
-import { type Execution, executeRun } from '../execution/execute-run.js';
+import { type Execution, executeRun, type Looks } from '../execution/execute-run.js';
 import { FileOutcomes } from '../execution/file-outcomes.js';
 import { FolderRefused } from '../execution/folder-refused.js';
 import { LostBlock } from '../execution/lost-block.js';
@@ -14,11 +14,14 @@ import { renderJson } from '../output/json-table.js';
 import { renderTable } from '../output/table.js';
 import { RESULT_FILES, writeResults } from '../output/write-results.js';
 import { answerStudy } from '../questions/answer-study.js';
+import type { Answers } from '../questions/answers.js';
+import { takeLook } from '../questions/enough.js';
 import { ENGINE } from '../study/engine.js';
 import { simulationContent, simulationKey } from '../study/simulation-key.js';
 import type { Study } from '../study/study.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
+import { judgeRequirement, requirementFault } from './requirement.js';
 import { renderClosing, renderEarlyEnd } from './run-messages.js';
 import type { Shell } from './shell.js';
 
@@ -32,6 +35,8 @@ export interface RunOptions {
   readonly instances?: number | undefined;
   /** Threads, as many as the machine runs at once if not said. Never changes a result. */
   readonly threads?: number | undefined;
+  /** Candidate that must meet the acceptance lines, or the status tells. */
+  readonly require?: string | undefined;
   /** Discards what an earlier run left in the folder. */
   readonly replace?: boolean | undefined;
   /** One JSON document in place of the table. */
@@ -53,6 +58,11 @@ const WORKER_FILE = new URL('../../workers/block.js', import.meta.url);
 export async function runCommand(options: RunOptions, shell: Shell, workerFile = WORKER_FILE): Promise<ExitStatus> {
   const loaded = loadStudy(options.study, shell, { seed: options.seed, instances: options.instances });
   if (loaded === null) return EXIT_STATUS.input;
+  const fault = options.require === undefined ? null : requirementFault(loaded.study, options.require);
+  if (fault !== null) {
+    shell.err(`${fault}\n`);
+    return EXIT_STATUS.input;
+  }
   const path = options.out ?? join('results', parse(options.study).name);
   try {
     const folder = await RunFolder.open(path, options.replace ? LEFT_BY_A_RUN : []);
@@ -87,16 +97,23 @@ async function runInFolder(
     terminal: shell.isTerminal.err,
     nowMs: shell.now,
   });
-  const execution = await executeRun({ study, keys, folder, workerFile, threads, stop: shell.interruption, progress });
+  const looks = looksOf(study, folder);
+  const stop = shell.interruption;
+  const execution = await executeRun({ study, keys, folder, workerFile, threads, stop, progress, looks });
   const end = endOf(execution);
+  let answers: Answers | null = null;
   if (execution.instances > 0 && end !== 'failed') {
-    shell.out(await resultsOf(study, execution.instances, folder, inputs, options.json ?? false));
+    answers = await answersOf(study, execution.instances, folder, inputs);
+    shell.out(options.json ? renderJson(answers, study) : renderTable(answers, study, folder.path));
   }
   const durationMs = shell.now() - startMs;
   await record.end(end, durationMs / 1000);
   if (end === 'complete') {
     if (!options.quiet) shell.err(renderClosing(study, execution, { durationMs, threads, folder: folder.path }));
-    return EXIT_STATUS.done;
+    if (options.require === undefined || answers === null) return EXIT_STATUS.done;
+    const { status, message } = judgeRequirement(answers, options.require);
+    if (!options.quiet) shell.err(`${message}\n`);
+    return status;
   }
   const { failure } = execution;
   if (failure instanceof Error) shell.err(`${failure.message}\n`);
@@ -127,14 +144,27 @@ async function keepStudy({ text, study, inputs }: LoadedStudy, folder: RunFolder
   return names;
 }
 
-/** Answers the questions and writes the answers. @returns what is to be printed */
-async function resultsOf(
+/** Where a study may end before its last bank; undefined if its number of banks is fixed. */
+function looksOf(study: Study, folder: RunFolder): Looks | undefined {
+  if (study.enough === undefined) return undefined;
+  const isEnough = async (instances: number): Promise<boolean> => {
+    const outcomes = new FileOutcomes(folder, study, instances);
+    try {
+      return (await takeLook(study, outcomes, instances)).enough;
+    } finally {
+      await outcomes.close();
+    }
+  };
+  return { at: study.enough.looks, isEnough };
+}
+
+/** Answers the questions and writes the answers. */
+async function answersOf(
   study: Study,
   instances: number,
   folder: RunFolder,
   inputs: readonly string[],
-  json: boolean,
-): Promise<string> {
+): Promise<Answers> {
   const outcomes = new FileOutcomes(folder, study, instances);
   try {
     const answers = await answerStudy(study, outcomes);
@@ -155,7 +185,7 @@ async function resultsOf(
       })),
       inputs,
     });
-    return json ? renderJson(answers, study) : renderTable(answers, study, folder.path);
+    return answers;
   } finally {
     await outcomes.close();
   }

@@ -1,8 +1,8 @@
-import type { BlockTask } from '../outcomes/block.js';
+import { type BlockTask, blockCount } from '../outcomes/block.js';
 import type { Study } from '../study/study.js';
 import { computeBlocks } from './compute-blocks.js';
 import { blockName } from './lost-block.js';
-import { commonInstances, instancesDue, planRun } from './plan.js';
+import { commonInstances, instancesDue, type Plan, planRun } from './plan.js';
 import { BlockPool } from './pool.js';
 import type { Progress } from './progress.js';
 import { blockFile, type RunFolder } from './run-folder.js';
@@ -18,6 +18,16 @@ export interface ExecuteOptions {
   /** Aborted, the run ends after the blocks in flight. */
   readonly stop: AbortSignal;
   readonly progress: Progress;
+  /** Absent: the run ends with the last block of the study. */
+  readonly looks?: Looks | undefined;
+}
+
+/** Where a run may end before its last block. */
+export interface Looks {
+  /** Numbers of instances, ascending, whole blocks; the last is that of the study. */
+  readonly at: readonly number[];
+  /** Asked when every candidate has so many instances, and told of no more: only then is the answer the same always. */
+  readonly isEnough: (instances: number) => Promise<boolean>;
 }
 
 export interface Execution {
@@ -32,22 +42,50 @@ export interface Execution {
   readonly failure: unknown;
 }
 
-/** Computes what the folder lacks of a study. A failure is returned, not thrown, because what is finished still counts. */
+/**
+ * Computes what the folder lacks of a study, up to the look at which it is enough. A failure is returned, not thrown,
+ * because what is finished still counts.
+ */
 export async function executeRun(options: ExecuteOptions): Promise<Execution> {
-  const { study, keys, folder, progress } = options;
+  const { study, keys, folder, looks } = options;
   const plan = await planRun(study, keys, folder);
-  for (const task of plan.damaged) {
-    progress.note(`${blockFile(task)} is not as it was written; computing it again`);
-  }
   const computed: BlockTask[] = [];
-  const failure = await computeMissing(options, plan.missing, computed);
-  return {
-    instances: commonInstances(study, [...plan.finished, ...computed]),
-    found: plan.finished.length,
-    computed: computed.length,
-    missing: plan.missing.length - computed.length,
-    failure,
-  };
+  for (const target of looks?.at ?? [study.instances]) {
+    const upToLook = upTo(target, study, plan);
+    const failure = await computeUpTo(options, upToLook, computed);
+    const instances = commonInstances({ ...study, instances: target }, [...plan.finished, ...computed]);
+    const isLast = instances < target || target === study.instances || (await looks?.isEnough(target)) === true;
+    if (!isLast) continue;
+    return {
+      instances,
+      found: upToLook.finished.length,
+      computed: computed.length,
+      missing: upToLook.missing.length - computed.length,
+      failure,
+    };
+  }
+  throw new RangeError('the last look is not that of the whole study');
+}
+
+/** The part of a plan whose blocks lie within so many instances. */
+function upTo(instances: number, { blockSize }: Study, { finished, missing, damaged }: Plan): Plan {
+  const last = blockCount({ instances, blockSize });
+  const within = ({ block }: BlockTask): boolean => block <= last;
+  return { finished: finished.filter(within), missing: missing.filter(within), damaged: damaged.filter(within) };
+}
+
+/** Computes what is missing of a plan and not among what is computed, to which it is added. */
+async function computeUpTo(
+  options: ExecuteOptions,
+  { missing, damaged }: Plan,
+  computed: BlockTask[],
+): Promise<unknown> {
+  const done = new Set(computed.map(blockFile));
+  const isLeft = (task: BlockTask): boolean => !done.has(blockFile(task));
+  for (const task of damaged.filter(isLeft)) {
+    options.progress.note(`${blockFile(task)} is not as it was written; computing it again`);
+  }
+  return computeMissing(options, missing.filter(isLeft), computed);
 }
 
 async function computeMissing(
@@ -63,7 +101,8 @@ async function computeMissing(
     study,
     onRetry: (task, reason) => progress.note(`${blockName(task)}: its thread ended (${reason}); trying again`),
   });
-  progress.update(0, missing.length);
+  const before = computed.length;
+  progress.update(before, before + missing.length);
   try {
     await computeBlocks({
       tasks: missing,
@@ -72,7 +111,7 @@ async function computeMissing(
       keep: async (task, block) => {
         await folder.keep(task, keys.get(task.candidate) ?? '', instancesDue(study, task.block), block);
         computed.push(task);
-        progress.update(computed.length, missing.length);
+        progress.update(computed.length, before + missing.length);
       },
       stop,
     });

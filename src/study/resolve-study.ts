@@ -1,4 +1,5 @@
 import { resolveAcceptance } from './acceptance.js';
+import { resolveEnough } from './enough.js';
 import { didYouMean } from './nearest-name.js';
 import { resolveOcv } from './ocv.js';
 import type { Origin } from './origin.js';
@@ -27,6 +28,8 @@ export function resolveStudy(input: StudyInput, options: ReadStudyOptions, readi
   const candidates = titledPacks(resolveCandidates(input.candidates ?? {}, input.bank, stocks, reading), reading);
   const reference = resolveReference(input, candidates, reading);
   const acceptance = resolveAcceptance(input.acceptance ?? [], options.measures, reading);
+  const isOverridden = options.overrides?.instances !== undefined;
+  const enough = input.enough && resolveEnough(input.enough, top, isOverridden, options.measures, reading);
   if (duty === undefined) return undefined;
   const study: Study = {
     format: FORMAT,
@@ -38,6 +41,7 @@ export function resolveStudy(input: StudyInput, options: ReadStudyOptions, readi
     candidates,
     reference,
     acceptance,
+    ...(enough !== undefined && { enough }),
   };
   checkReleaseGaps(study, reading);
   reading.warnings.push(...studyWarnings(study));

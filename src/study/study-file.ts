@@ -3,6 +3,7 @@ import { ACCEPTANCE } from './acceptance.js';
 import { amount, choice, count } from './amount.js';
 import { BANK, CANDIDATES } from './candidate.js';
 import { DUTY } from './duty.js';
+import { ENOUGH } from './enough.js';
 import { OCV } from './ocv.js';
 import { SAMPLING_PLANS } from './sampling-plan.js';
 import { section } from './section.js';
@@ -77,6 +78,7 @@ export const STUDY_FILE = section({
     .meta({ description: 'Candidate the others are compared with; default: the first.' })
     .optional(),
   acceptance: ACCEPTANCE.meta({ description: 'Lines that a candidate must meet.' }).optional(),
+  enough: ENOUGH.meta({ description: 'When fewer banks than instances are enough; default: never.' }).optional(),
 });
 
 /** A study file as written, where every section may be missing. */

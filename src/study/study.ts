@@ -37,6 +37,22 @@ export interface Study {
   /** Key of the candidate that the others are compared with. */
   readonly reference: string;
   readonly acceptance: readonly AcceptanceLine[];
+  /** Absent: the number of instances is fixed. */
+  readonly enough?: Enough;
+}
+
+/** The run ends at the first look at which every watched estimate of every candidate is narrow enough. */
+export interface Enough {
+  /** Numbers of instances, ascending, whole blocks; the last is that of the study. */
+  readonly looks: readonly number[];
+  readonly watched: readonly WatchedEstimate[];
+}
+
+export interface WatchedEstimate {
+  readonly measure: string;
+  readonly statistic: string;
+  /** In the unit of the measure as printed; percentages in points. */
+  readonly halfWidth: number;
 }
 
 /** Address of a draw that is spread together with others. */
