@@ -82,6 +82,8 @@ export function renderDataPackage(
       engine: provenance.engine,
       study_format: study.format,
       seed: study.seed,
+      plan: study.plan,
+      block: study.blockSize,
       instances: answers.instances,
       node_major: provenance.nodeMajor,
       architecture: provenance.architecture,

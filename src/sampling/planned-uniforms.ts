@@ -33,7 +33,8 @@ export function plannedUniforms({
   sobolColumns = [],
 }: Pick<Study, 'plan' | 'blockSize' | 'sobolColumns'>): (scope: DrawScope) => UniformOf {
   if (plan === 'independent') return uniformsOf;
-  const columns = new Map(sobolColumns.map((column, number) => [addressOf(column, column.quantity), number]));
+  const own = plan === 'sobol' ? sobolColumns : [];
+  const columns = new Map(own.map((column, number) => [addressOf(column, column.quantity), number]));
   const digits = 31 - Math.clz32(blockSize);
   return (scope) => {
     const uniformOf = uniformsOf(scope);

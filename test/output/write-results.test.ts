@@ -144,6 +144,8 @@ describe('data package', () => {
       engine: 3,
       study_format: 1,
       seed: '7',
+      plan: 'independent',
+      block: 2,
       instances: 3,
       node_major: 20,
       architecture: 'x64',

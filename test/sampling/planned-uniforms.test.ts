@@ -106,6 +106,13 @@ function drawnAt(plan: SamplingPlan, block: number, index: number): number {
 }
 
 describe('draws with a column of Sobol', () => {
+  test('have it under the plan sobol only', () => {
+    const capacities = BOUND.map((plan) => drawn('N2', 'capacityAh', { plan }));
+    expect(capacities[0]).not.toEqual(capacities[1]);
+    const others = BOUND.map((plan) => drawn('N2', 'standbyA', { plan }));
+    expect(others[0]).toEqual(others[1]);
+  });
+
   test('of the first two columns fall once into each box of any shape, in every block', () => {
     // Sobol 1967: columns 1 and 2 are a (0, m, 2)-net in base 2; scrambling keeps it one (Owen 1995).
     for (const block of [1, 2, 3]) {

@@ -48,6 +48,7 @@ describe('the pieces of studies in the README of the studies', () => {
       'Measured modules',
       'Load peaks',
       'Parts of a year',
+      'A sampling plan',
       'Enough banks',
     ]);
   });
