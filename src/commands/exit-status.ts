@@ -5,6 +5,10 @@ export const EXIT_STATUS = {
   ourFault: 1,
   /** Command line, study or input. */
   input: 2,
+  /** A candidate that must meet its acceptance lines (`run --require`) fails one. */
+  requirementNotMet: 3,
+  /** Whether it meets them is not decided. */
+  requirementNotDecided: 4,
   /** The run ended with blocks missing, or its results could not be written. */
   blocksMissing: 5,
   /** `status`: the run goes on. */

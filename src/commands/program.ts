@@ -8,6 +8,8 @@ Exit status:
   0  done
   1  a fault of this program, with its stack and how to report it
   2  command line, study or input
+  3  the candidate of run --require fails an acceptance line
+  4  whether it meets them all is not decided
   5  the run ended with blocks missing, or results that could not be written
   6  status: the run goes on
   7  verify found something that is not as it was
@@ -83,6 +85,7 @@ function buildProgram(version: string, shell: Shell): { program: Command; status
         'banks of each candidate that may fail to converge; they are listed and left out (default: 0)',
       ).argParser(percentage),
     )
+    .option('--require <candidate>', 'end with status 3 if it fails an acceptance line, 4 if that is not decided')
     .option('--replace', 'discard what another run left in the folder')
     .option('--json', 'one JSON document in place of the table')
     .option('--quiet', 'results and faults only')
@@ -195,6 +198,7 @@ interface RunFlags {
   readonly instances?: number;
   readonly stallMinutes?: number;
   readonly mayFail?: number;
+  readonly require?: string;
   readonly replace?: boolean;
   readonly json?: boolean;
   readonly quiet?: boolean;

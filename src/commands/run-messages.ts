@@ -7,10 +7,10 @@ const LONGEST_IN_SECONDS_MS = 600_000;
 /** The line that closes a run that came to its end. */
 export function renderClosing(
   study: Study,
-  { found, computed }: Execution,
+  { instances, found, computed }: Execution,
   { durationMs, threads, folder }: { durationMs: number; threads: number; folder: string },
 ): string {
-  const size = `${study.instances} banks x ${counted(study.candidates.length, 'candidate')}`;
+  const size = `${instances} banks x ${counted(study.candidates.length, 'candidate')}`;
   if (computed === 0) return `${folder} is complete: ${size}; nothing was left to compute\n`;
   const share = found === 0 ? '' : `, ${computed} of ${found + computed} blocks computed`;
   const time = durationMs < LONGEST_IN_SECONDS_MS ? `${Math.round(durationMs / 1000)} s` : clock(durationMs);
@@ -28,7 +28,7 @@ export function renderEarlyEnd(
   const done =
     instances === 0
       ? 'before every candidate had a block: nothing to summarise'
-      : `with ${instances} of ${study.instances} banks in every candidate: ${results}`;
+      : `with ${instances} of ${study.enough === undefined ? '' : 'at most '}${study.instances} banks in every candidate: ${results}`;
   return `${how} ${done}; ${counted(missing, 'block')} missing in ${folder}; the same command takes them up\n`;
 }
 

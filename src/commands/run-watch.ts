@@ -1,9 +1,8 @@
-import { instancesDue } from '../execution/plan.js';
+import { type FinishedBlock, instancesDue } from '../execution/plan.js';
 import type { Progress } from '../execution/progress.js';
 import { blockFile, type RunFolder } from '../execution/run-folder.js';
 import type { RunLog } from '../execution/run-log.js';
 import { isSystemError } from '../execution/system-error.js';
-import type { BlockTask } from '../outcomes/block.js';
 import { OutcomeFault } from '../outcomes/outcome-fault.js';
 import { renderRunning } from '../output/running-text.js';
 import { RunningEstimates } from '../questions/running-estimates.js';
@@ -19,7 +18,7 @@ export class RunWatch {
   readonly #progress: Progress;
   readonly #log: RunLog;
   readonly #estimates: RunningEstimates;
-  readonly #finished = new Set<string>();
+  readonly #finished = new Map<string, FinishedBlock>();
   #timer: NodeJS.Timeout | undefined;
   #telling: Promise<void> = Promise.resolve();
   #banks = 0;
@@ -33,9 +32,9 @@ export class RunWatch {
   }
 
   /** Tells of a block that is in the folder, found there or computed. */
-  finished(task: BlockTask, isComputed: boolean): void {
-    this.#finished.add(blockFile(task));
-    if (isComputed && task.block > 0) this.#banks += instancesDue(this.#study, task.block);
+  finished(block: FinishedBlock, isComputed: boolean): void {
+    this.#finished.set(blockFile(block), block);
+    if (isComputed && block.block > 0) this.#banks += instancesDue(this.#study, block.block);
   }
 
   start(everyMs = EVERY_MS): void {
@@ -83,10 +82,11 @@ export class RunWatch {
   /** Takes in what every candidate has by now; a block that was spoilt or removed meanwhile is left to whoever verifies. */
   async #takeIn(): Promise<void> {
     for (let next = this.#estimates.next; next.length > 0; next = this.#estimates.next) {
-      if (!next.every((task) => this.#finished.has(blockFile(task)))) return;
+      const blocks = next.flatMap((task) => this.#finished.get(blockFile(task)) ?? []);
+      if (blocks.length < next.length) return;
       try {
-        const texts = await Promise.all(next.map((task) => this.#folder.read(blockFile(task))));
-        this.#estimates.take(texts.map((text) => text ?? ''));
+        const texts = await Promise.all(blocks.map((block) => this.#folder.read(blockFile(block))));
+        this.#estimates.take(blocks.map(({ failed = [] }, index) => ({ csv: texts[index] ?? '', failed })));
       } catch (error) {
         if (error instanceof OutcomeFault || isSystemError(error)) return;
         throw error;

@@ -1,6 +1,6 @@
 import { availableParallelism } from 'node:os';
 import { basename, join, parse } from 'node:path';
-import { type ExecuteOptions, type Execution, executeRun } from '../execution/execute-run.js';
+import { type ExecuteOptions, type Execution, executeRun, type Looks } from '../execution/execute-run.js';
 import { FileOutcomes } from '../execution/file-outcomes.js';
 import { isOfTheMachine } from '../execution/folder-lost.js';
 import { FolderRefused } from '../execution/folder-refused.js';
@@ -16,12 +16,15 @@ import { renderJson } from '../output/json-table.js';
 import { renderTable } from '../output/table.js';
 import { RESULT_FILES, writeResults } from '../output/write-results.js';
 import { answerStudy } from '../questions/answer-study.js';
+import type { Answers } from '../questions/answers.js';
+import { takeLook } from '../questions/enough.js';
 import { ENGINE } from '../study/engine.js';
 import { simulationContent, simulationKey } from '../study/simulation-key.js';
 import type { Study } from '../study/study.js';
 import { EXIT_STATUS, type ExitStatus, STATUS_OF_SIGNAL } from './exit-status.js';
 import { FAILED_FILE, listFailedBanks, renderFailedBanks } from './failed-banks.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
+import { judgeRequirement, requirementFault } from './requirement.js';
 import { renderClosing, renderEarlyEnd } from './run-messages.js';
 import { RunWatch } from './run-watch.js';
 import type { Shell } from './shell.js';
@@ -40,6 +43,8 @@ export interface RunOptions {
   readonly stallMinutes?: number | undefined;
   /** Percentage of the banks that may fail to converge in each candidate; 0 if not said. */
   readonly mayFailPercent?: number | undefined;
+  /** Candidate that must meet the acceptance lines, or the status tells. */
+  readonly require?: string | undefined;
   /** Discards what an earlier run left in the folder. */
   readonly replace?: boolean | undefined;
   /** One JSON document in place of the table. */
@@ -68,6 +73,11 @@ export const WORKER_FILE = new URL('../../workers/block.js', import.meta.url);
 export async function runCommand(options: RunOptions, shell: Shell, workerFile = WORKER_FILE): Promise<ExitStatus> {
   const loaded = loadStudy(options.study, shell, { seed: options.seed, instances: options.instances });
   if (loaded === null) return EXIT_STATUS.input;
+  const fault = options.require === undefined ? null : requirementFault(loaded.study, options.require);
+  if (fault !== null) {
+    shell.err(`${fault}\n`);
+    return EXIT_STATUS.input;
+  }
   const path = options.out ?? join('results', parse(options.study).name);
   try {
     const folder = await RunFolder.open(path, options.replace ? LEFT_BY_A_RUN : []);
@@ -122,12 +132,15 @@ async function runInFolder(
   const stop = shell.interruption();
   const stallMs = (options.stallMinutes ?? STALL_MINUTES) * 60_000;
   const mayFailFraction = (options.mayFailPercent ?? 0) / 100;
-  const task = { study, keys, folder, workerFile, threads, stallMs, mayFailFraction, stop, progress };
+  const looks = looksOf(study, folder);
+  const task = { study, keys, folder, workerFile, threads, stallMs, mayFailFraction, stop, progress, looks };
   const computed = await executeWatched(task, log);
   const hasResults = computed.instances > 0 && endOf(computed) !== 'failed';
+  let answers: Answers | null = null;
   const unwritten = await troubleIn(async () => {
     if (!hasResults) return;
-    shell.out(await resultsOf(study, computed, folder, inputs, options.json ?? false));
+    answers = await answersOf(study, computed, folder, inputs);
+    shell.out(options.json ? renderJson(answers, study) : renderTable(answers, study, folder.path));
     await listFailedBanks(folder, computed.failed);
   });
   const execution = { ...computed, failure: computed.failure ?? unwritten };
@@ -146,7 +159,10 @@ async function runInFolder(
   });
   if (end === 'complete') {
     if (!options.quiet) shell.err(renderClosing(study, execution, { durationMs, threads, folder: folder.path }));
-    return EXIT_STATUS.done;
+    if (options.require === undefined || answers === null) return EXIT_STATUS.done;
+    const { status, message } = judgeRequirement(answers, options.require);
+    if (!options.quiet) shell.err(`${message}\n`);
+    return status;
   }
   const { failure } = execution;
   if (failure instanceof Error) shell.err(`${failure.message}\n`);
@@ -217,14 +233,27 @@ function portableName(path: string): string {
   return [...basename(path).replace(/[^\p{L}\p{M}\p{N}._ -]/gu, '_')].slice(-LONGEST_KEPT_NAME).join('');
 }
 
-/** Answers the questions and writes the answers. @returns what is to be printed */
-async function resultsOf(
+/** Where a study may end before its last bank; undefined if its number of banks is fixed. */
+function looksOf(study: Study, folder: RunFolder): Looks | undefined {
+  if (study.enough === undefined) return undefined;
+  const isEnough: Looks['isEnough'] = async (instances, failed) => {
+    const outcomes = new FileOutcomes(folder, study, instances, { failed });
+    try {
+      return (await takeLook(study, outcomes, instances)).enough;
+    } finally {
+      await outcomes.close();
+    }
+  };
+  return { at: study.enough.looks, isEnough };
+}
+
+/** Answers the questions and writes the answers. */
+async function answersOf(
   study: Study,
   { instances, failed }: Execution,
   folder: RunFolder,
   inputs: readonly string[],
-  json: boolean,
-): Promise<string> {
+): Promise<Answers> {
   const outcomes = new FileOutcomes(folder, study, instances, { failed });
   try {
     const answers = await answerStudy(study, outcomes);
@@ -245,7 +274,7 @@ async function resultsOf(
       })),
       inputs,
     });
-    return json ? renderJson(answers, study) : renderTable(answers, study, folder.path);
+    return answers;
   } finally {
     await outcomes.close();
   }

@@ -1,9 +1,9 @@
-import type { BlockTask } from '../outcomes/block.js';
+import { type BlockTask, blockCount } from '../outcomes/block.js';
 import type { Study } from '../study/study.js';
 import { computeBlocks } from './compute-blocks.js';
 import { allowedFailures, type CandidateFailure, failuresWithin } from './failed-instances.js';
 import { blockName } from './lost-block.js';
-import { commonInstances, type FinishedBlock, instancesDue, planRun } from './plan.js';
+import { commonInstances, type FinishedBlock, instancesDue, type Plan, planRun } from './plan.js';
 import { BlockPool } from './pool.js';
 import type { Progress } from './progress.js';
 import { blockFile, RUN_FILE, type RunFolder } from './run-folder.js';
@@ -24,7 +24,20 @@ export interface ExecuteOptions {
   readonly stop: AbortSignal;
   readonly progress: Progress;
   /** Told of every block that is in the folder: those found there first, then each that is computed. */
-  readonly onFinished?: ((task: BlockTask, isComputed: boolean) => void) | undefined;
+  readonly onFinished?: ((block: FinishedBlock, isComputed: boolean) => void) | undefined;
+  /** Absent: the run ends with the last block of the study. */
+  readonly looks?: Looks | undefined;
+}
+
+/** Where a run may end before its last block. */
+export interface Looks {
+  /** Numbers of instances, ascending, whole blocks; the last is that of the study. */
+  readonly at: readonly number[];
+  /**
+   * Asked when every candidate has so many instances, with those of them that have no outcome, and told of no more: only
+   * then is the answer the same always.
+   */
+  readonly isEnough: (instances: number, failed: readonly CandidateFailure[]) => Promise<boolean>;
 }
 
 export interface Execution {
@@ -41,31 +54,60 @@ export interface Execution {
   readonly failure: unknown;
 }
 
-/** Computes what the folder lacks of a study. A failure is returned, not thrown, because what is finished still counts. */
+/**
+ * Computes what the folder lacks of a study, up to the look at which it is enough. A failure is returned, not thrown,
+ * because what is finished still counts.
+ */
 export async function executeRun(options: ExecuteOptions): Promise<Execution> {
-  const { study, keys, folder, progress } = options;
+  const { study, keys, folder, progress, looks } = options;
   const allowed = allowedFailures(study, options.mayFailFraction);
   const plan = await planRun(study, keys, folder, allowed);
   const { damagedLines } = folder.journal.contents;
   if (damagedLines.length > 0) progress.note(damagedLinesNote(damagedLines));
-  for (const task of plan.damaged) {
-    progress.note(`${blockFile(task)} is not as it was written; computing it again`);
-  }
-  for (const task of plan.finished) options.onFinished?.(task, false);
+  for (const block of plan.finished) options.onFinished?.(block, false);
   const computed: FinishedBlock[] = [];
-  const before = failuresWithin(study, plan.finished, study.instances);
-  const mayFail = (key: string) => allowed - before.filter(({ candidate }) => candidate === key).length;
-  const failure = await computeMissing(options, plan.missing, computed, mayFail);
-  const blocks = [...plan.finished, ...computed];
-  const instances = commonInstances(study, blocks);
-  return {
-    instances,
-    failed: failuresWithin(study, blocks, instances),
-    found: plan.finished.length,
-    computed: computed.length,
-    missing: plan.missing.length - computed.length,
-    failure,
-  };
+  for (const target of looks?.at ?? [study.instances]) {
+    const upToLook = upTo(target, study, plan);
+    const before = failuresWithin(study, [...plan.finished, ...computed], study.instances);
+    const mayFail = (key: string) => allowed - before.filter(({ candidate }) => candidate === key).length;
+    const failure = await computeUpTo(options, upToLook, computed, mayFail);
+    const blocks = [...plan.finished, ...computed];
+    const instances = commonInstances({ ...study, instances: target }, blocks);
+    const failed = failuresWithin(study, blocks, instances);
+    const isLast = instances < target || target === study.instances || (await looks?.isEnough(target, failed)) === true;
+    if (!isLast) continue;
+    return {
+      instances,
+      failed,
+      found: upToLook.finished.length,
+      computed: computed.length,
+      missing: upToLook.missing.length - computed.length,
+      failure,
+    };
+  }
+  throw new RangeError('the last look is not that of the whole study');
+}
+
+/** The part of a plan whose blocks lie within so many instances. */
+function upTo(instances: number, { blockSize }: Study, { finished, missing, damaged }: Plan): Plan {
+  const last = blockCount({ instances, blockSize });
+  const within = ({ block }: BlockTask): boolean => block <= last;
+  return { finished: finished.filter(within), missing: missing.filter(within), damaged: damaged.filter(within) };
+}
+
+/** Computes what is missing of a plan and not among what is computed, to which it is added. */
+async function computeUpTo(
+  options: ExecuteOptions,
+  { missing, damaged }: Plan,
+  computed: FinishedBlock[],
+  mayFail: (candidate: string) => number,
+): Promise<unknown> {
+  const done = new Set(computed.map(blockFile));
+  const isLeft = (task: BlockTask): boolean => !done.has(blockFile(task));
+  for (const task of damaged.filter(isLeft)) {
+    options.progress.note(`${blockFile(task)} is not as it was written; computing it again`);
+  }
+  return computeMissing(options, missing.filter(isLeft), computed, mayFail);
 }
 
 function damagedLinesNote(lines: readonly number[]): string {
@@ -89,7 +131,8 @@ async function computeMissing(
     stallMs,
     onRetry: (task, reason) => progress.note(`${blockName(task)}: its thread ended (${reason}); trying again`),
   });
-  progress.update(0, missing.length);
+  const before = computed.length;
+  progress.update(before, before + missing.length);
   try {
     await computeBlocks({
       tasks: missing,
@@ -97,9 +140,10 @@ async function computeMissing(
       run: (task) => pool.run(task),
       keep: async (task, block) => {
         await folder.keep(task, keys.get(task.candidate) ?? '', instancesDue(study, task.block), block);
-        computed.push(block.failed === undefined ? task : { ...task, failed: block.failed });
-        onFinished?.(task, true);
-        progress.update(computed.length, missing.length);
+        const finished = block.failed === undefined ? task : { ...task, failed: block.failed };
+        computed.push(finished);
+        onFinished?.(finished, true);
+        progress.update(computed.length, before + missing.length);
       },
       mayFail,
       stop,

@@ -28,6 +28,11 @@ export class ColumnValues {
     return this.#present;
   }
 
+  /** The same column over instances 1 to `instances` only. */
+  first(instances: number): ColumnValues {
+    return new ColumnValues(this.#values.subarray(0, instances));
+  }
+
   /**
    * @param instance from 1
    * @returns the value of that instance, null where the measure does not apply

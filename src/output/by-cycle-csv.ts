@@ -3,7 +3,7 @@ import { CANDIDATE_COLUMN, estimateColumns, MEASURE_COLUMN } from './estimate-co
 import type { ResultColumn } from './result-column.js';
 
 const STATISTICS =
-  'mean, median, percentile_5, percentile_95: over the sampled banks, at the end of the cycle. Intervals hold for each cycle by itself.';
+  'mean, median, percentile_5, percentile_95: over the sampled banks, at the end of the cycle; share_without: share of the banks in which the event of the measure has not happened by the end of the cycle (product-limit curve, banks without one censored at the last cycle). Intervals hold for each cycle by itself.';
 
 const CYCLE_COLUMN: ResultColumn<ByCycleRow> = {
   name: 'cycle',

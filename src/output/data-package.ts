@@ -1,6 +1,9 @@
+import type { Answers } from '../questions/answers.js';
 import type { Study } from '../study/study.js';
 import type { DataField } from './data-field.js';
 import type { FileContents, JoinedContents } from './file-contents.js';
+import { CONVENTIONS, METHOD_WORDS } from './method-words.js';
+import { namedEnough } from './named-enough.js';
 import type { Provenance } from './provenance.js';
 
 /** What people are told of a resource. */
@@ -66,7 +69,7 @@ export function documentResource(
  */
 export function renderDataPackage(
   study: Study,
-  instances: number,
+  answers: Answers,
   provenance: Provenance,
   resources: readonly DataResource[],
 ): string {
@@ -79,9 +82,16 @@ export function renderDataPackage(
       engine: provenance.engine,
       study_format: study.format,
       seed: study.seed,
-      instances,
+      plan: study.plan,
+      block: study.blockSize,
+      instances: answers.instances,
       node_major: provenance.nodeMajor,
       architecture: provenance.architecture,
+      confidence_percent: answers.confidencePercent,
+      verdict_confidence_percent: answers.verdictConfidencePercent,
+      enough: namedEnough(answers),
+      methods: METHOD_WORDS,
+      conventions: CONVENTIONS,
     },
     resources,
   };

@@ -3,6 +3,7 @@ import type { Study } from '../study/study.js';
 import { byCycleColumns } from './by-cycle-csv.js';
 import { CAUTIONS } from './caution.js';
 import { comparisonColumns } from './comparisons-csv.js';
+import { namedEnough } from './named-enough.js';
 import { namedRows } from './result-column.js';
 import { summaryColumns } from './summary-csv.js';
 
@@ -21,17 +22,20 @@ export function renderJson(answers: Answers, study: Study): string {
     instances_of_study: study.instances,
     cycles: study.cycles,
     confidence_percent: confidencePercent,
+    verdict_confidence_percent: answers.verdictConfidencePercent,
+    enough: namedEnough(answers),
     reference: study.reference,
     candidates: study.candidates.map(({ key, title, wiring }) => ({ candidate: key, title, wiring })),
     verdicts: answers.verdicts.map(({ candidate, verdict, lines }) => ({
       candidate,
       verdict,
-      lines: lines.map(({ line, verdict: ofLine }) => ({
+      lines: lines.map(({ line, verdict: ofLine, wouldDecide }) => ({
         measure: line.measure,
         statistic: line.statistic,
         bound: line.bound.replace('-', '_'),
         limit: line.limit,
         verdict: ofLine,
+        would_decide: wouldDecide,
       })),
     })),
     summary: namedRows(summaryColumns(confidencePercent), answers.summary),

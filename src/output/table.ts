@@ -4,6 +4,7 @@ import { renderAcceptance } from './acceptance-text.js';
 import { CAUTIONS } from './caution.js';
 import { renderComparisonTable } from './comparison-table.js';
 import { renderDecisionTable } from './decision-table.js';
+import { renderEnough } from './enough-text.js';
 import { renderHardestCase } from './hardest-case-text.js';
 import { numberText } from './number-text.js';
 import { renderPackNotes } from './pack-notes.js';
@@ -11,7 +12,7 @@ import { periodWords } from './period-words.js';
 import { asciiText, wrapText } from './plain-text.js';
 
 /**
- * What a run prints: the study, the decision table, the comparison, the acceptance lines, the hardest case and the
+ * What a run prints: the study, the decision table, the comparison, the looks, the acceptance lines, the hardest case and the
  * cautions. Printable ASCII, at most 100 columns except for a command with a long path.
  *
  * @param folder of the run, as a user types it
@@ -22,6 +23,7 @@ export function renderTable(answers: Answers, study: Study, folder: string): str
     renderHead(answers, study),
     [...renderDecisionTable(answers, study), ...renderPackNotes(answers)],
     renderComparisonTable(answers, study),
+    renderEnough(answers),
     renderAcceptance(answers, study),
     renderHardestCase(answers, study, folder),
     wrapText(`Caution: ${CAUTIONS.join(' ')}`),
@@ -33,9 +35,9 @@ export function renderTable(answers: Answers, study: Study, folder: string): str
     .join('');
 }
 
-function renderHead({ instances, confidencePercent }: Answers, study: Study): readonly string[] {
+function renderHead({ instances, enough, confidencePercent }: Answers, study: Study): readonly string[] {
   const banks =
-    instances === study.instances
+    instances === study.instances || enough?.end === 'narrow'
       ? `${instances} sampled ${instances === 1 ? 'bank' : 'banks'}`
       : `${instances} of ${study.instances} sampled banks (unfinished)`;
   const { one, many } = periodWords(study);

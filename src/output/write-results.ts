@@ -50,7 +50,7 @@ export async function writeResults(
     ),
     ...(await keptResources(folder, study, kept)),
   ];
-  const text = renderDataPackage(study, answers.instances, provenance, resources);
+  const text = renderDataPackage(study, answers, provenance, resources);
   await folder.write(RESULT_FILES.dataPackage, text);
 }
 

@@ -1,5 +1,5 @@
 import type { MeasureName } from '../measures/registry.js';
-import type { Estimate } from '../statistics/estimate.js';
+import { type Estimate, withRemark } from '../statistics/estimate.js';
 import type { Candidate } from '../study/study.js';
 
 /** Measures that compare the modules of a string, and so need more than one BMS in it. */
@@ -31,15 +31,10 @@ export function withAbsenceNoted(
 ): Estimate {
   const present = estimate.instances;
   if (present === instances && instances > 0) return estimate;
-  if (present > 0) return withNote(estimate, `over the ${present} of ${instances} sampled banks that have a value`);
+  if (present > 0) return withRemark(estimate, `over the ${present} of ${instances} sampled banks that have a value`);
   const note =
     BETWEEN_MODULES.has(measure) && candidates.some(hasOneBmsPerString) ? ONE_BMS_NOTE : 'absent in every sampled bank';
   return { estimate: null, lower: null, upper: null, method: '', note, instances };
-}
-
-/** The estimate with one more remark in its note. */
-export function withNote(estimate: Estimate, remark: string): Estimate {
-  return { ...estimate, note: estimate.note === '' ? remark : `${estimate.note}; ${remark}` };
 }
 
 /** Whether a single BMS watches the full series length of the candidate's strings. */

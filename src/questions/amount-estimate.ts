@@ -1,6 +1,7 @@
 import type { Statistic } from '../measures/measure.js';
+import type { Drawn } from '../statistics/drawn.js';
+import { asPooled, meanOf } from '../statistics/drawn-estimate.js';
 import type { Estimate } from '../statistics/estimate.js';
-import { meanEstimate } from '../statistics/mean-estimate.js';
 import { quantileEstimate } from '../statistics/quantile-estimate.js';
 
 /** An estimate and the statistic that it estimates. */
@@ -11,27 +12,26 @@ interface StatisticEstimate extends Estimate {
 /**
  * Estimates statistics of an amount over the sampled banks that have it.
  *
- * @param values one per bank, any order, absent ones left out; not changed
+ * @param drawn one value per bank that has one; not changed
  * @param confidence two-sided, e.g. 0.95
- * @returns an estimate per statistic in the order asked for, in the unit of `values`
+ * @returns an estimate per statistic in the order asked for, in the unit of the values
  * @throws RangeError if asked for the share of banks, which amounts do not have
  */
 export function amountEstimates(
-  values: Float64Array,
+  drawn: Drawn,
   statistics: readonly Statistic[],
   confidence: number,
 ): readonly StatisticEstimate[] {
-  // Float64Array sorts by number, and the copy leaves the column in the order of instances.
-  const ascending = Float64Array.from(values).sort();
   return statistics.map((statistic) => ({
     ...(statistic === 'mean'
-      ? meanEstimate(values, confidence)
-      : quantileEstimate(ascending, probabilityOf(statistic), confidence)),
+      ? meanOf(drawn, confidence)
+      : asPooled(quantileEstimate(drawn.values, probabilityOf(statistic), confidence), drawn)),
     statistic,
   }));
 }
 
-function probabilityOf(statistic: Exclude<Statistic, 'mean'>): number {
+/** @throws RangeError for a share of banks, which is no percentile */
+export function probabilityOf(statistic: Exclude<Statistic, 'mean'>): number {
   switch (statistic) {
     case 'median':
       return 0.5;

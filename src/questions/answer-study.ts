@@ -4,10 +4,13 @@ import { packKind } from '../study/packs.js';
 import type { Candidate, Study } from '../study/study.js';
 import type { Answers, ByCycleRow, ComparisonRow, HardestCase, SummaryRow } from './answers.js';
 import { summariseCheckpoint } from './by-cycle.js';
-import { compareMeasure } from './comparison.js';
+import { adjustedForFamily, compareMeasure } from './comparison.js';
+import { answerEnough } from './enough.js';
+import { FIRST_EVENTS, summariseFirstEvent } from './first-event.js';
 import { harderCase } from './hardest-case.js';
 import { summariseMeasure } from './summary.js';
 import { judgeCandidates } from './verdict.js';
+import { verdictConfidence } from './verdict-confidence.js';
 
 /**
  * Answers all questions of a study from the outcomes of its run. Holds no more than two columns at a time.
@@ -31,18 +34,24 @@ export async function answerStudy(study: Study, store: OutcomeStore): Promise<An
   }
   return {
     instances: store.instances,
-    // 0.95 is no binary fraction: without rounding 99.9 % would be printed as 99.90000000000001.
-    confidencePercent: Number((study.confidenceFraction * 100).toPrecision(12)),
+    enough: await answerEnough(study, store),
+    confidencePercent: percentOf(study.confidenceFraction),
+    verdictConfidencePercent: percentOf(verdictConfidence(study)),
     summary,
     byCycle,
-    comparisons,
-    verdicts: judgeCandidates(study, summary),
+    comparisons: adjustedForFamily(comparisons),
+    verdicts: await judgeCandidates(study, store),
     packs: study.candidates.flatMap((candidate) => {
       const kind = packKind(candidate, study.candidates);
       return kind === null ? [] : [{ candidate: candidate.key, kind }];
     }),
     hardestCase,
   };
+}
+
+/** 0.95 is no binary fraction: without rounding 99.9 % would be printed as 99.90000000000001. */
+function percentOf(fraction: number): number {
+  return Number((fraction * 100).toPrecision(12));
 }
 
 async function summariseCandidate(study: Study, candidate: Candidate, store: OutcomeStore): Promise<SummaryRow[]> {
@@ -61,6 +70,9 @@ async function summariseCheckpoints(study: Study, candidate: Candidate, store: O
   const rows: ByCycleRow[] = [];
   for (const column of store.columns(candidate.key).filter(({ role }) => role === 'by-cycle')) {
     rows.push(...summariseCheckpoint(study, candidate, column, await store.column(candidate.key, column.name)));
+  }
+  for (const measure of FIRST_EVENTS) {
+    rows.push(...summariseFirstEvent(study, candidate, measure, await store.column(candidate.key, measure)));
   }
   return rows;
 }

@@ -1,6 +1,7 @@
 import type { Statistic } from '../measures/measure.js';
 import type { Estimate } from '../statistics/estimate.js';
 import type { LineVerdict } from '../statistics/line-verdict.js';
+import type { PairTest } from '../statistics/pair-test.js';
 import type { PackKind } from '../study/packs.js';
 import type { AcceptanceLine } from '../study/study.js';
 
@@ -18,18 +19,25 @@ export interface SummaryRow extends Estimate {
   readonly unit: string;
 }
 
+/** What is said of a checkpoint cycle; `share_without`: of banks without a first event so far. */
+export type ByCycleStatistic = Statistic | 'share_without';
+
 /** An estimate of one statistic over the sampled banks at the end of one cycle. */
 export interface ByCycleRow extends Estimate {
   readonly candidate: string;
   readonly measure: string;
   readonly cycle: number;
-  readonly statistic: Statistic;
+  readonly statistic: ByCycleStatistic;
   readonly unit: string;
 }
 
-/** What is compared, bank by bank: a candidate's value less that of the reference, or how often it is the lower one. */
+/**
+ * What is compared, bank by bank: a candidate's value less that of the reference, or how often it is the lower one. The
+ * difference of shares comes a second time with its score interval.
+ */
 export type ComparisonStatistic =
   | 'difference_of_shares'
+  | 'difference_of_shares_by_score'
   | 'mean_difference'
   | 'share_lower'
   | 'share_equal'
@@ -44,6 +52,15 @@ export interface ComparisonRow extends Estimate {
   readonly toCycle: number;
   readonly statistic: ComparisonStatistic;
   readonly unit: string;
+  /** Interval that holds together with those of all other candidates for this measure and statistic (Bonferroni). */
+  readonly simultaneousLower: number | null;
+  readonly simultaneousUpper: number | null;
+  /** Test that there is no difference: empty where there is none. */
+  readonly test: PairTest['method'];
+  /** Two-sided. */
+  readonly pValue: number | null;
+  /** The same, adjusted for all other candidates (Holm). */
+  readonly pValueHolm: number | null;
 }
 
 /** Words, never colours; `not applicable` if the candidate's wiring has no such measure at all. */
@@ -53,8 +70,10 @@ export type Verdict = LineVerdict | 'not applicable';
 export interface LineAnswer {
   readonly line: AcceptanceLine;
   readonly verdict: Verdict;
-  /** The row of the summary that was held against the line. */
+  /** What was held against the line: the row of the summary, at the confidence of verdicts. */
   readonly row: SummaryRow;
+  /** About how many sampled banks would decide a line that is not decided; null if none would. */
+  readonly wouldDecide: number | null;
 }
 
 /** All acceptance lines put to one candidate; `verdict` is null if the study has none. */
@@ -62,6 +81,36 @@ export interface CandidateVerdict {
   readonly candidate: string;
   readonly verdict: Verdict | null;
   readonly lines: readonly LineAnswer[];
+}
+
+/** How narrow a watched estimate of one candidate was at a look. */
+export interface WatchedWidth {
+  readonly candidate: string;
+  readonly measure: string;
+  readonly statistic: string;
+  /** Of the measure; the widths of percentages are points. */
+  readonly unit: string;
+  /** Null if there was no interval. */
+  readonly halfWidth: number | null;
+  readonly wanted: number;
+  /** Also where the measure does not apply to the candidate. */
+  readonly narrow: boolean;
+}
+
+/** What was seen at a number of banks at which the run could end. */
+export interface Look {
+  readonly instances: number;
+  readonly watched: readonly WatchedWidth[];
+  readonly enough: boolean;
+}
+
+/** The looks of a run and its end: all narrow, the maximum reached, or interrupted before either. */
+export interface EnoughAnswer {
+  /** Numbers of banks at which the run could end. */
+  readonly schedule: readonly number[];
+  /** Those that it took. */
+  readonly looks: readonly Look[];
+  readonly end: 'narrow' | 'maximum' | 'unfinished';
 }
 
 /** The sampled bank that did worst, to be replayed. */
@@ -81,9 +130,13 @@ export interface PackAnswer {
 
 /** Everything a run says about its study. Amounts are in the unit that the row names; percent, never fractions. */
 export interface Answers {
-  /** Instances behind the answers: fewer than the study asks for if the run was interrupted. */
+  /** Instances behind the answers: fewer than the study asks for if they were enough or the run was interrupted. */
   readonly instances: number;
+  /** Null if the number of instances is fixed. */
+  readonly enough: EnoughAnswer | null;
   readonly confidencePercent: number;
+  /** Of the intervals that verdicts rest on. */
+  readonly verdictConfidencePercent: number;
   /** Candidate by candidate in the order of the study, measures in registry order, the twin first. */
   readonly summary: readonly SummaryRow[];
   readonly byCycle: readonly ByCycleRow[];

@@ -5,6 +5,7 @@ import type { Candidate, Study } from '../study/study.js';
 import { withAbsenceNoted } from './absence.js';
 import { amountEstimates } from './amount-estimate.js';
 import type { ByCycleRow } from './answers.js';
+import { drawnOf, independentBlockSize } from './drawn-of.js';
 
 const STATISTICS: readonly Statistic[] = ['mean', 'median', 'percentile_5', 'percentile_95'];
 
@@ -22,12 +23,14 @@ export function summariseCheckpoint(
 ): readonly ByCycleRow[] {
   const { measure, cycle, unit } = column;
   if (measure === null || cycle === null) return [];
-  return amountEstimates(values.present, STATISTICS, study.confidenceFraction).map(({ statistic, ...estimate }) => ({
-    candidate: candidate.key,
-    measure,
-    cycle,
-    statistic,
-    unit,
-    ...withAbsenceNoted(estimate, values.instances, measure, [candidate]),
-  }));
+  return amountEstimates(drawnOf(values, independentBlockSize(study)), STATISTICS, study.confidenceFraction).map(
+    ({ statistic, ...estimate }) => ({
+      candidate: candidate.key,
+      measure,
+      cycle,
+      statistic,
+      unit,
+      ...withAbsenceNoted(estimate, values.instances, measure, [candidate]),
+    }),
+  );
 }

@@ -4,16 +4,20 @@ import type { ColumnValues } from '../outcomes/column-values.js';
 export interface Pairs {
   readonly first: Float64Array;
   readonly second: Float64Array;
+  /** As in `Drawn`: number of the block of each pair, null where instances are independent. */
+  readonly blocks: Int32Array | null;
 }
 
 /**
  * Pairs two columns by instance; an instance that lacks either value is left out.
  *
  * @param first as many instances as `second`
+ * @param blockSize as from `independentBlockSize`
  */
-export function pairsOf(first: ColumnValues, second: ColumnValues): Pairs {
+export function pairsOf(first: ColumnValues, second: ColumnValues, blockSize: number | null): Pairs {
   const most = Math.min(first.present.length, second.present.length);
   const kept = { first: new Float64Array(most), second: new Float64Array(most) };
+  const blocks = blockSize === null ? null : new Int32Array(most);
   let count = 0;
   for (let instance = 1; instance <= first.instances; instance++) {
     const one = first.at(instance);
@@ -21,9 +25,14 @@ export function pairsOf(first: ColumnValues, second: ColumnValues): Pairs {
     if (one === null || other === null) continue;
     kept.first[count] = one;
     kept.second[count] = other;
+    if (blocks !== null && blockSize !== null) blocks[count] = Math.ceil(instance / blockSize);
     count += 1;
   }
-  return { first: kept.first.subarray(0, count), second: kept.second.subarray(0, count) };
+  return {
+    first: kept.first.subarray(0, count),
+    second: kept.second.subarray(0, count),
+    blocks: blocks?.subarray(0, count) ?? null,
+  };
 }
 
 /**
@@ -31,7 +40,7 @@ export function pairsOf(first: ColumnValues, second: ColumnValues): Pairs {
  *
  * @returns -1 to 1; null below two pairs or if one side does not vary
  */
-export function pairedCorrelation({ first, second }: Pairs): number | null {
+export function pairedCorrelation({ first, second }: Pick<Pairs, 'first' | 'second'>): number | null {
   // One pass around running means: sums of raw products would lose the digits of large values that hardly differ.
   const means = { first: 0, second: 0 };
   const sums = { first: 0, second: 0, product: 0 };

@@ -1,5 +1,5 @@
 import { type MeasureName, measureNamed } from '../measures/registry.js';
-import { type BlockTask, blockCount, blockInstances, outcomeLayout } from '../outcomes/block.js';
+import { type BlockTask, blockCount, blockInstances, type FailedInstance, outcomeLayout } from '../outcomes/block.js';
 import { decodeBlock } from '../outcomes/block-csv.js';
 import { ColumnValues } from '../outcomes/column-values.js';
 import { outcomeColumns } from '../outcomes/columns.js';
@@ -56,16 +56,18 @@ export class RunningEstimates {
   /**
    * Takes in the blocks of `next`.
    *
-   * @param texts in that order, as they were written
+   * @param blocks in that order, as they were written, with the instances that have no row: every value of theirs is absent
    * @throws OutcomeFault if one is not a block of this study
    */
-  take(texts: readonly string[]): void {
+  take(blocks: readonly { readonly csv: string; readonly failed: readonly FailedInstance[] }[]): void {
     const range = blockInstances(this.#blocks + 1, this.#study);
     for (const [index, candidate] of this.#study.candidates.entries()) {
       const layout = outcomeColumns(outcomeLayout(this.#study, candidate));
-      const rows = decodeBlock(layout, range, texts[index] ?? '');
+      const { csv, failed } = blocks[index] ?? { csv: '', failed: [] };
+      const rows = decodeBlock(layout, range, csv, failed);
       for (const [name, values] of this.#columns.get(candidate.key) ?? []) {
         const place = columnIndex(layout, name);
+        for (const { instance } of failed) values[instance - 1] = Number.NaN;
         for (const row of rows) values[row.instance - 1] = row.values[place] ?? Number.NaN;
       }
     }

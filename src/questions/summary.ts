@@ -1,11 +1,12 @@
 import { type Measure, windowCycles } from '../measures/measure.js';
 import type { ColumnValues } from '../outcomes/column-values.js';
+import { shareOf } from '../statistics/drawn-estimate.js';
 import type { Estimate } from '../statistics/estimate.js';
-import { proportionEstimate } from '../statistics/proportion-estimate.js';
 import type { Candidate, Study } from '../study/study.js';
 import { withAbsenceNoted } from './absence.js';
 import { amountEstimates } from './amount-estimate.js';
 import type { SummaryRow } from './answers.js';
+import { drawnOf, independentBlockSize } from './drawn-of.js';
 import { inPercent } from './estimate-unit.js';
 
 /**
@@ -25,10 +26,11 @@ export function summariseMeasure(
   const about = { candidate: candidate.key, measure: measure.name, fromCycle: from, toCycle: to, unit: measure.unit };
   const { statistics } = measure;
   if (statistics.length === 0) return [];
+  const drawn = drawnOf(values, independentBlockSize(study));
   const estimates =
     measure.kind === 'event'
-      ? statistics.map((statistic) => ({ statistic, ...shareEstimate(values.present, study.confidenceFraction) }))
-      : amountEstimates(values.present, statistics, study.confidenceFraction);
+      ? statistics.map((statistic) => ({ statistic, ...inPercent(shareOf(drawn, study.confidenceFraction)) }))
+      : amountEstimates(drawn, statistics, study.confidenceFraction);
   return [
     { ...about, statistic: 'twin', ...twinEstimate(measure, candidate, twin) },
     ...estimates.map(({ statistic, ...estimate }) => ({
@@ -39,14 +41,9 @@ export function summariseMeasure(
   ];
 }
 
-function shareEstimate(happened: Float64Array, confidence: number): Estimate {
-  const events = happened.reduce((sum, one) => sum + one, 0);
-  return inPercent(proportionEstimate(events, happened.length, confidence));
-}
-
 function twinEstimate(measure: Measure, candidate: Candidate, twin: number | null): Estimate {
   if (twin === null) {
-    const none = { estimate: null, lower: null, upper: null, method: '', note: '', instances: 0 };
+    const none: Estimate = { estimate: null, lower: null, upper: null, method: '', note: '', instances: 0 };
     return withAbsenceNoted(none, 1, measure.name, [candidate]);
   }
   const estimate = measure.kind === 'event' ? twin * 100 : twin;

@@ -1,8 +1,8 @@
 import type { BankSpread, Study } from '../study/study.js';
 import { blockAddress } from './block-address.js';
 import { type Deviation, deviationOf } from './deviation.js';
+import { plannedUniforms } from './planned-uniforms.js';
 import { spreadValue } from './spread-value.js';
-import { uniformsOf } from './streams.js';
 
 /** What is common to a whole bank. */
 export interface BankFactors {
@@ -21,7 +21,7 @@ export interface BankFactors {
 export function sampleBankFactors(study: Study, instance: number): BankFactors {
   const { block, index } = blockAddress(instance, study.blockSize);
   const scope = { seed: study.seed, block, index, stock: null, module: null, level: 'bank', cell: null } as const;
-  const uniformOf = uniformsOf(scope);
+  const uniformOf = plannedUniforms(study)(scope);
   const { loadFactor, chargeFactor } = study.duty;
   return {
     loadFactor: spreadValue(loadFactor, bankDeviation(loadFactor).quantile(uniformOf('loadFactor'))),

@@ -17,6 +17,9 @@ export interface DrawScope {
 /** Uniform number strictly between 0 and 1 that belongs to a quantity: the same however often it is asked for. */
 export type UniformOf = (quantity: string) => number;
 
+/** The next number of a stream. */
+export type WholeNumbers = () => number;
+
 /**
  * The uniforms of one scope. Each depends on the scope and the name of its quantity only, never on which others are
  * drawn, in what order, or where: every draw seeds a generator of its own with all of them and takes one number.
@@ -30,8 +33,20 @@ export type UniformOf = (quantity: string) => number;
  * @see Neves & Araujo 2011, Fast and small nonlinear pseudorandom number generators for computer simulation, PPAM
  */
 export function uniformsOf(scope: DrawScope): UniformOf {
-  const { seed, block, index, stock, module, level, cell, lot } = scope;
-  const names = [seed, block, index, stock, module, level, cell];
-  const key = JSON.stringify(lot === undefined ? names : [...names, lot]);
+  const key = keyOf(scope, scope.index);
   return (quantity) => seedrandom.tychei(key + quantity).double();
+}
+
+/**
+ * Whole numbers from 0 below 2^32 that belong to a column: to one draw of all instances of a block together. They depend
+ * on the scope without its index, and on the quantity.
+ */
+export function columnStream(scope: DrawScope, quantity: string): WholeNumbers {
+  const generator = seedrandom.tychei(keyOf(scope, null) + quantity);
+  return () => generator.int32() >>> 0;
+}
+
+function keyOf({ seed, block, stock, module, level, cell, lot }: DrawScope, index: number | null): string {
+  const names = [seed, block, index, stock, module, level, cell];
+  return JSON.stringify(lot === undefined ? names : [...names, lot]);
 }

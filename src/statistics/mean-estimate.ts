@@ -1,5 +1,6 @@
 import { studentQuantile } from '../mathematics/inverse-cdf.js';
 import { type Estimate, notEstimable, requireConfidence } from './estimate.js';
+import type { Method } from './method.js';
 import { summariseMoments } from './moments.js';
 
 /**
@@ -29,7 +30,7 @@ export function pairedMeanEstimate(differences: Float64Array, confidence: number
   return studentEstimate(differences, confidence, 'paired-t');
 }
 
-function studentEstimate(values: Float64Array, confidence: number, method: string): Estimate {
+function studentEstimate(values: Float64Array, confidence: number, method: Method): Estimate {
   requireConfidence(confidence);
   const { count, mean, variance } = summariseMoments(values);
   if (count < 2) return notEstimable(count);

@@ -1,4 +1,5 @@
 import { type Estimate, notEstimable } from './estimate.js';
+import { requirePairedCounts } from './paired-counts.js';
 import { wilson } from './proportion-estimate.js';
 
 /**
@@ -24,9 +25,7 @@ export function pairedProportionEstimate(
   neither: number,
   confidence: number,
 ): Estimate {
-  for (const count of [both, onlyFirst, onlySecond, neither]) {
-    if (!(Number.isInteger(count) && count >= 0)) throw new RangeError(`counts must be whole, from 0, got ${count}`);
-  }
+  requirePairedCounts({ both, onlyFirst, onlySecond, neither });
   const n = both + onlyFirst + onlySecond + neither;
   if (n === 0) return notEstimable(0);
   const first = wilson(both + onlyFirst, n, confidence);

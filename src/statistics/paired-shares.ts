@@ -1,5 +1,6 @@
+import type { Drawn } from './drawn.js';
+import { shareOf } from './drawn-estimate.js';
 import type { Estimate } from './estimate.js';
-import { proportionEstimate } from './proportion-estimate.js';
 
 /** How often one of two candidates has the smaller value on the same instance; the three shares add up to 1. */
 export interface PairedShares {
@@ -16,17 +17,12 @@ export interface PairedShares {
  * @param confidence two-sided, of each share by itself
  * @throws RangeError if the confidence lies outside 0.5 to 0.9999
  */
-export function pairedShares(differences: Float64Array, tieWithin: number, confidence: number): PairedShares {
-  let first = 0;
-  let second = 0;
-  for (const difference of differences) {
-    if (difference < -tieWithin) first += 1;
-    else if (difference > tieWithin) second += 1;
-  }
-  const n = differences.length;
+export function pairedShares({ values, blocks }: Drawn, tieWithin: number, confidence: number): PairedShares {
+  const shareWith = (counts: (difference: number) => boolean): Estimate =>
+    shareOf({ values: values.map((difference) => (counts(difference) ? 1 : 0)), blocks }, confidence);
   return {
-    firstLess: proportionEstimate(first, n, confidence),
-    tie: proportionEstimate(n - first - second, n, confidence),
-    secondLess: proportionEstimate(second, n, confidence),
+    firstLess: shareWith((difference) => difference < -tieWithin),
+    tie: shareWith((difference) => Math.abs(difference) <= tieWithin),
+    secondLess: shareWith((difference) => difference > tieWithin),
   };
 }

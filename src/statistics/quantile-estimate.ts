@@ -1,6 +1,7 @@
 import { binomialQuantile } from '../mathematics/binomial.js';
 import { type Estimate, notEstimable, requireConfidence } from './estimate.js';
-import { quantileOfSorted } from './quantile-of-sorted.js';
+import { orderStatistics } from './order-statistics.js';
+import { quantilePlace } from './quantile-place.js';
 
 /** Ranks (from 1) of the two order statistics that bound a quantile. */
 export interface QuantileRanks {
@@ -14,21 +15,24 @@ export interface QuantileRanks {
  *
  * The estimate itself interpolates (definition 7 of Hyndman and Fan); the note names the ranks.
  *
- * @param ascending one value per instance in ascending order, finite, any unit
+ * @param values one per instance, finite, any unit and order; only read
  * @param p probability of the quantile, strictly between 0 and 1
  * @param confidence two-sided, e.g. 0.95
- * @returns in the unit of `ascending`; not estimable if the sample is too small to hold both ranks
+ * @returns in the unit of `values`; not estimable if the sample is too small to hold both ranks
  * @throws RangeError if p or the confidence is out of range
  * @see David & Nagaraja 2003, Order Statistics, 3rd ed., section 7.1
  */
-export function quantileEstimate(ascending: Float64Array, p: number, confidence: number): Estimate {
-  const n = ascending.length;
+export function quantileEstimate(values: Float64Array, p: number, confidence: number): Estimate {
+  const n = values.length;
   const ranks = quantileRanks(n, p, confidence);
   if (ranks === null) return notEstimable(n);
+  const place = quantilePlace(n, p);
+  const found = orderStatistics(values, [ranks.lower, place.below, place.above, ranks.upper]);
+  const at = (rank: number): number => found.get(rank) ?? Number.NaN;
   return {
-    estimate: quantileOfSorted(ascending, p),
-    lower: ascending[ranks.lower - 1] ?? null,
-    upper: ascending[ranks.upper - 1] ?? null,
+    estimate: at(place.below) + (at(place.above) - at(place.below)) * place.part,
+    lower: at(ranks.lower),
+    upper: at(ranks.upper),
     method: 'order-statistics',
     note: `ranks ${ranks.lower} and ${ranks.upper}`,
     instances: n,

@@ -15,7 +15,7 @@ export interface MeasureChoice {
 }
 
 /** How the unit of a measure ends the key of a limit. */
-const UNIT_SUFFIXES = {
+export const UNIT_SUFFIXES = {
   '%': '_percent',
   Ah: '_Ah',
   'Ah/day': '_Ah_per_day',

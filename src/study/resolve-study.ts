@@ -1,4 +1,5 @@
 import { resolveAcceptance } from './acceptance.js';
+import { resolveEnough } from './enough.js';
 import { didYouMean } from './nearest-name.js';
 import { resolveOcv } from './ocv.js';
 import type { Origin } from './origin.js';
@@ -9,6 +10,8 @@ import { checkReleaseGaps } from './release-gap.js';
 import { resolveCandidates } from './resolve-candidates.js';
 import { resolveDuty } from './resolve-duty.js';
 import { resolveStocks } from './resolve-stocks.js';
+import { bindsBlocks, type SamplingPlan } from './sampling-plan.js';
+import { sobolColumns } from './sobol-columns.js';
 import type { Candidate, Study } from './study.js';
 import { DEFAULT_TOP, FORMAT, type StudyInput } from './study-file.js';
 import { unitOfKey } from './units.js';
@@ -25,17 +28,20 @@ export function resolveStudy(input: StudyInput, options: ReadStudyOptions, readi
   const candidates = titledPacks(resolveCandidates(input.candidates ?? {}, input.bank, stocks, reading), reading);
   const reference = resolveReference(input, candidates, reading);
   const acceptance = resolveAcceptance(input.acceptance ?? [], options.measures, reading);
+  const isOverridden = options.overrides?.instances !== undefined;
+  const enough = input.enough && resolveEnough(input.enough, top, isOverridden, options.measures, reading);
   if (duty === undefined) return undefined;
   const study: Study = {
     format: FORMAT,
     ...top,
-    plan: 'independent',
+    ...(top.plan === 'sobol' && { sobolColumns: sobolColumns(duty, stocks) }),
     ocvTables: ocv.tables,
     stocks,
     duty,
     candidates,
     reference,
     acceptance,
+    ...(enough !== undefined && { enough }),
   };
   checkReleaseGaps(study, reading);
   reading.warnings.push(...studyWarnings(study));
@@ -44,14 +50,14 @@ export function resolveStudy(input: StudyInput, options: ReadStudyOptions, readi
 
 type Top = Pick<
   Study,
-  'title' | 'seed' | 'instances' | 'blockSize' | 'cycles' | 'confidenceFraction' | 'driftLimitFraction'
+  'title' | 'seed' | 'instances' | 'blockSize' | 'plan' | 'cycles' | 'confidenceFraction' | 'driftLimitFraction'
 >;
 
 function resolveTop(input: StudyInput, { fileName, overrides }: ReadStudyOptions, reading: Reading): Top {
   const note = (path: string, value: string | number, source: Origin['source']): void => {
     reading.origins.push({ path, value: String(value), unit: unitOfKey(path), source });
   };
-  const number = (key: Exclude<TopKey, 'seed'>): number => {
+  const number = (key: Exclude<TopKey, 'seed' | 'plan'>): number => {
     const value = input[key] ?? DEFAULT_TOP[key];
     note(key, value, input[key] === undefined ? 'default' : 'study');
     return value;
@@ -62,15 +68,31 @@ function resolveTop(input: StudyInput, { fileName, overrides }: ReadStudyOptions
   const ownSeed = input.seed === undefined ? 'default' : 'study';
   note('seed', seed, overrides?.seed === undefined ? ownSeed : 'command line');
   if (overrides?.instances !== undefined) note('instances', overrides.instances, 'command line');
+  const asked = overrides?.instances ?? number('instances');
+  const blockSize = number('block');
+  const plan = input.plan ?? DEFAULT_TOP.plan;
+  note('plan', plan, input.plan === undefined ? 'default' : 'study');
   return {
     title,
     seed,
-    instances: overrides?.instances ?? number('instances'),
-    blockSize: number('block'),
+    instances: bindsBlocks(plan) ? inWholeBlocks(asked, blockSize, plan, reading) : asked,
+    blockSize,
+    plan,
     cycles: number('cycles'),
     confidenceFraction: number('confidence_percent') / 100,
     driftLimitFraction: number('drift_limit_percent') / 100,
   };
+}
+
+/** A block of a plan that binds its instances is never short. */
+function inWholeBlocks(instances: number, blockSize: number, plan: SamplingPlan, reading: Reading): number {
+  const whole = Math.ceil(instances / blockSize) * blockSize;
+  if (whole !== instances) {
+    reading.warnings.push(
+      `instances: ${instances} is rounded up to ${whole}, whole blocks of ${blockSize}, as the plan ${plan} needs`,
+    );
+  }
+  return whole;
 }
 
 function resolveReference(input: StudyInput, candidates: readonly Candidate[], reading: Reading): string {

@@ -2,7 +2,7 @@ import { createHash } from 'node:crypto';
 import { canonicalJson } from './canonical-json.js';
 import { ENGINE } from './engine.js';
 import { leavesReference } from './leaves-reference.js';
-import type { Candidate, PopulationStock, Stock, Study } from './study.js';
+import type { Candidate, PopulationStock, SobolColumn, Stock, Study } from './study.js';
 
 /**
  * Identity of the outcomes of a candidate: SHA-256 of the canonical JSON of `simulationContent`.
@@ -20,7 +20,7 @@ export function simulationKey(study: Study, candidate: Candidate): string {
  *
  * Left out is what does not: titles, the candidate's name, acceptance lines, confidence, the number of instances, other
  * candidates, modules and tables that the candidate does not use, and how its modules follow a temperature that stays
- * at 25 degC.
+ * at 25 degC. Under the plan `sobol` further modules may move the columns of these, and so change what is drawn.
  */
 export function simulationContent(study: Study, candidate: Candidate): Readonly<Record<string, unknown>> {
   const used = new Set(candidate.strings.flat());
@@ -28,7 +28,7 @@ export function simulationContent(study: Study, candidate: Candidate): Readonly<
   const isWarmed = leavesReference(study, candidate);
   const stocks = study.stocks.flatMap((stock) => {
     const content = stockContent(stock, used, study, isWarmed);
-    return content === undefined ? [] : [[stock.key, content]];
+    return content === undefined ? [] : [[stock.key, content] as const];
   });
   return {
     format: study.format,
@@ -41,7 +41,21 @@ export function simulationContent(study: Study, candidate: Candidate): Readonly<
     stocks: Object.fromEntries(stocks),
     duty: study.duty,
     candidate: options,
+    ...(study.sobolColumns && { sobolColumns: usedColumns(study.sobolColumns, stocks, used) }),
   };
+}
+
+/** Columns of what is used, by their numbers. */
+function usedColumns(
+  columns: readonly SobolColumn[],
+  stocks: readonly (readonly [string, object])[],
+  modules: ReadonlySet<string>,
+): Readonly<Record<string, SobolColumn>> {
+  const isUsed = ({ stock, module }: SobolColumn): boolean =>
+    (module === null || modules.has(module)) && (stock === null || stocks.some(([key]) => key === stock));
+  return Object.fromEntries(
+    columns.map((column, number) => [number, column] as const).filter(([, one]) => isUsed(one)),
+  );
 }
 
 /** A stock as far as it is used, its tables written out since their numbers are no identity; undefined if it is not. */

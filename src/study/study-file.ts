@@ -1,9 +1,11 @@
 import { z } from 'zod';
 import { ACCEPTANCE } from './acceptance.js';
-import { amount, count } from './amount.js';
+import { amount, choice, count } from './amount.js';
 import { BANK, CANDIDATES } from './candidate.js';
 import { DUTY } from './duty.js';
+import { ENOUGH } from './enough.js';
 import { OCV } from './ocv.js';
+import { SAMPLING_PLANS } from './sampling-plan.js';
 import { section } from './section.js';
 import { SEED } from './seed.js';
 import { STOCKS } from './stocks.js';
@@ -16,6 +18,7 @@ export const DEFAULT_TOP = {
   seed: 1,
   instances: 512,
   block: 32,
+  plan: 'independent',
   cycles: 180,
   confidence_percent: 95,
   drift_limit_percent: 5,
@@ -44,6 +47,12 @@ export const STUDY_FILE = section({
     .refine((value) => Number.isInteger(Math.log2(value)), BLOCK_RULE)
     .meta({ description: 'Instances in a block, a power of 2.', default: DEFAULT_TOP.block })
     .optional(),
+  plan: choice(SAMPLING_PLANS, {
+    description:
+      'How the draws of a block are spread: each by itself, every range covered evenly, or ranges of several together. ' +
+      'But for the first, instances are rounded up to whole blocks.',
+    default: DEFAULT_TOP.plan,
+  }).optional(),
   cycles: count(
     { atLeast: 1, atMost: 36_500 },
     { description: 'Cycles simulated for every instance.', default: DEFAULT_TOP.cycles },
@@ -69,6 +78,7 @@ export const STUDY_FILE = section({
     .meta({ description: 'Candidate the others are compared with; default: the first.' })
     .optional(),
   acceptance: ACCEPTANCE.meta({ description: 'Lines that a candidate must meet.' }).optional(),
+  enough: ENOUGH.meta({ description: 'When fewer banks than instances are enough; default: never.' }).optional(),
 });
 
 /** A study file as written, where every section may be missing. */

@@ -1,5 +1,6 @@
 import type { AgeingSettings, ModuleAgeing } from './ageing-settings.js';
 import type { QuantityName } from './quantities.js';
+import type { SamplingPlan } from './sampling-plan.js';
 import type { BankRatings, CustomNetwork, ModuleRatings, TakeOff } from './wiring-options.js';
 
 export type { BankRatings, CustomBranch, CustomNetwork, ModuleRatings, TakeOff } from './wiring-options.js';
@@ -20,7 +21,9 @@ export interface Study {
   readonly instances: number;
   /** Instances in a block, a power of 2. */
   readonly blockSize: number;
-  readonly plan: 'independent';
+  readonly plan: SamplingPlan;
+  /** Draws with a column of the sequence of Sobol, in order of columns; absent under other plans. */
+  readonly sobolColumns?: readonly SobolColumn[];
   /** Horizon: cycles simulated for every instance. */
   readonly cycles: number;
   /** Two-sided confidence of every interval, e.g. 0.95. */
@@ -34,6 +37,33 @@ export interface Study {
   /** Key of the candidate that the others are compared with. */
   readonly reference: string;
   readonly acceptance: readonly AcceptanceLine[];
+  /** Absent: the number of instances is fixed. */
+  readonly enough?: Enough;
+}
+
+/** The run ends at the first look at which every watched estimate of every candidate is narrow enough. */
+export interface Enough {
+  /** Numbers of instances, ascending, whole blocks; the last is that of the study. */
+  readonly looks: readonly number[];
+  readonly watched: readonly WatchedEstimate[];
+}
+
+export interface WatchedEstimate {
+  readonly measure: string;
+  readonly statistic: string;
+  /** In the unit of the measure as printed; percentages in points. */
+  readonly halfWidth: number;
+}
+
+/** Address of a draw that is spread together with others. */
+export interface SobolColumn {
+  readonly level: 'bank' | 'lot' | 'module';
+  /** Null for a factor of the bank. */
+  readonly stock: string | null;
+  readonly module: string | null;
+  /** One lot of several by its name; left out for the one lot that every stock has. */
+  readonly lot?: string;
+  readonly quantity: string;
 }
 
 /** Open-circuit voltage of a cell against its charge fraction, with its continuation beyond both ends. */

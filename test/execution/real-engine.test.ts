@@ -1,7 +1,7 @@
 import { spawnSync } from 'node:child_process';
 import { mkdtempSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
-import { join } from 'node:path';
+import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { describe, expect, it } from 'vitest';
 
@@ -28,14 +28,19 @@ candidates:
   tied: {wiring: cross-linked, modules: [[A1, A2], [B1, B2]], link_mOhm: 1}
 `;
 
-function run(threads: number, more: readonly string[] = []): { folder: string; table: string } {
-  const place = mkdtempSync(join(tmpdir(), 'motleybank-real-'));
-  writeFileSync(join(place, 'study.yaml'), STUDY);
+function run(
+  threads: number,
+  more: readonly string[] = [],
+  study = STUDY,
+  folder = join(mkdtempSync(join(tmpdir(), 'motleybank-real-')), 'out'),
+): { folder: string; table: string } {
+  const place = dirname(folder);
+  writeFileSync(join(place, 'study.yaml'), study);
   const words = [CLI, 'run', 'study.yaml', '--out', 'out', '--threads', String(threads), '--quiet', ...more];
   const { status, stdout, stderr } = spawnSync(process.execPath, words, { cwd: place, encoding: 'utf8' });
   expect(stderr).toBe('');
   expect(status).toBe(0);
-  return { folder: join(place, 'out'), table: stdout };
+  return { folder, table: stdout };
 }
 
 function contents(folder: string): Record<string, string> {
@@ -56,6 +61,18 @@ describe('a run of the real engine', () => {
       expect(contents(other.folder)).toEqual(results);
     }
   }, 120_000);
+
+  it.each(['latin-hypercube', 'sobol'])(
+    'leaves the same bytes under the plan %s, in one go and taken up',
+    (plan) => {
+      const one = run(1, [], `${STUDY}plan: ${plan}\n`);
+      const parts = run(3, ['--instances', '4'], `${STUDY}plan: ${plan}\n`);
+      const whole = run(3, [], `${STUDY}plan: ${plan}\n`, parts.folder);
+      expect(whole.table).toBe(one.table);
+      expect(contents(whole.folder)).toEqual(contents(one.folder));
+    },
+    120_000,
+  );
 
   it('draws other banks from another seed', () => {
     const block = join('outcomes', 'apart', 'block-0001.csv');

@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { encodeBlock } from '../../src/outcomes/block-csv.js';
 import { MemoryOutcomes } from '../../src/outcomes/memory-outcomes.js';
+import { CONVENTIONS, METHOD_WORDS } from '../../src/output/method-words.js';
 import { RESULT_FILES, writeResults } from '../../src/output/write-results.js';
 import { answerStudy } from '../../src/questions/answer-study.js';
 import { madeUpCandidate, madeUpOutcomes, madeUpStudy } from '../questions/made-up-study.js';
@@ -143,9 +144,16 @@ describe('data package', () => {
       engine: 3,
       study_format: 1,
       seed: '7',
+      plan: 'independent',
+      block: 2,
       instances: 3,
       node_major: 20,
       architecture: 'x64',
+      confidence_percent: 95,
+      verdict_confidence_percent: 95,
+      enough: null,
+      methods: METHOD_WORDS,
+      conventions: CONVENTIONS,
     });
   });
 

@@ -8,8 +8,8 @@ import { FIRST_STUDY } from '../../src/commands/new.js';
 import { unwritableFolder } from '../execution/unwritable-folder.js';
 import { TREE } from './packed.js';
 
-// Status 1 is reached in test/commands/program.test.ts and run.test.ts, 5 in run.test.ts, 7 in verify.test.ts, 129, 130
-// and 143 in run-signals.test.ts: they need a simulation that can be made to fail or to take its time.
+// Status 1 is reached in test/commands/program.test.ts and run.test.ts, 3 and 4 in run-looks.test.ts, 5 in run.test.ts, 7 in
+// verify.test.ts, 129, 130 and 143 in run-signals.test.ts: they need a simulation that can be made to fail or to take its time.
 
 const CLI = join(TREE, 'dist', 'src', 'cli.js');
 let folder: string;

@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import type { Measure } from '../../src/measures/measure.js';
 import { measureNamed } from '../../src/measures/registry.js';
 import { ColumnValues } from '../../src/outcomes/column-values.js';
-import { compareMeasure } from '../../src/questions/comparison.js';
+import { adjustedForFamily, compareMeasure } from '../../src/questions/comparison.js';
 import { madeUpCandidate, madeUpStudy } from './made-up-study.js';
 
 const study = madeUpStudy();
@@ -31,25 +31,40 @@ function pairedEvents(both: number, onlyFirst: number, onlySecond: number, neith
 
 describe('comparison with the reference', () => {
   it.each([
-    // Newcombe, Stat. Med. 17 (1998) 2635, method 10.
-    { counts: [36, 12, 2, 0], points: 20, lower: 5.693, upper: 34.0428 },
-    { counts: [1, 1, 7, 12], points: -28.5714, lower: -50.692, upper: -2.5559 },
-    { counts: [794, 150, 86, 570], points: 4, lower: 2.123, upper: 5.8704 },
-  ] as const)('gives the published interval in points for the counts $counts', ({ counts, points, lower, upper }) => {
-    const { first, second } = pairedEvents(counts[0], counts[1], counts[2], counts[3]);
-    const rows = compareMeasure(study, contest, measure('load_lost'), first, second);
-    expect(rows).toHaveLength(1);
-    expect(rows[0]).toMatchObject({
-      candidate: 'cross',
-      reference: 'strings',
-      statistic: 'difference_of_shares',
-      unit: 'points',
-      method: 'newcombe-10',
-    });
-    expect(rows[0].estimate).toBeCloseTo(points, 4);
-    expect(rows[0].lower).toBeCloseTo(lower, 4);
-    expect(rows[0].upper).toBeCloseTo(upper, 4);
-  });
+    // Newcombe, Stat. Med. 17 (1998) 2635, method 10; Tango, ibid. 891; exact McNemar, Fagerland et al. 2013.
+    { counts: [36, 12, 2, 0], points: 20, lower: 5.693, upper: 34.0428, score: [6.1112, 34.4709], exact: 0.0129395 },
+    {
+      counts: [1, 1, 7, 12],
+      points: -28.5714,
+      lower: -50.692,
+      upper: -2.5559,
+      score: [-51.7232, -2.6003],
+      exact: 0.0703125,
+    },
+    { counts: [794, 150, 86, 570], points: 4, lower: 2.123, upper: 5.8704, score: [2.1362, 5.8998], exact: 3.71594e-5 },
+  ] as const)(
+    'gives the published interval in points for the counts $counts',
+    ({ counts, points, lower, upper, score, exact }) => {
+      const { first, second } = pairedEvents(counts[0], counts[1], counts[2], counts[3]);
+      const rows = compareMeasure(study, contest, measure('load_lost'), first, second);
+      expect(rows[0]).toMatchObject({
+        candidate: 'cross',
+        reference: 'strings',
+        statistic: 'difference_of_shares',
+        unit: 'points',
+        method: 'newcombe-10',
+      });
+      expect(rows[0].estimate).toBeCloseTo(points, 4);
+      expect(rows[0].lower).toBeCloseTo(lower, 4);
+      expect(rows[0].upper).toBeCloseTo(upper, 4);
+      expect((rows[0].pValue ?? 9) / exact).toBeCloseTo(1, 5);
+      expect(rows[0].test).toBe('mcnemar-exact');
+      expect(rows[1]).toMatchObject({ statistic: 'difference_of_shares_by_score', method: 'tango', pValue: null });
+      expect(rows[1].lower).toBeCloseTo(score[0], 4);
+      expect(rows[1].upper).toBeCloseTo(score[1], 4);
+      expect(rows).toHaveLength(2);
+    },
+  );
 
   it('gives the mean difference of amounts, and how often the candidate has the lower, an equal or the higher one', () => {
     // By hand: differences -3, -1, 0, +2, -3; mean -1, sd sqrt((4 + 0 + 1 + 9 + 4) / 4) = 2.121320,
@@ -111,5 +126,49 @@ describe('comparison with the reference', () => {
   it('names the unit of a difference of rates', () => {
     const [row] = compareMeasure(study, contest, measure('drift_growth'), column([1, 2]), column([1, 3]));
     expect(row.unit).toBe('points/month');
+  });
+
+  it('gives intervals that hold together, and p values to decide by, over all candidates of a study', () => {
+    const candidates = [reference, madeUpCandidate('cross'), madeUpCandidate('native')];
+    const three = madeUpStudy({ candidates });
+    const { first, second } = pairedEvents(14, 5, 0, 22);
+    const [row] = compareMeasure(three, contest, measure('load_lost'), first, second);
+    // By hand: two comparisons at 95 % together are 97.5 % each.
+    const each = compareMeasure({ ...study, confidenceFraction: 0.975 }, contest, measure('load_lost'), first, second);
+    expect(row.simultaneousLower).toBeCloseTo(each[0].lower ?? 9, 10);
+    expect(row.simultaneousUpper).toBeCloseTo(each[0].upper ?? 9, 10);
+    expect(row.simultaneousLower).toBeLessThan(row.lower ?? 9);
+    const amounts = (p: number) => ({ ...row, measure: 'drift', statistic: 'mean_difference' as const, pValue: p });
+    const adjusted = adjustedForFamily([row, amounts(0.03), { ...row, pValue: 0.04 }, { ...row, pValue: null }]);
+    // By hand: 0.0625 and 0.04 of one measure: 0.04 x 2 = 0.08, then 0.0625 raised to it; the other measure is alone.
+    expect(adjusted.map(({ pValueHolm }) => pValueHolm)).toEqual([0.08, 0.03, 0.08, row.pValueHolm]);
+  });
+
+  it('leaves simultaneous intervals out where their confidence is beyond what is checked', () => {
+    const sure = madeUpStudy({
+      candidates: [reference, madeUpCandidate('cross'), madeUpCandidate('native')],
+      confidenceFraction: 0.9999,
+    });
+    const { first, second } = pairedEvents(14, 5, 0, 22);
+    const [row] = compareMeasure(sure, contest, measure('load_lost'), first, second);
+    expect([row.simultaneousLower, row.simultaneousUpper]).toEqual([null, null]);
+    expect(row.lower).not.toBeNull();
+  });
+
+  it('goes by blocks where only they are independent', () => {
+    const stratified = madeUpStudy({ blockSize: 32, plan: 'latin-hypercube' });
+    const values = Array.from({ length: 512 }, (_, index) => ((index * 7919) % 512) / 10);
+    const rows = compareMeasure(
+      stratified,
+      contest,
+      measure('lost_capacity'),
+      column(values),
+      column(values.map((value, index) => value + Math.sin(index))),
+    );
+    expect(rows[0]).toMatchObject({ method: 'paired-block-t', test: 'paired-block-t', instances: 512 });
+    const events = pairedEvents(100, 4, 2, 406);
+    const [few] = compareMeasure(stratified, contest, measure('load_lost'), events.first, events.second);
+    expect(few).toMatchObject({ method: 'newcombe-10', test: 'mcnemar-exact' });
+    expect(few.note).toContain('pooled over blocks, conservative');
   });
 });

@@ -37,7 +37,9 @@ const rowsOf = (candidate: number, first: number, last: number) =>
 function takeNext(estimates: RunningEstimates): void {
   const block = estimates.next[0]?.block ?? 0;
   const range = { first: (block - 1) * 100 + 1, last: Math.min(250, block * 100) };
-  estimates.take(columns.map((own, index) => encodeBlock(own, range, rowsOf(index, range.first, range.last))));
+  estimates.take(
+    columns.map((own, index) => ({ csv: encodeBlock(own, range, rowsOf(index, range.first, range.last)), failed: [] })),
+  );
 }
 
 /** What a run of the first banks alone would answer. */
@@ -83,7 +85,12 @@ describe('estimates of a run that goes on', () => {
       /^ {2}lost capacity, 1 in 20 worse, %, 100 banks so far: strings [\d.]+ \([\d.]+ to [\d.]+\), cross [\d.]+ \(/,
     );
     const small = new RunningEstimates({ ...STUDY, blockSize: 32 });
-    small.take(columns.map((own, index) => encodeBlock(own, { first: 1, last: 32 }, rowsOf(index, 1, 32))));
+    small.take(
+      columns.map((own, index) => ({
+        csv: encodeBlock(own, { first: 1, last: 32 }, rowsOf(index, 1, 32)),
+        failed: [],
+      })),
+    );
     expect(renderRunning(small.rows(), 32)[0]).toBe('  lost capacity, 1 in 20 worse, %, 32 banks so far: too few');
     expect(text).toMatch(/^ {2}load lost, % of banks, 100 banks so far: strings [\d.]+ \([\d.]+ to [\d.]+\), cross/m);
   });

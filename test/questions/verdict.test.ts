@@ -1,8 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import type { SummaryRow } from '../../src/questions/answers.js';
-import { judgeCandidates } from '../../src/questions/verdict.js';
+import { joinedVerdict, judgeCandidates, judgeLine } from '../../src/questions/verdict.js';
 import type { AcceptanceLine } from '../../src/study/study.js';
-import { madeUpCandidate, madeUpStudy } from './made-up-study.js';
+import { madeUpStore, madeUpStudy } from './made-up-study.js';
 
 const LOSS: AcceptanceLine = { measure: 'load_lost', statistic: 'share_of_banks', bound: 'at-most', limit: 6 };
 const CAPACITY: AcceptanceLine = {
@@ -30,19 +30,15 @@ function row(line: AcceptanceLine, interval: readonly [number, number] | null, n
     estimate: lower === null || upper === null ? null : (lower + upper) / 2,
     lower,
     upper,
-    method: 'by hand',
+    method: 'wilson',
     note,
     instances: 512,
   };
 }
 
 function verdictOf(...put: readonly (readonly [AcceptanceLine, readonly [number, number] | null, string?])[]) {
-  const study = madeUpStudy({ candidates: [madeUpCandidate('strings')], acceptance: put.map(([line]) => line) });
-  const [verdict] = judgeCandidates(
-    study,
-    put.map(([line, interval, note]) => row(line, interval, note)),
-  );
-  return verdict;
+  const lines = put.map(([line, interval, note]) => judgeLine(line, row(line, interval, note)));
+  return { verdict: joinedVerdict(lines), lines };
 }
 
 describe('verdict', () => {
@@ -73,15 +69,19 @@ describe('verdict', () => {
     expect(verdictOf([LOSS, [5, 7]], [DRIFT, null, none]).verdict).toBe('not decided');
     const alone = verdictOf([DRIFT, null, none]);
     expect(alone.verdict).toBe('not applicable');
-    expect(alone.lines.map((line) => line.verdict)).toEqual(['not applicable']);
+    expect(alone.lines).toEqual(['not applicable']);
   });
 
   it('gives no verdict without acceptance lines', () => {
-    expect(verdictOf()).toEqual({ candidate: 'strings', verdict: null, lines: [] });
+    expect(verdictOf()).toEqual({ verdict: null, lines: [] });
   });
 
-  it('refuses a line whose statistic was never estimated', () => {
-    const study = madeUpStudy({ acceptance: [LOSS] });
-    expect(() => judgeCandidates(study, [])).toThrow('strings has no share_of_banks of load_lost');
+  it('refuses a line on what is never estimated', async () => {
+    const judge = (line: AcceptanceLine) => {
+      const study = madeUpStudy({ acceptance: [line] });
+      return judgeCandidates(study, madeUpStore(study, [{}, {}]));
+    };
+    await expect(judge({ ...LOSS, statistic: 'mean' })).rejects.toThrow('strings has no mean of load_lost');
+    await expect(judge({ ...LOSS, measure: 'none' })).rejects.toThrow('no measure none');
   });
 });

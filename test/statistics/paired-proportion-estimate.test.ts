@@ -1,26 +1,17 @@
 import { describe, expect, test } from 'vitest';
 import { pairedProportionEstimate } from '../../src/statistics/paired-proportion-estimate.js';
 import { allTables, probabilityThat } from './multinomial.js';
+import { PAIRED_TABLES } from './paired-tables.js';
 
 describe('difference of two paired proportions', () => {
-  // Newcombe 1998, Stat. Med. 17, 2635-2650, method 10, 95 %; Fagerland, Lydersen, Laake 2013, BMC Med. Res. Methodol.
-  // 13, 91. Six digits worked anew from the formulas of the papers.
-  test.each([
-    { table: [36, 12, 2, 0], difference: 0.2, lower: 0.05693, upper: 0.340428 },
-    { table: [14, 5, 0, 22], difference: 0.121951, lower: 0.011483, upper: 0.226493 },
-    { table: [1, 1, 7, 12], difference: -0.285714, lower: -0.50692, upper: -0.025559 },
-    { table: [59, 6, 16, 80], difference: -0.062112, lower: -0.118621, upper: -0.004625 },
-    { table: [794, 150, 86, 570], difference: 0.04, lower: 0.02123, upper: 0.058704 },
-  ] as const)(
-    'of $table is $difference ($lower to $upper)',
-    ({ table: [both, first, second, neither], ...expected }) => {
-      const estimate = pairedProportionEstimate(both, first, second, neither, 0.95);
-      expect(Math.abs((estimate.estimate ?? 9) - expected.difference)).toBeLessThan(5.1e-7);
-      expect(Math.abs((estimate.lower ?? 9) - expected.lower)).toBeLessThan(5.1e-7);
-      expect(Math.abs((estimate.upper ?? 9) - expected.upper)).toBeLessThan(5.1e-7);
-      expect(estimate).toMatchObject({ method: 'newcombe-10', note: '', instances: both + first + second + neither });
-    },
-  );
+  test.each(PAIRED_TABLES)('of $counts has the published ends $newcombe', ({ counts, d, newcombe }) => {
+    const [both, first, second, neither] = counts;
+    const estimate = pairedProportionEstimate(both, first, second, neither, 0.95);
+    expect(Math.abs((estimate.estimate ?? 9) - d)).toBeLessThan(5.1e-7);
+    expect(Math.abs((estimate.lower ?? 9) - newcombe[0])).toBeLessThan(5.1e-7);
+    expect(Math.abs((estimate.upper ?? 9) - newcombe[1])).toBeLessThan(5.1e-7);
+    expect(estimate).toMatchObject({ method: 'newcombe-10', note: '', instances: both + first + second + neither });
+  });
 
   test('turns its sign when the candidates change places', () => {
     const one = pairedProportionEstimate(59, 6, 16, 80, 0.95);

@@ -1,23 +1,23 @@
 import { describe, expect, test } from 'vitest';
 import { binomialCdf } from '../../src/mathematics/binomial.js';
 import { quantileEstimate, quantileRanks } from '../../src/statistics/quantile-estimate.js';
-import { quantileOfSorted } from '../../src/statistics/quantile-of-sorted.js';
+import { quantilePlace } from '../../src/statistics/quantile-place.js';
 import { allTables, probabilityThat } from './multinomial.js';
 
 const oneTo = (n: number): Float64Array => Float64Array.from({ length: n }, (_, index) => index + 1);
 
-describe('quantile of sorted values', () => {
-  test('interpolates as R and NumPy do by default', () => {
-    // By hand, definition 7: place (4 - 1) 0.4 = 1.2, so 2 + 0.2 (4 - 2).
-    expect(quantileOfSorted(Float64Array.of(1, 2, 4, 8), 0.4)).toBeCloseTo(2.4, 14);
-    expect(quantileOfSorted(Float64Array.of(1, 2, 4, 8), 0)).toBe(1);
-    expect(quantileOfSorted(Float64Array.of(1, 2, 4, 8), 1)).toBe(8);
-    expect(quantileOfSorted(Float64Array.of(5), 0.3)).toBe(5);
+describe('place of a quantile', () => {
+  test('is that of R and NumPy by default', () => {
+    // By hand, definition 7: (4 - 1) 0.4 = 1.2 above the first value; 3 x 1 above it; 0 of one value.
+    expect(quantilePlace(4, 0.4)).toEqual({ below: 2, above: 3, part: expect.closeTo(0.2, 14) });
+    expect(quantilePlace(4, 0)).toEqual({ below: 1, above: 1, part: 0 });
+    expect(quantilePlace(4, 1)).toEqual({ below: 4, above: 4, part: 0 });
+    expect(quantilePlace(1, 0.3)).toEqual({ below: 1, above: 1, part: 0 });
   });
 
-  test('refuses no values and no probability', () => {
-    expect(() => quantileOfSorted(new Float64Array(), 0.5)).toThrow(RangeError);
-    for (const p of [-0.1, 1.1, Number.NaN]) expect(() => quantileOfSorted(oneTo(3), p)).toThrow(RangeError);
+  test('is refused for no values and no probability', () => {
+    expect(() => quantilePlace(0, 0.5)).toThrow(RangeError);
+    for (const p of [-0.1, 1.1, Number.NaN]) expect(() => quantilePlace(3, p)).toThrow(RangeError);
   });
 });
 
@@ -58,6 +58,13 @@ describe('ranks', () => {
 });
 
 describe('estimate of a quantile', () => {
+  test('does not need its values in order, and leaves them as they are', () => {
+    // By hand, as below: 2 k mod 101 goes through 1 to 100.
+    const values = oneTo(100).map((k) => (2 * k) % 101);
+    expect(quantileEstimate(values, 0.9, 0.95)).toMatchObject({ lower: 84, upper: 96 });
+    expect([...values.subarray(0, 3)]).toEqual([2, 4, 6]);
+  });
+
   test('takes the values at its ranks, counted from 1, and names them', () => {
     expect(quantileEstimate(oneTo(100), 0.9, 0.95)).toEqual({
       // By hand, definition 7: place 99 x 0.9 = 89.1 above the first value.

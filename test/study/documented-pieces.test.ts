@@ -51,6 +51,8 @@ describe('the pieces of studies in the README of the studies', () => {
       'Measured modules',
       'Load peaks',
       'Parts of a year',
+      'A sampling plan',
+      'Enough banks',
     ]);
   });
 
