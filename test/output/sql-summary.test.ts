@@ -88,8 +88,19 @@ describe('an SQL engine', () => {
           when 'percentile_95' then q[3] end as found
         from ${results('by-cycle.csv')} s left join (${found}) f
           on f.candidate = s.candidate and f.column_name = s.measure || '_at_cycle_' || s.cycle
-        where s.estimate is not null`,
+        where s.estimate is not null and s.statistic <> 'share_without'`,
       100,
+    );
+  });
+
+  it('finds the same shares of banks that an event has not met by a cycle', async () => {
+    // Every bank is followed to the end, so the product-limit curve is the share of those whose first time is still to come.
+    await expectSame(
+      `select s.candidate, s.measure, s.cycle, s.estimate::double as said, s.instances::int as instances, 96 as n,
+        100 - 100 / 96 * (select count(*) from sampled o
+          where o.candidate = s.candidate and o.measure = s.measure and o.v <= s.cycle::int) as found
+        from ${results('by-cycle.csv')} s where s.statistic = 'share_without'`,
+      10,
     );
   });
 
@@ -100,6 +111,7 @@ describe('an SQL engine', () => {
     await expectSame(
       `select s.measure, s.statistic, s.estimate::double as said, s.instances::int as instances, n,
         case s.statistic when 'mean_difference' then mean when 'difference_of_shares' then 100 * mean
+          when 'difference_of_shares_by_score' then 100 * mean
           when 'share_lower' then 100 * less when 'share_higher' then 100 * more
           when 'share_equal' then 100 * (1 - less - more) end as found
         from ${results('comparisons.csv')} s left join (${found}) f using (measure) where s.estimate is not null`,
