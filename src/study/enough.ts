@@ -33,7 +33,7 @@ const WATCHED = section({
       amount(
         { above: 0, atMost: 1e9 },
         {
-          description: `An interval that reaches so far either way is enough; ${unit === '' ? 'no unit' : `unit ${unit.replace('%', 'points')}`}.`,
+          description: `Half the width at which its interval is narrow enough; ${unit === '' ? 'no unit' : `unit ${unit.replace('%', 'points')}`}.`,
         },
       ).optional(),
     ]),

@@ -156,8 +156,7 @@ describe('comparison with the reference', () => {
   });
 
   it('goes by blocks where only they are independent', () => {
-    const plan = 'latin-hypercube';
-    const stratified = { ...madeUpStudy({ blockSize: 32 }), plan } as unknown as typeof study;
+    const stratified = madeUpStudy({ blockSize: 32, plan: 'latin-hypercube' });
     const values = Array.from({ length: 512 }, (_, index) => ((index * 7919) % 512) / 10);
     const rows = compareMeasure(
       stratified,

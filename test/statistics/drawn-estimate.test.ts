@@ -73,8 +73,10 @@ describe('estimates as the sample was drawn', () => {
   values[3] = 1; // so that blocks differ
 
   test('of independent instances are those of instances', () => {
-    expect(meanOf({ values, blocks: null }, 0.95)).toEqual(meanEstimate(values, 0.95));
+    expect(meanOf({ values, blocks: null }, 0.95)).toEqual(meanEstimate(values, 0.95)); // 113 events: no remark
     expect(meanDifferenceOf({ values, blocks: null }, 0.95)).toEqual(pairedMeanEstimate(values, 0.95));
+    const few = Float64Array.of(0, 0, 0, 4, 0);
+    expect(meanDifferenceOf({ values: few, blocks: null }, 0.95).note).toMatch(/^rests on 1 unlike the others/);
     expect(shareOf({ values, blocks: null }, 0.95)).toEqual(proportionEstimate(113, 512, 0.95));
   });
 
@@ -100,5 +102,16 @@ describe('estimates as the sample was drawn', () => {
       expect(shareOf(drawn, 0.95)).toEqual({ ...proportionEstimate(events, drawn.values.length, 0.95), note });
     }
     expect(shareOf({ values: new Float64Array(), blocks: new Int32Array() }, 0.95).note).toBe('not estimable from 0');
+  });
+
+  test('of means say where few instances carry them', () => {
+    const noteOf = (...values: readonly number[]) =>
+      meanOf({ values: Float64Array.from(values), blocks: null }, 0.95).note;
+    expect(noteOf(0, 0, 0, 7, 0, 3)).toBe('rests on 2 unlike the others, covers less than it says');
+    expect(noteOf(2, 2, 5, 2)).toBe('rests on 1 unlike the others, covers less than it says');
+    expect([noteOf(1, 1, 2, 2), noteOf(1, 2, 3, 4), noteOf(3, 3, 3)]).toEqual(['', '', 'all values equal']);
+    const many = [...new Array<number>(101).fill(0), ...Array.from({ length: 100 }, (_, index) => index + 1)];
+    expect(noteOf(...many)).toBe('');
+    expect(noteOf(0, ...many.slice(0, -1))).not.toBe('');
   });
 });
