@@ -84,7 +84,7 @@ describe('check', () => {
 
   it('prints one JSON document with --json', () => {
     const document = JSON.parse(check({ json: true }).printed.out);
-    expect(document.estimate).toEqual({ bank_cycles: 552_960, minutes_on_one_thread: 552_960 / 30_000 / 60 });
+    expect(document.estimate).toEqual({ bank_cycles: 645_120, minutes_on_one_thread: 645_120 / 30_000 / 60 });
     expect(document.study.candidates).toHaveLength(7);
     expect(document.origins).toContainEqual({ path: 'block', value: '32', unit: '', source: 'default' });
   });
