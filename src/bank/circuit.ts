@@ -26,8 +26,6 @@ export interface BankCircuit {
   readonly demand: readonly DemandChange[];
   /** When cycles begin, the first at `startS`. */
   readonly cycleStartS: readonly number[];
-  /** Some demand changed when the charger was done, not by the clock. */
-  readonly followsCharger: boolean;
   /** What the bank has and such a circuit leaves out. */
   readonly leftOut: readonly LeftOut[];
 }
@@ -39,4 +37,6 @@ export interface DemandChange {
   readonly loadA: number;
   /** `Infinity` = bounded by the charger's limit alone. */
   readonly chargeW: number;
+  /** It came because the charger was done, not by the clock. */
+  readonly afterCharge: boolean;
 }

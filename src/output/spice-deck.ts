@@ -2,9 +2,9 @@ import type { BankCircuit } from '../bank/circuit.js';
 import { ocvSubcircuit } from './spice-curve.js';
 import { equaliserLines } from './spice-equaliser.js';
 import { type DeckAddress, deckHead } from './spice-head.js';
-import { latchSubcircuits } from './spice-latch.js';
+import { latchLines } from './spice-latch.js';
 import { cellSubcircuit, moduleLines } from './spice-modules.js';
-import { terminalLines } from './spice-terminal.js';
+import { CHARGER_DECIDES_S, terminalLines } from './spice-terminal.js';
 import { moduleName, spiceNumber, spiceStatement } from './spice-text.js';
 import { wiringLines } from './spice-wiring.js';
 
@@ -24,7 +24,7 @@ export function renderSpiceDeck(circuit: BankCircuit, address: DeckAddress): str
     '.option reltol=1e-7 vntol=1e-9 abstol=1e-6 chgtol=100 method=gear itl4=100 gmin=1e-15',
     '',
     ...curves.flatMap((curve) => [...ocvSubcircuit(bank.ocv, curve), ...cellSubcircuit(bank, curve)]),
-    ...latchSubcircuits(),
+    ...latchLines(),
     '',
     ...moduleLines(circuit),
     '* leads, links, bus segments',
@@ -37,7 +37,7 @@ export function renderSpiceDeck(circuit: BankCircuit, address: DeckAddress): str
         .map((node) => `v(${node})`)
         .join(' ')}`,
     ),
-    `.tran ${spiceNumber(address.everyS)} ${spiceNumber(circuit.endS - circuit.startS)} 0 ${spiceNumber(Math.min(address.everyS, MOST_STEP_S))} uic`,
+    `.tran ${spiceNumber(address.everyS)} ${spiceNumber(circuit.endS - circuit.startS + CHARGER_DECIDES_S)} 0 ${spiceNumber(Math.min(address.everyS, MOST_STEP_S))} uic`,
     '.end',
   ];
   return `${lines.join('\n')}\n`;

@@ -1,6 +1,9 @@
 import type { BankCircuit } from '../bank/circuit.js';
-import { latch } from './spice-modules.js';
+import { slowLatch } from './spice-latch.js';
 import { moduleName, spiceNumber as n, nodeName, spiceStatement } from './spice-text.js';
+
+/** Time constant with which a device follows the difference of voltages, s. */
+const FOLLOWS_S = 0.01;
 
 /** Devices between neighbouring modules of a string, at their posts; none if the bank has none. */
 export function equaliserLines({ bank, state, graph }: BankCircuit): readonly string[] {
@@ -11,7 +14,7 @@ export function equaliserLines({ bank, state, graph }: BankCircuit): readonly st
   if (settings.enableV === null) lines.push('Veq_on eq_on 0 1');
   else {
     const [set, clear] = [`v(bus) - ${n(settings.enableV)}`, `${n(disableV)} - v(bus)`];
-    lines.push(...latch('eq_on', state.equaliserOn[0] === 1, { set, clear }));
+    lines.push(...slowLatch('eq_on', state.equaliserOn[0] === 1, { set, clear }));
   }
   const posts = new Map(graph.branches.flatMap((b) => (b.kind === 'module' ? [[b.module, b] as const] : [])));
   const along = (d: string): string =>
@@ -27,8 +30,12 @@ export function equaliserLines({ bank, state, graph }: BankCircuit): readonly st
     lines.push(
       `Beq${k + 1}_closed eq${k + 1}_closed 0 V = v(${a}_chg)*v(${a}_dsg)*v(${b}_chg)*v(${b}_dsg)`,
       spiceStatement(
-        `Beq${k + 1} eq${k + 1} 0 V = v(eq_on)*${closed}*(${along(`(${upperV} - ${lowerV})`)} - ${along(`(${lowerV} - ${upperV})`)})`,
+        `Beq${k + 1} eq${k + 1}_wants 0 V = v(eq_on)*${closed}*(${along(`(${upperV} - ${lowerV})`)} - ${along(`(${lowerV} - ${upperV})`)})`,
       ),
+      // A device follows within some hundredths of a second, or it would be sought anew whenever a path switches.
+      `Geq${k + 1} 0 eq${k + 1} eq${k + 1}_wants 0 1e6`,
+      `Req${k + 1} eq${k + 1} 0 1e-6`,
+      `Ceq${k + 1} eq${k + 1} 0 ${FOLLOWS_S * 1e6} ic=0`,
       spiceStatement(
         `Beq${k + 1}_lower ${nodeName(below.from)} ${nodeName(below.to)} I = ${n(settings.efficiency)}*max(0, ${taken}) + min(0, ${taken}) - ${n(settings.standbyA)}*${closed}`,
       ),

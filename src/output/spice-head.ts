@@ -3,6 +3,7 @@ import type { LeftOut } from '../bank/circuit-scope.js';
 import { numberText } from './number-text.js';
 import { asciiText, wrapText } from './plain-text.js';
 import { LEAST_PATH_OHM } from './spice-modules.js';
+import { CHARGER_DECIDES_S } from './spice-terminal.js';
 
 /** Where the bank of a deck comes from, so that it can be found and made again. */
 export interface DeckAddress {
@@ -67,15 +68,19 @@ function leftOutTitle({ leftOut }: BankCircuit, { likeForLike }: DeckAddress): s
 }
 
 /** What stands for something else, be it ever so little. */
-function differences({ bank, followsCharger, graph }: BankCircuit): readonly string[] {
+function differences({ bank, demand }: BankCircuit): readonly string[] {
   const list = [
     'a charger that holds a voltage has 10 uOhm, the bus 1 uS per string and 10 mF to minus, each module 1 mF',
     'demand changes within 10 ms; a path opens or closes within a millisecond; rectifiers are rounded within 10 uV',
     'a load gives way below 1 V per cell: where the trace has it lost, it draws what little the bus has',
     'the bus, once every path is open, is at no certain voltage',
   ];
-  if (followsCharger) list.push('what follows the end of charge follows at the instant of the trace');
-  if (graph.branches.some(({ kind }) => kind === 'module') && bank.pathOhm.some((ohm) => ohm < LEAST_PATH_OHM)) {
+  if (demand.some(({ afterCharge }) => afterCharge)) {
+    list.push(
+      `what follows the end of charge follows that of the deck, if it is within ${CHARGER_DECIDES_S} s of that of the trace`,
+    );
+  }
+  if (bank.pathOhm.some((ohm) => ohm < LEAST_PATH_OHM)) {
     list.push('a BMS path without resistance has 10 uOhm');
   }
   return list;

@@ -1,7 +1,7 @@
 import type { Bank } from '../bank/bank.js';
 import type { BankState } from '../bank/bank-state.js';
 import type { BankCircuit } from '../bank/circuit.js';
-import { latchName } from './spice-latch.js';
+import { quickLatch, slowLatch } from './spice-latch.js';
 import { extremeOf, moduleName, spiceNumber as n, nodeName, spiceStatement } from './spice-text.js';
 
 /** Resistance that a BMS path without any gets: a switch has to have some, ohm. */
@@ -109,13 +109,13 @@ function bmsLines({ bank, state, stackV }: BankCircuit, m: number, plus: string,
   return [
     spiceStatement(`B${name}_vmax ${node('vmax')} 0 V = ${extremeOf('max', cellV)}`),
     spiceStatement(`B${name}_vmin ${node('vmin')} 0 V = ${extremeOf('min', cellV)}`),
-    ...latch(node('ov'), state.overVoltage[m] === 1, {
+    ...quickLatch(node('ov'), state.overVoltage[m] === 1, {
       set: `${v('vmax')} - ${n(bank.overVoltageV[m])}`,
       clear: `${n(bank.overVoltageReleaseV[m])} - ${v('vmax')}`,
     }),
-    ...latch(node('uv'), state.underVoltage[m] === 1, {
+    ...quickLatch(node('uv'), state.underVoltage[m] === 1, {
       set: `${n(bank.underVoltageV[m])} - ${v('vmin')}`,
-      clear: onCharge ? `min(${released}, ${v('i')} - ${FLOW_A})` : released,
+      clear: onCharge ? `min(${released}, 0.001*(${v('i')} - ${FLOW_A}))` : released,
     }),
     `B${name}_chg ${node('chg')} 0 V = ${state.tooCold[m] === 1 ? '0' : closed(v('ov'))}`,
     `B${name}_dsg ${node('dsg')} 0 V = ${closed(v('uv'))}`,
@@ -132,19 +132,6 @@ function closed(q: string): string {
   return `1 - max(0, min(1, 1.25*${q} - 0.125))`;
 }
 
-/** A latch with its margins on nodes of their own. */
-export function latch(
-  q: string,
-  isSet: boolean,
-  on: { readonly set: string; readonly clear: string },
-): readonly string[] {
-  return [
-    spiceStatement(`B${q}_set ${q}_set 0 V = ${on.set}`),
-    spiceStatement(`B${q}_clear ${q}_clear 0 V = ${on.clear}`),
-    `X${q} ${q}_set ${q}_clear ${q} ${latchName(isSet)}`,
-  ];
-}
-
 /** The bridge across the forward drop: it closes on current the permitted way, and opens when that has stopped. */
 function bridgeLines(bank: Bank, state: BankState, m: number): readonly string[] {
   const name = moduleName(bank, m);
@@ -152,7 +139,7 @@ function bridgeLines(bank: Bank, state: BankState, m: number): readonly string[]
   const permitted = `v(${name}_permitted)`;
   return [
     `B${name}_permitted ${name}_permitted 0 V = ${i}*(${chg}*(1-${dsg}) - ${dsg}*(1-${chg}))`,
-    ...latch(`${name}_bridge`, state.reclosed[m] === 1, {
+    ...slowLatch(`${name}_bridge`, state.reclosed[m] === 1, {
       set: `${permitted} - ${n(bank.recloseA[m])}`,
       clear: `${FLOW_A} - ${permitted}`,
     }),

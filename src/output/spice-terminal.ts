@@ -1,5 +1,6 @@
 import type { BankCircuit, DemandChange } from '../bank/circuit.js';
-import { LEAK_S, latch } from './spice-modules.js';
+import { slowLatch } from './spice-latch.js';
+import { LEAK_S } from './spice-modules.js';
 import { spiceNumber as n, spiceStatement } from './spice-text.js';
 
 /** Resistance of the charger as it holds a voltage, ohm. */
@@ -10,8 +11,12 @@ const CHARGER_OHM = 1e-5;
  */
 const BUS_S = LEAK_S;
 const BUS_F = 0.01;
-/** Time in which demand goes from one value to the next, and in which a cycle restarts the charger, s. */
-export const CHANGE_S = 0.01;
+/** Time before and after an end of charge in the trace within which that of the circuit decides, s. */
+export const CHARGER_DECIDES_S = 20;
+/** Time in which demand goes from one value to the next, s. */
+const CHANGE_S = 0.01;
+/** Time for which the beginning of a cycle pushes the charger towards absorption: its latch takes less, s. */
+const RESTART_S = 0.5;
 /** Bus voltage per cell in series below which a load gives way, V: no bank carries a constant power there. */
 const GIVES_WAY_V = 1;
 /** Share of the absorption voltage from which the bus counts as at absorption: as the engine has it. */
@@ -39,26 +44,55 @@ function demandLines(circuit: BankCircuit): readonly string[] {
   const mostW = 1.2 * charger.limitA * charger.absorptionV;
   return [
     '* demand: load in W and in A, charging power on offer in W',
-    course(circuit, 'load_w', ({ loadW }) => loadW),
-    course(circuit, 'load_a', ({ loadA }) => loadA),
-    course(circuit, 'charge_w', ({ chargeW }) => Math.min(chargeW, mostW)),
+    ...demand(circuit, 'load_w', ({ loadW }) => loadW),
+    ...demand(circuit, 'load_a', ({ loadA }) => loadA),
+    ...demand(circuit, 'charge_w', ({ chargeW }) => Math.min(chargeW, mostW)),
   ];
 }
 
-/** A demand as a source by the clock, 1 V for 1 W or 1 A. */
-function course({ demand, startS }: BankCircuit, name: string, of: (change: DemandChange) => number): string {
-  const points: string[] = [];
+/**
+ * A demand as a source by the clock, 1 V for 1 W or 1 A. About the end of charge that the next demand waited for in the
+ * trace, the charger of the circuit decides which of the two holds.
+ */
+function demand(circuit: BankCircuit, name: string, of: (change: DemandChange) => number): readonly string[] {
+  const clock: Point[] = [];
+  const early: Point[] = [];
   let value = Number.NaN;
-  for (const change of demand) {
+  for (const [index, change] of circuit.demand.entries()) {
     const next = of(change);
-    const atS = change.atS - startS;
-    if (next === value) continue;
-    if (points.length === 0) points.push(`0 ${n(next)}`);
-    else points.push(`${n(atS)} ${n(value)}`, `${n(atS + CHANGE_S)} ${n(next)}`);
+    const atS = change.atS - circuit.startS;
+    if (index > 0 && next !== value) {
+      const lateS = change.afterCharge ? CHARGER_DECIDES_S : 0;
+      clock.push({ atS: atS + lateS, value: next });
+      if (lateS > 0) early.push({ atS: Math.max(0, atS - lateS), value: next - value }, { atS: atS + lateS, value: 0 });
+    }
     value = next;
   }
-  if (points.length < 2) return `V${name} ${name} 0 ${n(Number.isNaN(value) ? 0 : value)}`;
-  return spiceStatement(`V${name} ${name} 0 PWL(${points.join(' ')})`);
+  const first = circuit.demand.length > 0 ? of(circuit.demand[0]) : 0;
+  if (early.length === 0) return [course(name, first, clock)];
+  return [
+    course(`${name}_clock`, first, clock),
+    course(`${name}_early`, 0, early),
+    `B${name} ${name} 0 V = v(${name}_clock) + max(0, min(1, 4*v(ended) - 1.5))*v(${name}_early)`,
+  ];
+}
+
+interface Point {
+  readonly atS: number;
+  /** From then on. */
+  readonly value: number;
+}
+
+/** A source that goes from one value to the next by the clock. */
+function course(name: string, first: number, changes: readonly Point[]): string {
+  if (changes.length === 0) return `V${name} ${name} 0 ${n(first)}`;
+  let before = first;
+  const points = changes.map(({ atS, value }) => {
+    const pair = `${n(atS)} ${n(before)} ${n(atS + CHANGE_S)} ${n(value)}`;
+    before = value;
+    return pair;
+  });
+  return spiceStatement(`V${name} ${name} 0 PWL(0 ${n(first)} ${points.join(' ')})`);
 }
 
 function loadLines({ load, loadConnected, bank }: BankCircuit): readonly string[] {
@@ -67,7 +101,7 @@ function loadLines({ load, loadConnected, bank }: BankCircuit): readonly string[
   const disconnect =
     load.disconnectV === null
       ? ['Vload_off load_off 0 0']
-      : latch('load_off', !loadConnected, {
+      : slowLatch('load_off', !loadConnected, {
           set: `${n(load.disconnectV)} - v(bus)`,
           clear: `v(bus) - ${n(load.reconnectV)}`,
         });
@@ -81,9 +115,8 @@ function loadLines({ load, loadConnected, bank }: BankCircuit): readonly string[
 }
 
 function chargerLines(circuit: BankCircuit): readonly string[] {
-  const { charger, charging, cycleStartS, startS } = circuit;
+  const { charger, charging } = circuit;
   const eachCycle = charger.restart === 'each-cycle';
-  const restarts = eachCycle ? cycleStartS.slice(1).map((atS) => atS - startS) : [];
   const tail = `min(v(bus) - ${n(AT_ABSORPTION * charger.absorptionV)}, ${n(charger.tailA)} - v(bank_i))`;
   const offered = `v(charge_w) - ${LEAST_W}`;
   const ends = charger.tailA > 0 ? `min(min(${tail}, ${offered}), 0.5 - v(cycle))` : '-1';
@@ -91,10 +124,10 @@ function chargerLines(circuit: BankCircuit): readonly string[] {
   const most = `min(${n(charger.limitA)}, v(charge_w)/max(v(bus), 1))`;
   return [
     '* charger: ended is 1 from the tail on until it works towards absorption again',
-    spiceStatement(`Vcycle cycle 0 ${pulses(restarts)}`),
-    ...latch('ended', !charging && !eachCycle, {
+    course('cycle', 0, eachCycle ? restarts(circuit) : []),
+    ...slowLatch('ended', !charging && !eachCycle, {
       set: ends,
-      clear: `max(min(${n(charger.restartV)} - v(bus), ${offered}), v(cycle) - 0.5)`,
+      clear: `max(min(min(${n(charger.restartV)} - v(bus), ${offered}), v(ended) - 0.9), v(cycle) - 0.5)`,
     }),
     `Bceiling ceiling 0 V = ${ceiling}`,
     'Vcharger charger bus 0',
@@ -103,12 +136,14 @@ function chargerLines(circuit: BankCircuit): readonly string[] {
   ];
 }
 
-/** 1 V for a moment at each instant, 0 otherwise. */
-function pulses(atS: readonly number[]): string {
-  if (atS.length === 0) return '0';
-  const points = atS.flatMap((s) => [
-    `${n(s)} 0 ${n(s + CHANGE_S)} 1`,
-    `${n(s + 2 * CHANGE_S)} 1 ${n(s + 3 * CHANGE_S)} 0`,
-  ]);
-  return `PWL(0 0 ${points.join(' ')})`;
+/** A moment of 1 V at the beginning of each cycle but the first. */
+function restarts({ cycleStartS, demand, startS }: BankCircuit): readonly Point[] {
+  return cycleStartS.slice(1).flatMap((beginS) => {
+    const waited = demand.some(({ atS, afterCharge }) => afterCharge && atS === beginS);
+    const atS = beginS - startS + (waited ? CHARGER_DECIDES_S : 0);
+    return [
+      { atS, value: 1 },
+      { atS: atS + RESTART_S, value: 0 },
+    ];
+  });
 }

@@ -9,6 +9,7 @@ import {
   leftOutOf,
   type Stretch,
 } from '../bank/circuit-scope.js';
+import type { BankEvent } from '../bank/events.js';
 import { REFERENCE_K } from '../bank/temperature.js';
 import { wireCandidate } from '../bank/wiring-graph.js';
 import type { DutyCycle } from '../duty/course.js';
@@ -22,6 +23,8 @@ import { stopClocks } from './watch.js';
 export interface CircuitTracer {
   /** To be called when a cycle begins. */
   readonly onCycle: () => void;
+  /** To be called with every event. */
+  readonly onEvent: (event: BankEvent) => void;
   /** To be called with every step before it is committed. */
   readonly onStep: () => void;
   /** @returns the circuit of what has passed since the tracer was made */
@@ -51,14 +54,18 @@ export function createCircuitTracer(
   const demand: DemandChange[] = [];
   const cycleStartS: number[] = [];
   let first: FirstStep | null = null;
+  let chargedS = Number.NaN;
   return {
     onCycle: () => cycleStartS.push(kernel.nowS),
+    onEvent: ({ kind, timeS }) => {
+      if (kind === 'charge-ended') chargedS = timeS;
+    },
     onStep: () => {
       first ??= firstStep(journey);
       const { demandW: loadW, demandA: loadA, chargeW } = terminal;
       const last = demand.at(-1);
       if (last?.loadW === loadW && last.loadA === loadA && last.chargeW === chargeW) return;
-      demand.push({ atS: kernel.nowS, loadW, loadA, chargeW });
+      demand.push({ atS: kernel.nowS, loadW, loadA, chargeW, afterCharge: kernel.nowS === chargedS });
     },
     finish: () => {
       const { tooCold, ...begun } = first ?? firstStep(journey);
@@ -74,7 +81,6 @@ export function createCircuitTracer(
         endS: kernel.nowS,
         demand,
         cycleStartS,
-        followsCharger: cycles.some(({ segments }) => segments.some(({ endsWhenCharged }) => endsWhenCharged)),
         leftOut,
       };
     },

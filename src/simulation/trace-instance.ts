@@ -62,6 +62,7 @@ export function traceInstance(study: Study, window: TraceWindow): Trace {
     sampleModules(study, window.instance),
     {
       onEvent: (event) => {
+        tracer?.onEvent(event);
         if (recorder.cycle >= window.fromCycle) events.push({ ...event, cycle: recorder.cycle });
       },
       onStep: (moving, stepS) => {
