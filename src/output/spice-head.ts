@@ -71,7 +71,7 @@ function leftOutTitle({ leftOut }: BankCircuit, { likeForLike }: DeckAddress): s
 function differences({ bank, demand }: BankCircuit): readonly string[] {
   const list = [
     'a charger that holds a voltage has 10 uOhm, the bus 1 uS per string and 10 mF to minus, each module 1 mF',
-    'demand changes within 10 ms; a path opens or closes within a millisecond; rectifiers are rounded within 10 uV',
+    'demand changes within 0.2 s, a path opens or closes within 0.1 s; rectifiers are rounded within 10 uV',
     'a load gives way below 1 V per cell: where the trace has it lost, it draws what little the bus has',
     'the bus, once every path is open, is at no certain voltage',
   ];

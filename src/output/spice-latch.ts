@@ -5,7 +5,7 @@ import { spiceNumber, spiceStatement } from './spice-text.js';
  *
  * `quick_set` and `quick_clear` (by where they start) are a switch for margins of cell voltages, which move with charge. A
  * simulator bounds its steps by how near a switch is to its threshold, to within 0.05 V of the control voltage: so the
- * margins are amplified. The store behind the switch makes the transition last a fraction of a millisecond.
+ * margins are amplified. The store behind the switch makes the transition last some hundredths of a second.
  *
  * `slow` is for margins of currents and of the bus, which jump while a solution is sought and would leave a switch closed
  * for nothing: a charge that cannot jump. Beyond 0.1 it goes the rest of the way without a push. Node `live` lets no margin
@@ -22,7 +22,7 @@ export function latchLines(): readonly string[] {
       `S1 one o u 0 latch ${isSet ? 'ON' : 'OFF'}`,
       'Ro o 0 0.001',
       'Eq q1 0 o 0 1',
-      'Rq q1 q 2e-8',
+      'Rq q1 q 2e-6',
       `Cq q 0 10000 ic=${isSet ? 1 : 0}`,
       '.model latch SW(vt=0 vh=0.1 ron=1e-9 roff=1e12)',
       '.ends',

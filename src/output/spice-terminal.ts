@@ -14,7 +14,7 @@ const BUS_F = 0.01;
 /** Time before and after an end of charge in the trace within which that of the circuit decides, s. */
 export const CHARGER_DECIDES_S = 20;
 /** Time in which demand goes from one value to the next, s. */
-const CHANGE_S = 0.01;
+const CHANGE_S = 0.2;
 /** Time for which the beginning of a cycle pushes the charger towards absorption: its latch takes less, s. */
 const RESTART_S = 0.5;
 /** Bus voltage per cell in series below which a load gives way, V: no bank carries a constant power there. */

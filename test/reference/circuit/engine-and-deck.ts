@@ -3,13 +3,13 @@ import { studyOf } from '../../study/study-under-test.js';
 import { contractLimits } from '../contract.js';
 import { type Agreement, agreementOf } from './agreement.js';
 import { looseDeck } from './loose-deck.js';
-import { type Simulated, type StudyToTrace, simulateDeckOf, type TracedBank, traceBank } from './traced-bank.js';
+import { type SimulatedDeck, type StudyToTrace, simulateDeckOf, type TracedBank, traceBank } from './traced-bank.js';
 
 /** A bank traced by the engine and, from its deck, run in the circuit simulator. */
 export interface EngineAndDeck {
   readonly traced: TracedBank;
   /** The deck as it was written, with its tight tolerances. */
-  readonly simulated: Simulated;
+  readonly simulated: SimulatedDeck;
   readonly agreement: Agreement;
   readonly speed: Speed;
 }

@@ -75,6 +75,12 @@ function diodeMinutes({ engineAndDeck }: OracleResult): number {
 /** Processor times, and how far the loose run they are about is off. */
 export const SPEED: readonly OracleColumn[] = [
   {
+    name: 'attempts',
+    head: ['attempts of the simulator', '-'],
+    digits: 0,
+    value: ({ engineAndDeck: { simulated } }) => simulated.attempts,
+  },
+  {
     name: 'engine_ms',
     head: ['engine', 'ms'],
     digits: 2,

@@ -13,7 +13,8 @@ happened, and what either took. All banks take some minutes of processor time; n
   --list   names of the banks
   --help   this
 
-Exit status: 0 all agree within the limits, 1 some do not (said below the tables), 2 wrong use.
+Exit status: 0 all agree within the limits; 1 some do not, or the simulator gave one up (said below the tables);
+2 wrong use.
 `;
 
 /** Runs the suite, or some of its banks. @returns exit status */
@@ -31,11 +32,11 @@ export async function oracleCommand(args: readonly string[]): Promise<number> {
     process.stdout.write(`${options.banks.map(({ name }) => name).join('\n')}\n`);
     return 0;
   }
-  const results = await simulateAll(options.banks);
-  process.stdout.write(options.csv ? await renderOracleCsv(results) : renderOracle(results));
-  const faults = results.flatMap(faultsOf);
-  if (options.csv) for (const fault of faults) process.stderr.write(`${fault}\n`);
-  return faults.length === 0 ? 0 : 1;
+  const { results, failures } = await simulateAll(options.banks);
+  if (results.length > 0) process.stdout.write(options.csv ? await renderOracleCsv(results) : renderOracle(results));
+  const faults = [...(options.csv ? results.flatMap(faultsOf) : []), ...failures];
+  for (const fault of faults) process.stderr.write(`${fault}\n`);
+  return failures.length === 0 && results.every((result) => faultsOf(result).length === 0) ? 0 : 1;
 }
 
 function readOptions(args: readonly string[]) {
@@ -59,17 +60,24 @@ function readOptions(args: readonly string[]) {
   }
 }
 
-/** As many banks at a time as there are processors: the simulator is a process of its own. */
-async function simulateAll(banks: readonly OracleBank[]): Promise<readonly OracleResult[]> {
-  const results: OracleResult[] = [];
+/**
+ * As many banks at a time as there are processors: the simulator is a process of its own. A bank that cannot be traced or
+ * whose deck the simulator gives up is a failure with its name, and the others go on.
+ */
+async function simulateAll(banks: readonly OracleBank[]): Promise<{ results: OracleResult[]; failures: string[] }> {
+  const outcomes: (OracleResult | string)[] = [];
   let next = 0;
   const take = async (): Promise<void> => {
     while (next < banks.length) {
       const index = next++;
-      results[index] = await banks[index].simulate();
-      process.stderr.write(`${banks[index].name} done\n`);
+      const { name, simulate } = banks[index];
+      outcomes[index] = await simulate().catch((error) => `${name}: ${error instanceof Error ? error.message : error}`);
+      process.stderr.write(`${name} done\n`);
     }
   };
   await Promise.all(Array.from({ length: availableParallelism() }, take));
-  return results;
+  return {
+    results: outcomes.filter((outcome) => typeof outcome !== 'string'),
+    failures: outcomes.filter((outcome) => typeof outcome === 'string'),
+  };
 }

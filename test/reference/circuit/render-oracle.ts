@@ -84,7 +84,7 @@ function summary(results: readonly OracleResult[]): string[] {
     .map(({ engineAndDeck: { speed } }) => speed.looseCpuS / speed.engineCpuS)
     .sort((a, b) => a - b);
   return [
-    `${results.length} banks. Largest: ${largest.join(', ')}.`,
+    `Banks: ${results.length}. Largest: ${largest.join(', ')}.`,
     `Banks with: ${shown.join(', ')}.`,
     `Simulator over engine, processor time: median ${ratios[Math.floor(ratios.length / 2)].toFixed(0)}, ${ratios[0].toFixed(0)} to ${ratios[ratios.length - 1].toFixed(0)}.`,
   ];

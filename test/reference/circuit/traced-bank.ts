@@ -6,7 +6,8 @@ import { memoryShell } from '../../commands/memory-shell.js';
 import type { ComparedEvent, Waveform } from '../contract.js';
 import { type ReadTrace, readTrace } from '../read-trace.js';
 import { type CircuitBank, circuitEvents, circuitWaveform } from './circuit-waveform.js';
-import { type CircuitRun, runDeck } from './run-deck.js';
+import type { CircuitRun } from './run-deck.js';
+import { runStubbornDeck } from './run-stubborn-deck.js';
 
 /** A study whose candidate `bank` is traced, like for like with its deck. */
 export interface StudyToTrace {
@@ -26,6 +27,12 @@ export interface TracedBank extends ReadTrace {
 export interface Simulated {
   readonly waveform: Waveform;
   readonly events: readonly ComparedEvent[];
+}
+
+/** A deck as the simulator ran it: processor time of the run that came to its end, and how many were begun. */
+export interface SimulatedDeck extends Simulated {
+  readonly cpuS: number;
+  readonly attempts: number;
 }
 
 const EVERY_S = 60;
@@ -59,8 +66,8 @@ export async function traceBank({ text, files, fromCycle, toCycle }: StudyToTrac
 }
 
 /** Runs the deck of a traced bank, and reads it at the instants of its trace. */
-export async function simulateDeckOf(traced: TracedBank, deck = traced.deck): Promise<Simulated & { cpuS: number }> {
-  const run = await runDeck(deck);
+export async function simulateDeckOf(traced: TracedBank, deck = traced.deck): Promise<SimulatedDeck> {
+  const run = await runStubbornDeck(deck);
   const bank = circuitOf(traced.waveform);
   // A deck begins with its window.
   const startS = traced.waveform.timeS[0];
@@ -69,6 +76,7 @@ export async function simulateDeckOf(traced: TracedBank, deck = traced.deck): Pr
     waveform: circuitWaveform(shifted, bank, traced.waveform.timeS),
     events: circuitEvents(shifted, bank),
     cpuS: run.cpuS,
+    attempts: run.attempts,
   };
 }
 
