@@ -1,6 +1,7 @@
 import type { Execution } from '../execution/execute-run.js';
 import { clock } from '../execution/progress.js';
 import type { Study } from '../study/study.js';
+import { counted } from './counted.js';
 
 const LONGEST_IN_SECONDS_MS = 600_000;
 
@@ -10,7 +11,7 @@ export function renderClosing(
   { instances, found, computed }: Execution,
   { durationMs, threads, folder }: { durationMs: number; threads: number; folder: string },
 ): string {
-  const size = `${instances} banks x ${counted(study.candidates.length, 'candidate')}`;
+  const size = `${counted(instances, 'bank')} x ${counted(study.candidates.length, 'candidate')}`;
   if (computed === 0) return `${folder} is complete: ${size}; nothing was left to compute\n`;
   const share = found === 0 ? '' : `, ${computed} of ${found + computed} blocks computed`;
   const time = durationMs < LONGEST_IN_SECONDS_MS ? `${Math.round(durationMs / 1000)} s` : clock(durationMs);
@@ -28,10 +29,6 @@ export function renderEarlyEnd(
   const done =
     instances === 0
       ? 'before every candidate had a block: nothing to summarise'
-      : `with ${instances} of ${study.enough === undefined ? '' : 'at most '}${study.instances} banks in every candidate: ${results}`;
+      : `with ${instances} of ${study.enough === undefined ? '' : 'at most '}${counted(study.instances, 'bank')} in every candidate: ${results}`;
   return `${how} ${done}; ${counted(missing, 'block')} missing in ${folder}; the same command takes them up\n`;
-}
-
-function counted(count: number, noun: string): string {
-  return `${count} ${noun}${count === 1 ? '' : 's'}`;
 }

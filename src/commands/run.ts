@@ -148,7 +148,7 @@ async function runInFolder(
   const end = endOf(execution);
   const durationMs = shell.now() - startMs;
   // Nothing depends on the record: where it cannot be written, what stopped that has been told.
-  await troubleIn(() => record.end(end, durationMs / 1000));
+  await troubleIn(() => record.end(end, durationMs / 1000, hasResults && unwritten === undefined));
   log.write({
     event: 'ended',
     how: end,

@@ -3,6 +3,7 @@ import { clock } from '../execution/progress.js';
 import { type RunStanding, type RunState, readRunState } from '../execution/run-state.js';
 import { simulationKey } from '../study/simulation-key.js';
 import type { Study } from '../study/study.js';
+import { counted } from './counted.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import type { Shell } from './shell.js';
 
@@ -58,7 +59,8 @@ function documentOf(study: Study, { standing, lastBlockMs, ...state }: RunState)
     blocks_done: state.done,
     blocks_total: state.total,
     instances: state.instances,
-    instances_total: study.instances,
+    instances_total: state.instancesDue,
+    instances_of_study: study.instances,
     candidates: state.candidates,
     last_block: lastBlockMs === null ? null : new Date(lastBlockMs).toISOString(),
     left_s: state.leftS,
@@ -66,11 +68,12 @@ function documentOf(study: Study, { standing, lastBlockMs, ...state }: RunState)
 }
 
 function renderState(folder: string, study: Study, state: RunState, wallMs: number): string {
-  const { standing, holder, session, candidates, done, total, instances, lastBlockMs, leftS } = state;
+  const { standing, holder, session, candidates, done, total, instances, instancesDue, lastBlockMs, leftS } = state;
   const by = holder === null ? '' : ` (process ${holder.pid} on ${holder.host})`;
-  const since = session === null ? '' : `, session of ${session.started} on ${session.threads} threads`;
+  const since = session === null ? '' : `, session of ${session.started} on ${counted(session.threads, 'thread')}`;
   // A clock may have been set back since.
   const last = lastBlockMs === null ? '' : `, the latest ${clock(Math.max(0, wallMs - lastBlockMs))} ago`;
+  const atLook = instancesDue < study.instances ? ` (enough at that look, of at most ${study.instances})` : '';
   const width = Math.max(...candidates.map(({ candidate }) => candidate.length));
   const rest = [
     ...(done < total && leftS !== null ? [`about ${clock(leftS * 1000)} left on that many threads`] : []),
@@ -78,7 +81,7 @@ function renderState(folder: string, study: Study, state: RunState, wallMs: numb
   ];
   const lines = [
     `${folder}: ${WORDS[standing]}${by}${since}`,
-    `${done} of ${total} blocks${last}; ${instances} of ${study.instances} banks in every candidate`,
+    `${done} of ${total} blocks${last}; ${instances} of ${counted(instancesDue, 'bank')} in every candidate${atLook}`,
     ...candidates.map((one) => `  ${one.candidate.padEnd(width)}  ${one.done} of ${one.total} blocks`),
     ...rest,
   ];

@@ -1,14 +1,18 @@
 import { availableParallelism } from 'node:os';
 import { join } from 'node:path';
 import { sha256 } from '../execution/checksum.js';
+import { checkDescribedResults } from '../execution/described-results.js';
 import { type JournalContents, readJournal } from '../execution/journal.js';
 import { LostBlock } from '../execution/lost-block.js';
 import { BlockPool } from '../execution/pool.js';
-import { RUN_FILE } from '../execution/run-folder.js';
+import { instancesOfEnd } from '../execution/run-end.js';
+import { blockFile, DESCRIPTION, RUN_FILE } from '../execution/run-folder.js';
+import { readSessions } from '../execution/run-record.js';
 import { checkBlocks, findDifference, type StoredBlock, spreadSample, studyOfBlocks } from '../execution/verify-run.js';
 import { ENGINE } from '../study/engine.js';
 import { simulationKey } from '../study/simulation-key.js';
 import type { Study } from '../study/study.js';
+import { counted } from './counted.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import { STALL_MINUTES, WORKER_FILE } from './run.js';
 import type { Shell } from './shell.js';
@@ -30,6 +34,8 @@ const DEFAULT_BLOCKS = 8;
 interface Verification {
   readonly folder: string;
   readonly blocks: { readonly intact: number; readonly missing: number; readonly recomputed: number };
+  /** Whether the results and the study were compared: not while the run has left none. */
+  readonly results_compared: boolean;
   /** A sentence each; none if all that was looked at is identical. */
   readonly findings: readonly string[];
 }
@@ -58,21 +64,26 @@ export async function verifyCommand(
   }
   const contents = readJournal(journal);
   const damage = damageOf(contents, resolved);
+  const session = readSessions(read(RUN_FILE.record) ?? undefined).at(-1) ?? null;
+  const results = checkDescribedResults(session, comparedElsewhere(contents), read);
+  const found = (blocks: Verification['blocks'], findings: readonly string[]): Verification => {
+    return { folder, blocks, results_compared: results !== null, findings: [...findings, ...(results ?? [])] };
+  };
   const study = sha256(resolved) === contents.study ? readResolved(resolved) : null;
-  if (study === null) return report({ folder, blocks: NO_BLOCKS, findings: damage }, options, shell);
+  if (study === null) return report(found(NO_BLOCKS, damage), options, shell);
   const keys = new Map(study.candidates.map((candidate) => [candidate.key, simulationKey(study, candidate)]));
   const asked = contents.entries.filter(({ candidate }) => keys.has(candidate));
   if (asked.some(({ candidate, key }) => key !== keys.get(candidate))) {
     shell.err(`${folder} was not computed by engine ${ENGINE}, which this program has: it computes other outcomes\n`);
     return EXIT_STATUS.input;
   }
-  const stored = checkBlocks(study, asked, read);
+  const stored = checkBlocks(study, instancesOfEnd(study, session, read(DESCRIPTION)), asked, read);
   const sample = spreadSample(stored.intact, options.blocks ?? DEFAULT_BLOCKS);
   const pool = { study: studyOfBlocks(study, asked), threads: options.threads ?? availableParallelism(), workerFile };
   try {
     const differences = await recompute(sample, pool);
     const blocks = { intact: stored.intact.length, missing: stored.missing, recomputed: sample.length };
-    return report({ folder, blocks, findings: [...damage, ...stored.findings, ...differences] }, options, shell);
+    return report(found(blocks, [...damage, ...stored.findings, ...differences]), options, shell);
   } catch (error) {
     if (!(error instanceof LostBlock)) throw error;
     shell.err(`${error.message}\n`);
@@ -81,6 +92,12 @@ export async function verifyCommand(
 }
 
 const NO_BLOCKS = { intact: 0, missing: 0, recomputed: 0 };
+
+/** @returns checksums of the files that are compared with the journal */
+function comparedElsewhere({ entries, study }: JournalContents): ReadonlyMap<string, string> {
+  const checksums = new Map(entries.map((entry) => [blockFile(entry), entry.sha256]));
+  return study === null ? checksums : checksums.set(RUN_FILE.resolved, study);
+}
 
 /** @returns a sentence for all that journal and resolved study tell of themselves */
 function damageOf({ damagedLines, study }: JournalContents, resolved: string): string[] {
@@ -128,11 +145,14 @@ function report(verification: Verification, { json }: VerifyOptions, shell: Shel
   return findings.length === 0 ? EXIT_STATUS.done : EXIT_STATUS.different;
 }
 
-function renderVerification({ folder, blocks: { intact, missing, recomputed }, findings }: Verification): string {
+function renderVerification({ folder, blocks, results_compared, findings }: Verification): string {
+  const { intact, missing, recomputed } = blocks;
   const unfinished = missing === 0 ? '' : `, ${missing} not computed yet`;
+  const results = results_compared ? ' and the results' : ', no results yet';
+  const anew = recomputed === 0 ? 'none computed again' : `${recomputed} computed again`;
   const last =
     findings.length === 0
-      ? `${folder} is as it was written: ${intact} blocks${unfinished}; ${recomputed} computed again and identical`
-      : `${folder} is not as it was: ${findings.length} findings; ${intact} blocks intact${unfinished}, ${recomputed} computed again`;
+      ? `${folder} is as it was written: ${counted(intact, 'block')}${unfinished}${results}; ${anew}${recomputed === 0 ? '' : ' and identical'}`
+      : `${folder} is not as it was: ${counted(findings.length, 'finding')}; ${counted(intact, 'block')} intact${unfinished}, ${anew}`;
   return `${[...findings, last].join('\n')}\n`;
 }

@@ -22,6 +22,9 @@ export const RUN_FILE = {
   record: 'run.json',
 } as const;
 
+/** The file that describes the results of a run and all that they rest on, with checksums. */
+export const DESCRIPTION = 'datapackage.json';
+
 /** The folder of a run, held by this process until it is closed. */
 export class RunFolder {
   readonly path: string;

@@ -1,5 +1,6 @@
 import { hostname } from 'node:os';
-import { RUN_FILE, type RunFolder } from './run-folder.js';
+import { sha256 } from './checksum.js';
+import { DESCRIPTION, RUN_FILE, type RunFolder } from './run-folder.js';
 
 /** How a session of a run ended; null while it goes on, and for ever if the machine stopped under it. */
 export type SessionEnd = 'complete' | 'interrupted' | 'blocks missing' | 'failed' | null;
@@ -14,6 +15,8 @@ export interface Session {
   readonly started: string;
   readonly duration_s: number | null;
   readonly ended: SessionEnd;
+  /** Checksum of the description of the results that it left, hexadecimal; null if it left none. */
+  readonly results: string | null;
 }
 
 /** Who computed what, where and when: beside the result, not part of it. */
@@ -38,13 +41,17 @@ export class RunRecord {
       started: started.toISOString(),
       duration_s: null,
       ended: null,
+      results: null,
     });
     await record.#write(record.#session);
     return record;
   }
 
-  async end(ended: SessionEnd, durationS: number): Promise<void> {
-    await this.#write({ ...this.#session, duration_s: Number(durationS.toFixed(3)), ended });
+  /** @param hasResults whether this session has written the results of the run */
+  async end(ended: SessionEnd, durationS: number, hasResults: boolean): Promise<void> {
+    const description = hasResults ? await this.#folder.read(DESCRIPTION) : undefined;
+    const results = description === undefined ? null : sha256(description);
+    await this.#write({ ...this.#session, duration_s: Number(durationS.toFixed(3)), ended, results });
   }
 
   async #write(session: Session): Promise<void> {

@@ -7,7 +7,8 @@ import { FolderRefused } from './folder-refused.js';
 import { type JournalEntry, readJournal } from './journal.js';
 import { lookForHolders } from './lock.js';
 import { allBlocks, commonInstances, instancesDue } from './plan.js';
-import { blockFile, RUN_FILE } from './run-folder.js';
+import { instancesOfEnd } from './run-end.js';
+import { blockFile, DESCRIPTION, RUN_FILE } from './run-folder.js';
 import { readSessions, type Session } from './run-record.js';
 import { errorCode, isSystemError } from './system-error.js';
 
@@ -27,6 +28,8 @@ export interface RunState {
   readonly total: number;
   /** Sampled banks that every candidate has. */
   readonly instances: number;
+  /** Sampled banks with which the run is complete: fewer than those of its study if it ended at a look. */
+  readonly instancesDue: number;
   /** When the latest block was finished, ms since 1970; null before the first. */
   readonly lastBlockMs: number | null;
   /** Time that the missing blocks take on the threads of the session, s; null before the first block. */
@@ -46,10 +49,12 @@ export async function readRunState(
   try {
     const { study, keys } = readStudyOf(path, await textOf(path, RUN_FILE.resolved), keysOf);
     const entries = readJournal((await textOf(path, RUN_FILE.journal)) ?? '').entries;
-    const finished = finishedBlocks(path, study, keys, entries);
     const session = readSessions(await textOf(path, RUN_FILE.record)).at(-1) ?? null;
+    const instances = instancesOfEnd(study, session, (await textOf(path, DESCRIPTION)) ?? null);
+    const due = { ...study, instances };
+    const finished = finishedBlocks(path, due, keys, entries);
     const holder = (await lookForHolders(path)).find(({ live }) => live) ?? null;
-    const total = (blockCount(study) + 1) * study.candidates.length;
+    const total = (blockCount(due) + 1) * study.candidates.length;
     const done = finished.length;
     return {
       study,
@@ -60,11 +65,12 @@ export async function readRunState(
         candidates: study.candidates.map(({ key }) => ({
           candidate: key,
           done: finished.filter(({ candidate }) => candidate === key).length,
-          total: blockCount(study) + 1,
+          total: blockCount(due) + 1,
         })),
         done,
         total,
-        instances: commonInstances(study, finished),
+        instances: commonInstances(due, finished),
+        instancesDue: instances,
         lastBlockMs: entries.length === 0 ? null : (await stat(join(path, RUN_FILE.journal))).mtimeMs,
         leftS: secondsLeft(total - done, entries, session?.threads ?? 1),
       },

@@ -1,4 +1,4 @@
-import type { BlockReply, BlockTask } from '../outcomes/block.js';
+import { type BlockReply, type BlockTask, blockCount } from '../outcomes/block.js';
 import type { Study } from '../study/study.js';
 import { sha256 } from './checksum.js';
 import type { JournalEntry } from './journal.js';
@@ -18,29 +18,32 @@ export interface StoredBlocks {
   readonly intact: readonly StoredBlock[];
   /** What is not as it was written; a sentence each. */
   readonly findings: readonly string[];
-  /** Blocks of the study that the journal does not call finished. */
+  /** Blocks of the run that the journal does not call finished. */
   readonly missing: number;
 }
 
 /**
  * Compares the blocks of a folder with its journal.
  *
+ * @param instances with which the run is complete; there may be blocks beyond
  * @param read text of a file of the folder by its name; null if it cannot be read
  */
 export function checkBlocks(
   study: Study,
+  instances: number,
   entries: readonly JournalEntry[],
   read: (name: string) => string | null,
 ): StoredBlocks {
   const checksums = new Map(entries.map((entry) => [blockFile(entry), entry.sha256]));
   const intact: StoredBlock[] = [];
   const findings: string[] = [];
+  const last = blockCount({ ...study, instances });
   let missing = 0;
   for (const task of allBlocks(study)) {
     const name = blockFile(task);
     const checksum = checksums.get(name);
     const csv = checksum === undefined ? null : read(name);
-    if (checksum === undefined) missing++;
+    if (checksum === undefined) missing += task.block <= last ? 1 : 0;
     else if (csv === null) findings.push(`${name} cannot be read`);
     else if (sha256(csv) === checksum) intact.push({ task, csv });
     else findings.push(`${name} is not as it was written`);

@@ -46,8 +46,9 @@ function standings({ verdicts }: Answers, line: number): string {
 }
 
 /** What it would take to decide a line. */
-function undecided({ verdict, line, row, wouldDecide }: LineAnswer): string {
+function undecided({ verdict, line, row, wouldDecide, least }: LineAnswer): string {
   if (verdict !== 'not decided') return '';
+  if (least !== null) return ` (needs at least ${least.blocks} blocks, ${least.banks} banks)`;
   const count =
     wouldDecide === null ? 'no number of banks would decide' : `about ${roundedUp(wouldDecide)} would decide`;
   if (row.method !== 'clopper-pearson' || line.bound !== 'at-most') return ` (${count})`;

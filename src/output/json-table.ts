@@ -29,13 +29,14 @@ export function renderJson(answers: Answers, study: Study): string {
     verdicts: answers.verdicts.map(({ candidate, verdict, lines }) => ({
       candidate,
       verdict,
-      lines: lines.map(({ line, verdict: ofLine, wouldDecide }) => ({
+      lines: lines.map(({ line, verdict: ofLine, wouldDecide, least }) => ({
         measure: line.measure,
         statistic: line.statistic,
         bound: line.bound.replace('-', '_'),
         limit: line.limit,
         verdict: ofLine,
         would_decide: wouldDecide,
+        least_banks: least === null ? null : least.banks,
       })),
     })),
     summary: namedRows(summaryColumns(confidencePercent), answers.summary),

@@ -4,6 +4,7 @@ import type { LineVerdict } from '../statistics/line-verdict.js';
 import type { PairTest } from '../statistics/pair-test.js';
 import type { PackKind } from '../study/packs.js';
 import type { AcceptanceLine } from '../study/study.js';
+import type { BlocksOfBanks } from './least-blocks.js';
 
 /** What is said of a measure of one candidate; `twin` is the value of the bank with every value at its mean. */
 export type SummaryStatistic = Statistic | 'twin';
@@ -74,6 +75,8 @@ export interface LineAnswer {
   readonly row: SummaryRow;
   /** About how many sampled banks would decide a line that is not decided; null if none would. */
   readonly wouldDecide: number | null;
+  /** What a line that is not decided takes to have an interval at all; null if blocks do not keep it from one. */
+  readonly least: BlocksOfBanks | null;
 }
 
 /** All acceptance lines put to one candidate; `verdict` is null if the study has none. */

@@ -5,6 +5,7 @@ import type { AcceptanceLine, Candidate, Study } from '../study/study.js';
 import { ONE_BMS_NOTE } from './absence.js';
 import type { CandidateVerdict, LineAnswer, SummaryRow, Verdict } from './answers.js';
 import { decidingCount } from './deciding-count.js';
+import { leastBlocks } from './least-blocks.js';
 import { summariseMeasure } from './summary.js';
 import { verdictConfidence } from './verdict-confidence.js';
 
@@ -40,8 +41,9 @@ async function answerLine(
   const row = rows.find(({ statistic }) => statistic === line.statistic);
   if (row === undefined) throw new RangeError(`${candidate.key} has no ${line.statistic} of ${line.measure}`);
   const verdict = judgeLine(line, row);
-  const wouldDecide = verdict === 'not decided' ? decidingCount(line, row, values, confidenceFraction) : null;
-  return { line, verdict, row, wouldDecide };
+  if (verdict !== 'not decided') return { line, verdict, row, wouldDecide: null, least: null };
+  const wouldDecide = decidingCount(line, row, values, confidenceFraction);
+  return { line, verdict, row, wouldDecide, least: leastBlocks(study, line, values) };
 }
 
 /** A line on what the candidate's wiring does not have (drift between modules under one BMS) does not apply. */

@@ -1,10 +1,13 @@
-import { readdirSync, readFileSync, statSync } from 'node:fs';
+import { readdirSync, readFileSync, rmSync, statSync } from 'node:fs';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { judgeRequirement } from '../../src/commands/requirement.js';
 import { type RunOptions, runCommand } from '../../src/commands/run.js';
+import { statusCommand } from '../../src/commands/status.js';
+import { verifyCommand } from '../../src/commands/verify.js';
 import { Scratch } from '../execution/fake-run.js';
 import { compileWithFakeEngine, type FakeProgram } from '../execution/program-with-fake-engine.js';
+import { diskShell } from './disk-shell.js';
 import { memoryShell } from './memory-shell.js';
 
 /** Every event happens in about half of the banks of the fake engine. */
@@ -101,6 +104,32 @@ describe('a run with looks', () => {
     for (const [name, content] of Object.entries(resultFiles(one.folder))) {
       expect(readFileSync(join(folder, name), 'utf8'), name).toBe(content);
     }
+  });
+
+  it('is complete at the look where it ended, with and without blocks beyond', async () => {
+    const { folder } = await run(studyText(13));
+    const standing = async () => {
+      const shell = diskShell();
+      const status = await statusCommand({ folder }, shell, Date.now());
+      const verified = await verifyCommand({ folder, blocks: 0 }, shell, program.workerFile);
+      return { status, verified, out: shell.printed.out };
+    };
+    const early = await standing();
+    expect([early.status, early.verified]).toEqual([0, 0]);
+    expect(early.out).toContain(': complete, session of ');
+    expect(early.out).toMatch(
+      /^66 of 66 blocks.*; 64 of 64 banks in every candidate \(enough at that look, of at most 256\)$/m,
+    );
+    expect(early.out).toContain(': 66 blocks and the results; none computed again\n');
+    await run(studyText(9), { out: folder });
+    await run(studyText(13), { out: folder });
+    const beyond = await standing();
+    expect([beyond.status, beyond.verified]).toEqual([0, 0]);
+    expect(beyond.out).toContain('66 of 66 blocks');
+    expect(beyond.out).toContain(': 130 blocks and the results');
+    rmSync(join(folder, 'outcomes', 'strings', 'block-0003.csv'));
+    const damaged = await standing();
+    expect([damaged.status, damaged.verified]).toEqual([5, 7]);
   });
 
   it('has the figures of a run with that fixed count, but for its verdicts', async () => {

@@ -1,4 +1,4 @@
-import { cpSync, mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { cpSync, mkdirSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { runCommand } from '../../src/commands/run.js';
@@ -53,11 +53,11 @@ describe('verify', () => {
     const before = readdirSync(whole, { recursive: true, encoding: 'utf8' }).sort();
     expect(await verify(whole)).toEqual({
       status: 0,
-      out: `${whole} is as it was written: 22 blocks; 8 computed again and identical\n`,
+      out: `${whole} is as it was written: 22 blocks and the results; 8 computed again and identical\n`,
       err: '',
     });
     expect((await verify(whole, { blocks: 99 })).out).toContain('22 computed again and identical');
-    expect((await verify(whole, { blocks: 0 })).out).toContain('22 blocks; 0 computed again');
+    expect((await verify(whole, { blocks: 0 })).out).toContain('22 blocks and the results; none computed again\n');
     expect(readdirSync(whole, { recursive: true, encoding: 'utf8' }).sort()).toEqual(before);
   });
 
@@ -68,7 +68,7 @@ describe('verify', () => {
     const { status, out } = await verify(folder, { blocks: 99 });
     expect(status).toBe(7);
     expect(out).toBe(
-      `${name} is not as it was written\n${folder} is not as it was: 1 findings; 21 blocks intact, 21 computed again\n`,
+      `${name} is not as it was written\n${folder} is not as it was: 1 finding; 21 blocks intact, 21 computed again\n`,
     );
   });
 
@@ -88,7 +88,7 @@ describe('verify', () => {
     flipBit(join(folder, 'study.resolved.json'), 4001);
     const { status, out } = await verify(folder);
     expect(status).toBe(7);
-    expect(out).toMatch(/^study\.resolved\.json is not as it was written\n.*; 0 blocks intact, 0 computed again\n$/);
+    expect(out).toMatch(/^study\.resolved\.json is not as it was written\n.*; 0 blocks intact, none computed again\n$/);
   });
 
   it('finds a value that is whole but not what is computed', async () => {
@@ -106,11 +106,52 @@ describe('verify', () => {
     expect(out).toMatch(/^outcomes\/strings\/block-0002\.csv, instance 8: \w+ is \S+, and \S+ when computed again\n/);
   });
 
+  it.each(['summary.csv', 'comparisons.csv', 'by-cycle.csv', 'study.yaml'])(
+    'finds %s altered or gone',
+    async (name) => {
+      const folder = copy();
+      flipBit(join(folder, name), 805);
+      const altered = await verify(folder, { blocks: 0 });
+      expect(altered).toMatchObject({
+        status: 7,
+        out: `${name} is not as datapackage.json says\n${folder} is not as it was: 1 finding; 22 blocks intact, none computed again\n`,
+      });
+      rmSync(join(folder, name));
+      const gone = await verify(folder, { blocks: 0 });
+      expect([gone.status, gone.out.split('\n')[0]]).toEqual([7, `${name} cannot be read`]);
+    },
+  );
+
+  it('finds the description of the results altered or gone', async () => {
+    const folder = copy();
+    flipBit(join(folder, 'datapackage.json'), 805);
+    const altered = await verify(folder, { blocks: 0 });
+    expect([altered.status, altered.out.split('\n')[0]]).toEqual([7, 'datapackage.json is not as it was written']);
+    rmSync(join(folder, 'datapackage.json'));
+    const gone = await verify(folder, { blocks: 0 });
+    expect(gone.status).toBe(7);
+    expect(gone.out).toMatch(/^datapackage\.json cannot be read, so that the results cannot be compared\n/);
+  });
+
+  it('misses no results of a run that was killed before it wrote any', async () => {
+    const folder = copy();
+    const record = JSON.parse(readFileSync(join(folder, 'run.json'), 'utf8'));
+    const [session] = record.sessions;
+    const killed = { ...session, ended: null, duration_s: null, results: null };
+    writeFileSync(join(folder, 'run.json'), JSON.stringify({ ...record, sessions: [session, killed] }));
+    for (const name of ['summary.csv', 'datapackage.json']) rmSync(join(folder, name));
+    expect(await verify(folder, { blocks: 0 })).toMatchObject({
+      status: 0,
+      out: `${folder} is as it was written: 22 blocks, no results yet; none computed again\n`,
+    });
+  });
+
   it('tells as one JSON document what it found', async () => {
     const { out } = await verify(whole, { json: true, blocks: 3 });
     expect(JSON.parse(out)).toEqual({
       folder: whole,
       blocks: { intact: 22, missing: 0, recomputed: 3 },
+      results_compared: true,
       findings: [],
     });
   });

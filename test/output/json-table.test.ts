@@ -52,6 +52,7 @@ describe('JSON on stdout', () => {
           verdict: 'not decided',
           // By hand: two of three with the event begin at 9.4 %, beyond 6 %.
           would_decide: 3,
+          least_banks: null,
         },
       ],
     });
