@@ -2,12 +2,13 @@ import { asciiText, SCREEN_COLUMNS, wrapText } from '../output/plain-text.js';
 import type { ProspectiveCurrent } from '../simulation/prospective-current.js';
 import { bleedInForce } from '../study/bleed-in-force.js';
 import type { Study } from '../study/study.js';
+import { elapsedNote } from './elapsed-note.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
 import { renderOrigins } from './origin-table.js';
 import type { Shell } from './shell.js';
 import { breakingWarnings, shortCircuitLines } from './short-circuit.js';
-import { bankCycles, type CheckAids, type Trial } from './trial.js';
+import { bankCycles, type CheckAids, type Trial, type TwinFacts } from './trial.js';
 
 /** What `check` is told on the command line. */
 export interface CheckOptions {
@@ -25,20 +26,23 @@ export function checkCommand(options: CheckOptions, shell: Shell, aids: CheckAid
   if (loaded === null) return EXIT_STATUS.input;
   const { study } = loaded;
   const currents = aids.prospectiveCurrents(study);
-  const warnings = [...loaded.warnings, ...twinWarnings(study, aids), ...breakingWarnings(study, currents)];
+  const twins = aids.twins(study);
+  const warnings = [...loaded.warnings, ...twinWarnings(study, twins), ...breakingWarnings(study, currents)];
   if (options.quiet) {
     for (const warning of warnings) shell.err(`warning: ${asciiText(warning)}\n`);
     return EXIT_STATUS.done;
   }
-  const trial = aids.trial(study, shell.now);
-  shell.out(
-    options.json ? renderCheckJson(loaded, warnings, currents, trial) : renderCheck(loaded, warnings, currents, trial),
-  );
+  const checked = { warnings, notes: notesOn(study, twins), currents, trial: aids.trial(study, shell.now) };
+  shell.out(options.json ? renderCheckJson(loaded, checked) : renderCheck(loaded, checked));
   return EXIT_STATUS.done;
 }
 
-function twinWarnings(study: Study, aids: CheckAids): readonly string[] {
-  const keys = aids.candidatesWhoseTwinLosesLoad(study);
+function notesOn(study: Study, twins: readonly TwinFacts[]): readonly string[] {
+  return [bleedInForce(study), elapsedNote(study, twins)].filter((note) => note !== null);
+}
+
+function twinWarnings({ candidates }: Study, twins: readonly TwinFacts[]): readonly string[] {
+  const keys = candidates.filter((_, index) => twins[index]?.losesLoad).map(({ key }) => key);
   if (keys.length === 0) return [];
   return [
     `the duty is too much even without spread: the twin loses load (${keys.join(', ')}); lighten the load, charge more, ` +
@@ -46,12 +50,15 @@ function twinWarnings(study: Study, aids: CheckAids): readonly string[] {
   ];
 }
 
-function renderCheck(
-  { study, origins }: LoadedStudy,
-  warnings: readonly string[],
-  currents: readonly ProspectiveCurrent[],
-  trial: Trial,
-): string {
+/** What there is to say of a study beside its values. */
+interface Checked {
+  readonly warnings: readonly string[];
+  readonly notes: readonly string[];
+  readonly currents: readonly ProspectiveCurrent[];
+  readonly trial: Trial;
+}
+
+function renderCheck({ study, origins }: LoadedStudy, { warnings, notes, currents, trial }: Checked): string {
   const lines = [
     ...wrapText(asciiText(study.title)),
     '',
@@ -63,7 +70,7 @@ function renderCheck(
     ),
     '',
     ...warnings.flatMap((warning) => wrapText(`warning: ${asciiText(warning)}`)),
-    ...wrapText(`note: ${asciiText(bleedInForce(study))}`),
+    ...notes.flatMap((note) => wrapText(`note: ${asciiText(note)}`)),
     '',
     ...wrapText(
       `${bankCycles(study)} bank-cycles (${study.instances} banks x ${study.cycles} cycles x ` +
@@ -73,12 +80,7 @@ function renderCheck(
   return `${lines.join('\n')}\n`;
 }
 
-function renderCheckJson(
-  { study, origins }: LoadedStudy,
-  warnings: readonly string[],
-  currents: readonly ProspectiveCurrent[],
-  trial: Trial,
-): string {
+function renderCheckJson({ study, origins }: LoadedStudy, { warnings, notes, currents, trial }: Checked): string {
   const estimate = { bank_cycles: bankCycles(study), minutes_on_one_thread: minutes(study, trial) };
   const shortCircuit = study.candidates.map(({ key }, index) => ({
     candidate: key,
@@ -86,7 +88,6 @@ function renderCheckJson(
     string_A: currents[index]?.stringA,
     string_fuse_A: currents[index]?.fuseA,
   }));
-  const notes = [bleedInForce(study)];
   const document = { study, origins, warnings, notes, prospective_short_circuit: shortCircuit, estimate };
   return `${JSON.stringify(document, null, 2)}\n`;
 }
