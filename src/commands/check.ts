@@ -1,7 +1,9 @@
 import { asciiText, SCREEN_COLUMNS, wrapText } from '../output/plain-text.js';
 import type { ProspectiveCurrent } from '../simulation/prospective-current.js';
+import { isChargerBeyondBms } from '../study/bank-limit-warnings.js';
+import { nominalModules } from '../study/bank-module.js';
 import { bleedInForce } from '../study/bleed-in-force.js';
-import type { Study } from '../study/study.js';
+import type { Candidate, Study } from '../study/study.js';
 import { elapsedNote } from './elapsed-note.js';
 import { EXIT_STATUS, type ExitStatus } from './exit-status.js';
 import { type LoadedStudy, loadStudy } from './load-study.js';
@@ -41,13 +43,27 @@ function notesOn(study: Study, twins: readonly TwinFacts[]): readonly string[] {
   return [bleedInForce(study), elapsedNote(study, twins)].filter((note) => note !== null);
 }
 
-function twinWarnings({ candidates }: Study, twins: readonly TwinFacts[]): readonly string[] {
-  const keys = candidates.filter((_, index) => twins[index]?.losesLoad).map(({ key }) => key);
-  if (keys.length === 0) return [];
+function twinWarnings(study: Study, twins: readonly TwinFacts[]): readonly string[] {
+  const losing = study.candidates.filter((_, index) => twins[index]?.losesLoad);
+  const isBeyond = (candidate: Candidate): boolean =>
+    isChargerBeyondBms(study, candidate, nominalModules(study, candidate));
   return [
-    `the duty is too much even without spread: the twin loses load (${keys.join(', ')}); lighten the load, charge more, ` +
-      'lower the low-voltage disconnect or take more capacity before comparing wirings',
+    ...ofTwins(
+      losing.filter((candidate) => !isBeyond(candidate)),
+      'the duty is too much even without spread: ',
+      'lighten the load, charge more, lower the low-voltage disconnect or take more capacity before comparing wirings',
+    ),
+    ...ofTwins(
+      losing.filter(isBeyond),
+      '',
+      'the charger can give more than their BMSs let in: lower limit_A of the charger before comparing wirings',
+    ),
   ];
+}
+
+function ofTwins(losing: readonly Candidate[], before: string, advice: string): readonly string[] {
+  if (losing.length === 0) return [];
+  return [`${before}the twin loses load (${losing.map(({ key }) => key).join(', ')}); ${advice}`];
 }
 
 /** What there is to say of a study beside its values. */

@@ -60,6 +60,20 @@ describe('check', () => {
     expect(check().printed.out).not.toMatch(/even without spread/);
   });
 
+  it('answers a twin that loses load behind a charger beyond its BMSs with the charger, not with the load', () => {
+    // Two strings of 100 A each.
+    const warned = (limitA: number): string => {
+      const more = `bank: {charger: {limit_A: ${limitA}}}\n`;
+      const shell = memoryShell({ 'a.yaml': studyWith({ more }) });
+      const twins = () => [{ losesLoad: true, elapsedS: 86_400 }];
+      expect(checkCommand({ study: 'a.yaml', quiet: true }, shell, { ...AIDS, twins })).toBe(0);
+      return shell.printed.err;
+    };
+    expect(warned(250)).toMatch(/^warning: the twin loses load \(strings\); .*: lower limit_A of the charger/m);
+    expect(warned(250)).not.toMatch(/lighten the load/);
+    expect(warned(200)).toMatch(/the twin loses load \(strings\); lighten the load/);
+  });
+
   it('tells the prospective short-circuit current of every candidate', () => {
     expect(check().printed.out).toMatch(/^ {2}native: 3911 A at the bus, by string 2163, 1748 A$/m);
     const document = JSON.parse(check({ json: true }).printed.out);
