@@ -3,7 +3,7 @@ import { outcomeColumns } from '../outcomes/columns.js';
 import { prospectiveCurrent } from '../simulation/prospective-current.js';
 import { prepareCandidate, simulateInstance, simulateTwin } from '../simulation/simulate-instance.js';
 import type { Study } from '../study/study.js';
-import type { CheckAids, Trial } from './trial.js';
+import type { CheckAids, Trial, TwinFacts } from './trial.js';
 
 const TRIAL_MS = 2000;
 /** Banks are tried over a part of a very long horizon only, so that the trial stays near its time. */
@@ -12,7 +12,7 @@ const TRIAL_CYCLES = 400;
 /** What `check` needs of the simulation. */
 export const simulationAids: CheckAids = {
   trial,
-  candidatesWhoseTwinLosesLoad,
+  twins,
   prospectiveCurrents: (study) => study.candidates.map((candidate) => prospectiveCurrent(study, candidate)),
 };
 
@@ -30,11 +30,10 @@ function trial(study: Study, now: () => number): Trial {
   return { bankCyclesPerSecond: (banks * cycles) / seconds };
 }
 
-function candidatesWhoseTwinLosesLoad(study: Study): readonly string[] {
-  return study.candidates
-    .filter((candidate) => {
-      const column = outcomeColumns(outcomeLayout(study, candidate)).findIndex(({ name }) => name === 'load_lost');
-      return simulateTwin(prepareCandidate(study, candidate.key)).values[column] === 1;
-    })
-    .map(({ key }) => key);
+function twins(study: Study): readonly TwinFacts[] {
+  return study.candidates.map((candidate) => {
+    const prepared = prepareCandidate(study, candidate.key);
+    const column = outcomeColumns(outcomeLayout(study, candidate)).findIndex(({ name }) => name === 'load_lost');
+    return { losesLoad: simulateTwin(prepared).values[column] === 1, elapsedS: prepared.twin.log.elapsedS };
+  });
 }

@@ -7,12 +7,19 @@ export interface Trial {
   readonly bankCyclesPerSecond: number;
 }
 
+/** What becomes of a twin, the bank with every value at its mean, over the whole horizon. */
+export interface TwinFacts {
+  readonly losesLoad: boolean;
+  /** Time that the cycles take, s. */
+  readonly elapsedS: number;
+}
+
 /** What `check` needs of the simulation; injected, so that it can be tested without one. */
 export interface CheckAids {
   /** Runs a few banks for about two seconds. */
   readonly trial: (study: Study, now: () => number) => Trial;
-  /** Candidates whose twin, the bank with every value at its mean, loses load. */
-  readonly candidatesWhoseTwinLosesLoad: (study: Study) => readonly string[];
+  /** The twin of every candidate, in the order of the study. */
+  readonly twins: (study: Study) => readonly TwinFacts[];
   /** Prospective short-circuit current of every candidate, in the order of the study. */
   readonly prospectiveCurrents: (study: Study) => readonly ProspectiveCurrent[];
 }

@@ -19,6 +19,10 @@ export interface NominalModule {
   readonly underVoltageReleaseV: number;
   readonly overCurrentChargeA: number;
   readonly overCurrentDischargeA: number;
+  /** By how much the module is warmer than its slot, K. */
+  readonly temperatureOffsetK: number;
+  /** Its BMS does not let it be charged below some temperature. */
+  readonly refusesCold: boolean;
 }
 
 /** @returns the modules of a candidate with their nominal values, string by string */
@@ -48,6 +52,8 @@ function modulesOf(stock: Stock): readonly NominalModule[] {
       underVoltageReleaseV: nominalOf(stock, id, 'underVoltageReleaseV'),
       overCurrentChargeA: nominalOf(stock, id, 'overCurrentChargeA'),
       overCurrentDischargeA: nominalOf(stock, id, 'overCurrentDischargeA'),
+      temperatureOffsetK: nominalOf(stock, id, 'temperatureOffsetK'),
+      refusesCold: stock.bms.chargeRefusal !== undefined,
     }));
   }
   return stock.modules.map((module) => ({
@@ -57,6 +63,8 @@ function modulesOf(stock: Stock): readonly NominalModule[] {
     capacityAh: Math.min(...module.capacityAh),
     arrivalCharge: Math.min(...module.arrivalCharge),
     resistanceOhm: Math.max(...module.resistanceOhm),
+    temperatureOffsetK: module.temperatureOffsetK ?? 0,
+    refusesCold: module.bms.chargeRefusal !== undefined,
   }));
 }
 

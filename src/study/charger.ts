@@ -4,6 +4,7 @@ import type { Layers } from './layers.js';
 import type { Reading } from './reading.js';
 import { section } from './section.js';
 import type { ChargerSettings } from './study.js';
+import type { StudyPath } from './study-path.js';
 
 export const busVoltage = amount({ above: 0, atMost: 1000 });
 const hours = amount({ above: 0, atMost: 8784 });
@@ -87,6 +88,9 @@ function checkLevels(
 ): void {
   const refuse = (key: keyof ChargerInput, rule: string, got: number): void => {
     const { path, source } = layers.pick(key) ?? { path: layers.owner, source: 'default' };
+    refuseAt(path, source, rule, got);
+  };
+  const refuseAt = (path: StudyPath, source: string, rule: string, got: number): void => {
     reading.faultWith(path, `must be ${rule}, got ${got}${source === 'default' ? ' by default' : ''}`);
   };
   const { absorptionV, floatV, restartV, tailA, limitA } = charger;
@@ -101,5 +105,8 @@ function checkLevels(
       refuse('restart_V', `a number below the absorption voltage, ${absorptionV} V`, restartV);
     }
   }
-  if (!(tailA < limitA)) refuse('until', `a tail_A below the charger's limit, ${limitA} A`, tailA);
+  if (!(tailA < limitA)) {
+    const { path, source } = layers.inside('until').pick('tail_A') ?? { path: layers.owner, source: 'default' };
+    refuseAt(path, source, `a number below the charger's limit, ${limitA} A`, tailA);
+  }
 }

@@ -100,7 +100,8 @@ function resolveReference(input: StudyInput, candidates: readonly Candidate[], r
   const reference = input.reference ?? names[0] ?? candidates[0]?.key ?? '';
   if (input.reference !== undefined && !names.includes(reference)) {
     if (!reading.isIncomplete(['candidates', reference])) {
-      reading.fault(['reference'], 'the name of a candidate', didYouMean(reference, names));
+      const hint = didYouMean(reference, names) || ` (candidates: ${names.join(', ')})`;
+      reading.fault(['reference'], 'the name of a candidate', hint);
     }
     return reference;
   }

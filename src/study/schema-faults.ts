@@ -46,11 +46,16 @@ function unionFaults(issue: z.core.$ZodIssueInvalidUnion, path: StudyPath, data:
   return [{ path, atKey: false, message: wrong(rule, valueAt(data, path), words) }];
 }
 
-/** How badly an alternative fits: wrong or missing keys of its own first, then all other faults. */
+/**
+ * How badly an alternative fits: wrong or missing keys of its own first, then all other faults. An unknown key that is the
+ * end of one that is not given (for_h of charge_for_h) counts half.
+ */
 function misfit(issues: readonly Issue[]): number {
+  const absent = issues.map(({ code, path }) => (code === 'invalid_type' && path.length === 1 ? String(path[0]) : ''));
+  const weight = (key: string): number => (absent.some((name) => name.endsWith(`_${key}`)) ? 0.5 : 1);
   let sum = 0;
   for (const issue of issues) {
-    if (issue.code === 'unrecognized_keys') sum += issue.keys.length;
+    if (issue.code === 'unrecognized_keys') sum += issue.keys.reduce((total, key) => total + weight(key), 0);
     else sum += issue.code === 'invalid_type' && issue.path.length === 1 ? 100 : 1;
   }
   return sum;
@@ -62,7 +67,10 @@ function wrong(rule: string, value: unknown, words: readonly unknown[] = []): st
 }
 
 function unknownKey(key: string, known: string): string {
-  const near = nearestName(key, known.split(', '));
+  const names = known.split(', ');
+  // What is told of percentages is told in points in places, and no edit distance knows.
+  const inPoints = key.replace('percent', 'points');
+  const near = names.includes(inPoints) ? inPoints : nearestName(key, names);
   const hint = near === undefined ? `known here: ${known}` : `did you mean ${near}?`;
   return `must be a known key, got ${showValue(key)} (${hint})`;
 }

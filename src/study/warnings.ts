@@ -1,3 +1,4 @@
+import { warnOfChargerBeyondBms, warnOfColdCharge, warnOfDisconnect } from './bank-limit-warnings.js';
 import { nominalModules } from './bank-module.js';
 import { warnOfAbsorption, warnOfFloat } from './charger-warnings.js';
 import { dutyWarnings, warnOfFirstDemand } from './duty-warnings.js';
@@ -18,6 +19,9 @@ export function studyWarnings(study: Study): readonly string[] {
     const strings = nominalModules(study, candidate);
     warnOfFloat(candidate, strings, warn);
     warnOfAbsorption(candidate, strings, warn);
+    warnOfChargerBeyondBms(study, candidate, strings, warn);
+    warnOfDisconnect(candidate, strings, warn);
+    warnOfColdCharge(study.duty, candidate, strings, warn);
     warnOfSeriesCount(strings, warn);
     warnOfUnits(strings, warn);
     warnOfFirstDemand(study.duty, candidate, strings, warn);

@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { checkCommand } from '../../src/commands/check.js';
+import { simulationAids } from '../../src/commands/simulation-aids.js';
 import type { CheckAids } from '../../src/commands/trial.js';
-import { repositoryText } from '../study/study-under-test.js';
+import { repositoryText, studyOf, studyWith } from '../study/study-under-test.js';
 import { type MemoryShell, memoryShell } from './memory-shell.js';
 
 const FILES = {
@@ -11,9 +12,13 @@ const FILES = {
 /** 30 000 bank-cycles per second; no twin loses load. */
 const AIDS: CheckAids = {
   trial: () => ({ bankCyclesPerSecond: 30_000 }),
-  candidatesWhoseTwinLosesLoad: () => [],
+  twins: ({ candidates }) => candidates.map(() => ({ losesLoad: false, elapsedS: 180 * 86_400 })),
   prospectiveCurrents: ({ candidates }) =>
     candidates.map(() => ({ bankA: 3910.6, stringA: [2162.9, 1747.7], fuseA: 2162.9 })),
+};
+const NATIVE_LOSES_LOAD: CheckAids = {
+  ...AIDS,
+  twins: ({ candidates }) => candidates.map(({ key }) => ({ losesLoad: key === 'native', elapsedS: 180 * 86_400 })),
 };
 
 function check(options: { json?: boolean; quiet?: boolean } = {}, aids = AIDS): MemoryShell {
@@ -48,11 +53,25 @@ describe('check', () => {
   });
 
   it('warns of a duty whose twin loses load', () => {
-    const { out } = check({}, { ...AIDS, candidatesWhoseTwinLosesLoad: () => ['native'] }).printed;
+    const { out } = check({}, NATIVE_LOSES_LOAD).printed;
     expect(out.replaceAll('\n', ' ')).toMatch(
       /warning: the duty is too much even without spread: the twin loses load \(native\); lighten the load, charge more/,
     );
     expect(check().printed.out).not.toMatch(/even without spread/);
+  });
+
+  it('answers a twin that loses load behind a charger beyond its BMSs with the charger, not with the load', () => {
+    // Two strings of 100 A each.
+    const warned = (limitA: number): string => {
+      const more = `bank: {charger: {limit_A: ${limitA}}}\n`;
+      const shell = memoryShell({ 'a.yaml': studyWith({ more }) });
+      const twins = () => [{ losesLoad: true, elapsedS: 86_400 }];
+      expect(checkCommand({ study: 'a.yaml', quiet: true }, shell, { ...AIDS, twins })).toBe(0);
+      return shell.printed.err;
+    };
+    expect(warned(250)).toMatch(/^warning: the twin loses load \(strings\); .*: lower limit_A of the charger/m);
+    expect(warned(250)).not.toMatch(/lighten the load/);
+    expect(warned(200)).toMatch(/the twin loses load \(strings\); lighten the load/);
   });
 
   it('tells the prospective short-circuit current of every candidate', () => {
@@ -96,8 +115,34 @@ describe('check', () => {
     expect(JSON.parse(check({ json: true }).printed.out).notes).toEqual([note]);
   });
 
+  it('notes how long the cycles take where a charge may end its phase early, and nowhere else', () => {
+    const notesWith = (phase: string): readonly string[] => {
+      const text = studyWith({
+        duty: `duty: {phases: [${phase}, {discharge_W: 500, for_h: 8}]}`,
+        candidates: '  a: {wiring: strings, modules: [[A1, A2]]}\n  b: {wiring: strings, modules: [[A3, A4]]}',
+        more: 'cycles: 30\n',
+      });
+      const shell = memoryShell({ 'a.yaml': text });
+      const twins = () => [1_296_000, 1_339_200].map((elapsedS) => ({ losesLoad: false, elapsedS }));
+      expect(checkCommand({ study: 'a.yaml', json: true }, shell, { ...AIDS, twins })).toBe(0);
+      return JSON.parse(shell.printed.out).notes;
+    };
+    // By hand: 1296000 s / 86400 = 15 days, 1339200 s / 86400 = 15.5 days.
+    expect(notesWith('{charge: to-full, at_most_h: 16}')[1]).toMatch(
+      /^cycles are not days: .*; 30 cycles of the twin take 15\.0 days \(a\), 15\.5 days \(b\); .* write charge_for_h/,
+    );
+    expect(notesWith('{charge_for_h: 16}')).toHaveLength(1);
+  });
+
+  it('takes the days that README tells of its first study from the twin', () => {
+    const readme = repositoryText('README.md');
+    const study = studyOf(/```yaml\n([\s\S]*?)```/.exec(readme)?.[1] ?? '');
+    const days = Number(/these 30 cycles take about (\d+) days/.exec(readme)?.[1]);
+    for (const { elapsedS } of simulationAids.twins(study)) expect(Math.round(elapsedS / 86_400)).toBe(days);
+  });
+
   it('keeps warnings and leaves out table and note with --quiet', () => {
-    const { out, err } = check({ quiet: true }, { ...AIDS, candidatesWhoseTwinLosesLoad: () => ['native'] }).printed;
+    const { out, err } = check({ quiet: true }, NATIVE_LOSES_LOAD).printed;
     expect(out).toBe('');
     expect(err).toMatch(/^warning: the duty is too much even without spread: the twin loses load \(native\)/m);
     expect(err).not.toMatch(/bleed/);

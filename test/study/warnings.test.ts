@@ -181,3 +181,65 @@ describe('the warning of a measured column without effect', () => {
     );
   });
 });
+
+describe('the warning of a disconnect for another voltage', () => {
+  it('comes outside 2 to 3.4 V a cell, of a reconnection outside 2 to 3.65 V', () => {
+    // 8 cells: 16 to 27.2 V, and 16 to 29.2 V.
+    const at = (load: string) => warningsOf(studyWith({ more: `bank: {load: {${load}}}\n` }));
+    expect(at('disconnect_V: 11.6, reconnect_V: 13')).toMatch(
+      /^load: disconnect_V, 11\.6 V, lies outside 16 to 27\.2 V, where 8 cells in series .*\(strings\)\nload: reconnect_V, 13 V, lies outside 16 to 29\.2 V/m,
+    );
+    expect(at('disconnect_V: 16, reconnect_V: 29.2')).not.toMatch(/other voltage/);
+    expect(at('disconnect_V: 27.3, reconnect_V: 29.3')).toMatch(/27\.3 V, lies.*\n.*29\.3 V, lies/);
+    expect(at('disconnect_V: null, reconnect_V: 13')).not.toMatch(/other voltage/);
+  });
+});
+
+describe('the warning of charging in the cold', () => {
+  const at = (degC: number, phase = '{charge_for_h: 8}', lines: readonly string[] = [], more = '') =>
+    warningsOf(
+      studyWithStock(['rated_Ah: 100', ...lines], more).replace(
+        /^duty:.*$/m,
+        `duty: {phases: [{discharge_W: 500, for_h: 4, ambient_degC: -30}, {rest_h: 1, ambient_degC: -30}, ${phase}], ambient_degC: ${degC}}`,
+      ),
+    );
+
+  it('comes below 0 degC where no BMS refuses', () => {
+    expect(at(-15)).toMatch(
+      /^stock house: modules are charged down to -15 degC, .* lithium may plate .* the maker decide/m,
+    );
+    expect(at(0)).not.toMatch(/lithium/);
+    expect(at(-15, '{rest_h: 8}')).not.toMatch(/lithium/);
+    expect(at(-15, '{charge_for_h: 8}', ['bms: {charge_refusal: {below_degC: 0}}'])).not.toMatch(/lithium/);
+  });
+
+  it('counts how much warmer or colder slots and modules are', () => {
+    expect(at(-2, '{charge_for_h: 8}', ['temperature_offset_K: 3'])).not.toMatch(/lithium/);
+    expect(at(1, '{charge_for_h: 8}', [], 'bank: {slot_temperature_offset_K: [0, -2]}\n')).toMatch(/down to -1 degC/);
+  });
+});
+
+describe('the warning of a charger beyond the BMSs', () => {
+  const at = (limitA: number, wiring = 'strings', charge = '{charge_for_h: 4}') =>
+    warningsOf(
+      studyWith({
+        candidates: `  a: {wiring: ${wiring}, ${MODULES}}`,
+        duty: `duty: {phases: [${charge}, {discharge_W: 500, for_h: 4}]}`,
+        more: `bank: {charger: {limit_A: ${limitA}}}\n`,
+      }),
+    );
+
+  it('comes above the sum of the over-current limits of the strings, 100 A each', () => {
+    expect(at(250)).toMatch(
+      /^the charger may give 250 A, more than the 200 A .*; lower limit_A of the charger \(a\)$/m,
+    );
+    expect(at(200)).not.toMatch(/limit_A/);
+    expect(at(201, 'cross-linked')).toMatch(/may give 201 A/);
+  });
+
+  it('goes by the power that the duty lets the charger give', () => {
+    // 8 x 3.2 V = 25.6 V: 5120 W are 200 A, 5376 W are 210 A.
+    expect(at(250, 'strings', '{charge_for_h: 4, charge_W: 5120}')).not.toMatch(/limit_A/);
+    expect(at(250, 'strings', '{charge_for_h: 4, charge_W: 5376}')).toMatch(/may give 210 A/);
+  });
+});
