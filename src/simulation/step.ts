@@ -40,7 +40,7 @@ export const LEAST_STEP_S = 0.01;
 /** Embedded error of the charge of a chain that a step may leave, as a fraction of its smallest cell. */
 const CHARGE_TOLERANCE = 1e-4;
 /** The same per second of a step: bounds the error of the mean current of short steps, as in a taper, 1/s. */
-const RATE_TOLERANCE = 8e-7;
+const RATE_TOLERANCE = 4e-7;
 /** Share of both that may be between modules in series with an equaliser at work. */
 const BETWEEN_MODULES = 0.1;
 /** Embedded error of a filtered current, as a fraction of the charge of the smallest cell per second (0.01 C), 1/s. */

@@ -179,7 +179,7 @@ describe('the step', () => {
       const { kernel, work } = pairUnderLoad([]);
       return tryStep(kernel, work, stepS);
     };
-    // From 125 s on the tolerance is one of charge, below that one of charge per second of the step: an eighth, a quarter.
+    // From 250 s on the tolerance is one of charge, below that one of charge per second of the step: an eighth, a quarter.
     expect(errorOf(680) / errorOf(340)).toBeGreaterThan(6.5);
     expect(errorOf(680) / errorOf(340)).toBeLessThan(9.5);
     for (const stepS of [120, 60]) {
